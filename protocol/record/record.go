@@ -10,6 +10,7 @@ import "steelyard/protocol/diag"
 // Record is one whole record.
 type Record struct {
 	Source *diag.Source
+	Tree   *Node // everything stated, as written; Tree.Get("plan") is what a seal covers
 
 	Language   Int          `key:"steelyard"`
 	Head       Head         `key:"record"`
