@@ -51,8 +51,13 @@ type Inference struct {
 	Y, V     result.Opt // estimate and variance on the analysis scale (methods.md 0)
 	N        float64    // subjects or pairs
 	Events   result.Opt
-	Notes    []result.Note
-	Checks   []result.Check
+	// NullOnly says that the test exists at the null alone: a claim at another
+	// point is S104.
+	NullOnly bool
+	// Costly says that one test is expensive: curves use few points.
+	Costly bool
+	Notes  []result.Note
+	Checks []result.Check
 }
 
 // Group are the numbers of one group. With individual values the summary is
