@@ -57,9 +57,9 @@ var inf = infinity()
 // Measures lists every measure in the order of the language reference.
 var Measures = []*Measure{
 	{Word: "mean", Label: "mean", Shape: OneSample, Null: NullReference, Scale: Identity, Low: -inf, High: inf,
-		Summary: []string{"n mean sd"}, Effect: true, Data: []string{"value"}, Methods: []string{"t", "permutation"}},
+		Summary: []string{"n mean sd"}, Effect: true, Data: []string{"value"}, Methods: []string{"t", "permutation"}, Ready: true},
 	{Word: "mean-difference", Label: "difference of means", Shape: TwoGroups, Null: NullZero, Scale: Identity, Low: -inf, High: inf,
-		Summary: []string{"n mean sd"}, Effect: true, Data: []string{"value group"}, Methods: []string{"welch", "pooled-variance", "permutation", "linear", "linear-hc3"}},
+		Summary: []string{"n mean sd"}, Effect: true, Data: []string{"value group"}, Methods: []string{"welch", "pooled-variance", "permutation", "linear", "linear-hc3"}, Ready: true},
 	{Word: "paired-mean-difference", Label: "mean within-pair difference", Shape: Paired, Null: NullZero, Scale: Identity, Low: -inf, High: inf,
 		Summary: []string{"n mean sd", "n first_mean second_mean first_sd second_sd r"}, Effect: true, Data: []string{"first second", "value group pair"}, Methods: []string{"t", "permutation"}},
 	{Word: "standardized-mean-difference", Label: "standardized mean difference (Hedges' g)", Shape: TwoGroups, Null: NullZero, Scale: Identity, Low: -inf, High: inf,
@@ -75,13 +75,13 @@ var Measures = []*Measure{
 	{Word: "superiority-probability", Label: "probability that the first group's value is higher", Shape: TwoGroups, Null: NullHalf, Scale: Logit, Low: 0, High: 1,
 		Effect: true, Data: []string{"value group"}, Methods: []string{"brunner-munzel", "delong", "logit", "hanley-mcneil"}},
 	{Word: "proportion", Label: "proportion", Shape: OneSample, Null: NullReference, Scale: Logit, Low: 0, High: 1,
-		Summary: []string{"n events"}, Effect: true, Data: []string{"event"}, Methods: []string{"exact", "mid-p", "wilson"}},
+		Summary: []string{"n events"}, Effect: true, Data: []string{"event"}, Methods: []string{"exact", "mid-p", "wilson"}, Ready: true},
 	{Word: "risk-difference", Label: "risk difference", Shape: TwoGroups, Null: NullZero, Scale: Identity, Low: -1, High: 1,
-		Summary: []string{"n events"}, Effect: true, Data: []string{"event group"}, Methods: []string{"score", "farrington-manning", "newcombe", "unconditional", "mantel-haenszel"}},
+		Summary: []string{"n events"}, Effect: true, Data: []string{"event group"}, Methods: []string{"score", "farrington-manning", "newcombe", "unconditional", "mantel-haenszel"}, Ready: true},
 	{Word: "risk-ratio", Label: "risk ratio", Shape: TwoGroups, Null: NullOne, Scale: Log, Low: 0, High: inf,
-		Summary: []string{"n events"}, Effect: true, Data: []string{"event group"}, Methods: []string{"score", "farrington-manning", "log-delta", "unconditional", "mantel-haenszel"}},
+		Summary: []string{"n events"}, Effect: true, Data: []string{"event group"}, Methods: []string{"score", "farrington-manning", "log-delta", "unconditional", "mantel-haenszel"}, Ready: true},
 	{Word: "odds-ratio", Label: "odds ratio", Shape: TwoGroups, Null: NullOne, Scale: Log, Low: 0, High: inf,
-		Summary: []string{"n events"}, Effect: true, Data: []string{"event group"}, Methods: []string{"score", "exact", "mid-p", "woolf", "boschloo", "mantel-haenszel"}},
+		Summary: []string{"n events"}, Effect: true, Data: []string{"event group"}, Methods: []string{"score", "exact", "mid-p", "woolf", "boschloo", "mantel-haenszel"}, Ready: true},
 	{Word: "paired-risk-difference", Label: "risk difference within pairs", Shape: Paired, Null: NullZero, Scale: Identity, Low: -1, High: 1,
 		Summary: []string{"both first_only second_only neither"}, Effect: true, Data: []string{"first second", "event group pair"}, Methods: []string{"tango", "exact", "mid-p"}},
 	{Word: "rate", Label: "event rate", Shape: OneSample, Null: NullReference, Scale: Log, Low: 0, High: inf,
@@ -109,9 +109,9 @@ var Measures = []*Measure{
 	{Word: "conforming-share", Label: "share of values inside the limits", Shape: OneSample, Null: NullReference, Scale: Logit, Low: 0, High: 1,
 		Summary: []string{"n mean sd"}, Data: []string{"value"}, Methods: []string{"normal", "any"}},
 	{Word: "estimate", Label: "effect estimated elsewhere", Shape: Given, Null: NullReferenceOrZero, Scale: Identity, Low: -inf, High: inf,
-		Effect: true, Methods: []string{"normal", "t"}},
+		Effect: true, Methods: []string{"normal", "t"}, Ready: true},
 	{Word: "ratio-estimate", Label: "ratio estimated elsewhere", Shape: Given, Null: NullOne, Scale: Log, Low: 0, High: inf,
-		Effect: true, Methods: []string{"normal", "t"}},
+		Effect: true, Methods: []string{"normal", "t"}, Ready: true},
 }
 
 // MeasureOf finds a measure by its word; nil when there is none.
