@@ -1,0 +1,153 @@
+package batch
+
+import (
+	"bufio"
+	"bytes"
+	"errors"
+	"fmt"
+	"io"
+	"io/fs"
+	"os"
+	"path/filepath"
+	"regexp"
+	"slices"
+	"strings"
+)
+
+// Stdin is the argument that means a record on standard input.
+const Stdin = "-"
+
+// Found is one record to work on.
+type Found struct {
+	Path string // as the user would call it; Stdin for standard input
+	Base string // where its outputs go without --out: Path without .toml
+	Rel  string // the same below the folder it was found in, for --out
+}
+
+// Find turns the arguments into records, in the order of the arguments and
+// within a folder by name. A folder means every record under it; hidden
+// folders are passed over. The same file is taken once. An argument under
+// which there is no record is an error, because silence would look like
+// success.
+func Find(args []string) ([]Found, error) {
+	var list []Found
+	seen := map[string]bool{}
+	add := func(path, rel string) {
+		key := path
+		if path != Stdin {
+			if abs, err := filepath.Abs(path); err == nil {
+				key = abs
+			}
+		}
+		if !seen[key] {
+			seen[key] = true
+			list = append(list, Found{Path: path, Base: trimTOML(path), Rel: trimTOML(rel)})
+		}
+	}
+	for _, arg := range args {
+		if arg == Stdin {
+			add(Stdin, "stdin")
+			continue
+		}
+		info, err := os.Stat(arg)
+		if err != nil {
+			return nil, err
+		}
+		if !info.IsDir() {
+			add(filepath.Clean(arg), filepath.Base(arg))
+			continue
+		}
+		records, err := Under(arg)
+		if err != nil {
+			return nil, err
+		}
+		if len(records) == 0 {
+			return nil, fmt.Errorf("%s: no record under this folder (a record is a .toml file whose first key is steelyard = 1)", arg)
+		}
+		for _, path := range records {
+			rel, err := filepath.Rel(arg, path)
+			if err != nil {
+				return nil, err
+			}
+			add(path, rel)
+		}
+	}
+	return list, nil
+}
+
+// Under lists the records under a folder, by name.
+func Under(dir string) ([]string, error) {
+	var list []string
+	err := filepath.WalkDir(dir, func(path string, d fs.DirEntry, err error) error {
+		if err != nil {
+			if errors.Is(err, fs.ErrNotExist) && path != dir {
+				return nil // gone since the folder was read
+			}
+			return err
+		}
+		if d.IsDir() {
+			if path != dir && Hidden(d.Name()) {
+				return filepath.SkipDir
+			}
+			return nil
+		}
+		if filepath.Ext(path) == ".toml" && !Hidden(d.Name()) && IsRecord(path) {
+			list = append(list, path)
+		}
+		return nil
+	})
+	slices.Sort(list)
+	return list, err
+}
+
+// Hidden reports whether a file or folder is passed over in searches.
+func Hidden(name string) bool { return strings.HasPrefix(name, ".") && name != "." && name != ".." }
+
+var firstKey = regexp.MustCompile(`^(steelyard|"steelyard"|'steelyard')[ \t]*=`)
+
+// sniffed is how far into a file its first key is looked for.
+const sniffed = 1 << 20
+
+// IsRecord reports whether the first key of a file is `steelyard`. Whether
+// the rest is a record is for reading to say.
+func IsRecord(path string) bool {
+	info, err := os.Stat(path)
+	if err != nil || !info.Mode().IsRegular() {
+		return false
+	}
+	f, err := os.Open(path)
+	if err != nil {
+		return false
+	}
+	defer f.Close()
+	return startsRecord(f)
+}
+
+func startsRecord(r io.Reader) bool {
+	lines := bufio.NewReader(io.LimitReader(r, sniffed))
+	for first := true; ; first = false {
+		line, err := lines.ReadBytes('\n')
+		if first {
+			line = bytes.TrimPrefix(line, []byte("\ufeff"))
+		}
+		line = bytes.TrimLeft(line, " \t\r\n")
+		if len(line) > 0 && line[0] != '#' {
+			return firstKey.Match(line)
+		}
+		if err != nil {
+			return false
+		}
+	}
+}
+
+func trimTOML(path string) string { return strings.TrimSuffix(path, ".toml") }
+
+// Part keeps every n-th record beginning with the i-th, both from 1: the
+// parts 1/n … n/n share the work among machines.
+func Part(list []Found, i, n int) []Found {
+	var part []Found
+	for k := i - 1; k < len(list); k += n {
+		part = append(part, list[k])
+	}
+	return part
+}
