@@ -43,23 +43,24 @@ func PooledVariance(difference, eff1, sd1, eff2, sd2 float64) Wald {
 		Low: math.Inf(-1), High: math.Inf(1)}
 }
 
-func meanDifferenceWelch(in Input) (*Inference, *Problem) {
-	if in.Crossover {
-		return crossover("welch", record.Identity, in)
-	}
-	return twoMeans("welch", record.Identity, sampleOf(in.First, in.DesignEffect), sampleOf(in.Second, in.DesignEffect), in)
+func meanDifferenceWelch(in Input) (*Inference, *Problem) { return meanDifference("welch", in) }
+func meanDifferencePooled(in Input) (*Inference, *Problem) {
+	return meanDifference("pooled-variance", in)
 }
 
-func meanDifferencePooled(in Input) (*Inference, *Problem) {
+func meanDifference(word string, in Input) (*Inference, *Problem) {
 	if in.Crossover {
-		return crossover("pooled-variance", record.Identity, in)
+		return crossover(word, record.Identity, in)
 	}
-	return twoMeans("pooled-variance", record.Identity, sampleOf(in.First, in.DesignEffect), sampleOf(in.Second, in.DesignEffect), in)
+	return twoMeans(word, record.Identity, sampleOf(in.First, in.DesignEffect), sampleOf(in.Second, in.DesignEffect), in)
 }
 
 // twoMeans compares two means by `welch` or `pooled-variance`; on the log
 // scale the samples hold logarithms and the effect is a ratio.
 func twoMeans(word string, scale record.Scale, s1, s2 sample, in Input) (*Inference, *Problem) {
+	if len(in.Covariates) > 0 || in.Strata != nil {
+		return nil, problem("S112", noAdjustment, word)
+	}
 	w, notes, bad := twoMeansWald(word, s1, s2)
 	if bad != nil {
 		return nil, bad

@@ -232,13 +232,13 @@ func sane(t reporter, what string, at Test) {
 	}
 }
 
-// table is a CSV file of testdata/reference/data.
-type table struct {
+// csvTable is a CSV file of testdata/reference/data.
+type csvTable struct {
 	head []string
 	rows [][]string
 }
 
-func readTable(t testing.TB, file string) table {
+func readTable(t testing.TB, file string) csvTable {
 	t.Helper()
 	f, err := os.Open(filepath.Join(referenceDir, "data", filepath.Base(file)))
 	if err != nil {
@@ -249,11 +249,11 @@ func readTable(t testing.TB, file string) table {
 	if err != nil {
 		t.Fatal(err)
 	}
-	return table{head: all[0], rows: all[1:]}
+	return csvTable{head: all[0], rows: all[1:]}
 }
 
 // text is one column.
-func (d table) text(t testing.TB, column string) []string {
+func (d csvTable) text(t testing.TB, column string) []string {
 	t.Helper()
 	for j, name := range d.head {
 		if name == column {
@@ -269,7 +269,7 @@ func (d table) text(t testing.TB, column string) []string {
 }
 
 // numbers is one column as numbers.
-func (d table) numbers(t testing.TB, column string) []float64 {
+func (d csvTable) numbers(t testing.TB, column string) []float64 {
 	t.Helper()
 	words := d.text(t, column)
 	out := make([]float64, len(words))
@@ -284,7 +284,7 @@ func (d table) numbers(t testing.TB, column string) []float64 {
 }
 
 // where keeps the numbers of rows in which another column has a value.
-func (d table) where(t testing.TB, column, by, equals string) []float64 {
+func (d csvTable) where(t testing.TB, column, by, equals string) []float64 {
 	t.Helper()
 	var out []float64
 	all, keys := d.numbers(t, column), d.text(t, by)

@@ -41,7 +41,7 @@ func Analyse(measure, method string, in Input) (*Inference, *Problem) {
 	}
 	word := method
 	if word == "" {
-		word = m.Methods[0]
+		word = defaultMethod(m, &in)
 	}
 	var known []string
 	for _, table := range tables() {
@@ -56,6 +56,18 @@ func Analyse(measure, method string, in Input) (*Inference, *Problem) {
 		return slices.Index(m.Methods, a) - slices.Index(m.Methods, b)
 	})
 	return nil, problem("S104", noMethod, word, measure, joined(known))
+}
+
+// defaultMethod is the measure's first, or what its design asks for: a
+// crossover has one variance, covariates and strata need the linear model.
+func defaultMethod(m *record.Measure, in *Input) string {
+	switch {
+	case in.Crossover && m.HasMethod("pooled-variance"):
+		return "pooled-variance"
+	case (len(in.Covariates) > 0 || in.Strata != nil) && m.HasMethod("linear"):
+		return "linear"
+	}
+	return m.Methods[0]
 }
 
 func joined(words []string) string { return strings.Join(words, ", ") }
@@ -110,6 +122,7 @@ const (
 	notClustered  = "method %q needs independent individuals, so it has no design effect"
 	needsData     = "method %q needs individual values"
 	tooLarge      = "method %q would need %v observations at most; there are %v"
+	noAdjustment  = "method %q takes no covariates, strata or crossover"
 	infiniteLimit = "the interval has no %s limit at this level"
 	oneConstant   = "%s does not vary; its spread enters as 0"
 	fallback      = "method %q cannot be used here; %q is used"
