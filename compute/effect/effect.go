@@ -47,10 +47,13 @@ type Inference struct {
 	Method   Method
 	Word     string  // the method actually used
 	Estimate float64 // on the effect's own scale; may be at the end of its range
-	SE, DF   result.Opt
-	Y, V     result.Opt // estimate and variance on the analysis scale (methods.md 0)
-	N        float64    // subjects or pairs
-	Events   result.Opt
+	// NoEstimate says that the data support no value more than another (0/0);
+	// Estimate is then the null and must not be printed.
+	NoEstimate bool
+	SE, DF     result.Opt
+	Y, V       result.Opt // estimate and variance on the analysis scale (methods.md 0)
+	N          float64    // subjects or pairs
+	Events     result.Opt
 	// NullOnly says that the test exists at the null alone: a claim at another
 	// point is S104.
 	NullOnly bool
