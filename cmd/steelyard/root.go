@@ -39,7 +39,8 @@ cannot be read, or an output that cannot be written.`,
 	}
 	root.SetVersionTemplate("steelyard {{.Version}}\n")
 	root.AddCommand(
-		a.checkCommand(), a.compileCommand(), a.versionCommand(),
+		a.checkCommand(), a.compileCommand(), a.watchCommand(),
+		a.versionCommand(),
 	)
 	return root
 }

@@ -24,6 +24,15 @@ type Found struct {
 	Rel  string // the same below the folder it was found in, for --out
 }
 
+// FoundIn is the record of a path that was found in a folder.
+func FoundIn(dir, path string) Found {
+	rel, err := filepath.Rel(dir, path)
+	if err != nil {
+		rel = filepath.Base(path)
+	}
+	return Found{Path: path, Base: trimTOML(path), Rel: trimTOML(rel)}
+}
+
 // Find turns the arguments into records, in the order of the arguments and
 // within a folder by name. A folder means every record under it; hidden
 // folders are passed over. The same file is taken once. An argument under
@@ -32,21 +41,19 @@ type Found struct {
 func Find(args []string) ([]Found, error) {
 	var list []Found
 	seen := map[string]bool{}
-	add := func(path, rel string) {
-		key := path
-		if path != Stdin {
-			if abs, err := filepath.Abs(path); err == nil {
-				key = abs
-			}
+	add := func(rec Found) {
+		key, err := filepath.Abs(rec.Path)
+		if err != nil || rec.Path == Stdin {
+			key = rec.Path
 		}
 		if !seen[key] {
 			seen[key] = true
-			list = append(list, Found{Path: path, Base: trimTOML(path), Rel: trimTOML(rel)})
+			list = append(list, rec)
 		}
 	}
 	for _, arg := range args {
 		if arg == Stdin {
-			add(Stdin, "stdin")
+			add(Found{Path: Stdin})
 			continue
 		}
 		info, err := os.Stat(arg)
@@ -54,7 +61,7 @@ func Find(args []string) ([]Found, error) {
 			return nil, err
 		}
 		if !info.IsDir() {
-			add(filepath.Clean(arg), filepath.Base(arg))
+			add(FoundIn(filepath.Dir(arg), filepath.Clean(arg)))
 			continue
 		}
 		records, err := Under(arg)
@@ -65,11 +72,7 @@ func Find(args []string) ([]Found, error) {
 			return nil, fmt.Errorf("%s: no record under this folder (a record is a .toml file whose first key is steelyard = 1)", arg)
 		}
 		for _, path := range records {
-			rel, err := filepath.Rel(arg, path)
-			if err != nil {
-				return nil, err
-			}
-			add(path, rel)
+			add(FoundIn(arg, path))
 		}
 	}
 	return list, nil
