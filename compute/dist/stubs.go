@@ -3,57 +3,6 @@ package dist
 // To be replaced, one by one, by the real functions in files of their own.
 // The names and signatures are the contract with the other packages.
 
-// NormalUpper is P(Z > z).
-func NormalUpper(z float64) Tail { panic("dist: not built") }
-
-// NormalQuantile is z with P(Z > z) = p.
-func NormalQuantile(p float64) float64 { panic("dist: not built") }
-
-// NormalQuantileLn is z with ln P(Z > z) = lnp.
-func NormalQuantileLn(lnp float64) float64 { panic("dist: not built") }
-
-// TUpper is P(T > t) with nu degrees of freedom; nu may be +Inf (normal).
-func TUpper(t, nu float64) Tail { panic("dist: not built") }
-
-// TQuantile is t with P(T > t) = p.
-func TQuantile(p, nu float64) float64 { panic("dist: not built") }
-
-// FUpper is P(F > f) with d1 and d2 degrees of freedom.
-func FUpper(f, d1, d2 float64) Tail { panic("dist: not built") }
-
-// FQuantile is f with P(F > f) = p.
-func FQuantile(p, d1, d2 float64) float64 { panic("dist: not built") }
-
-// ChiSquareUpper is P(X > x) with nu degrees of freedom.
-func ChiSquareUpper(x, nu float64) Tail { panic("dist: not built") }
-
-// ChiSquareQuantile is x with P(X > x) = p.
-func ChiSquareQuantile(p, nu float64) float64 { panic("dist: not built") }
-
-// BetaLower is I_x(a, b) with y = 1-x given separately.
-func BetaLower(x, y, a, b float64) Tail { panic("dist: not built") }
-
-// BetaQuantile is x, and y = 1-x, with I_x(a, b) = p.
-func BetaQuantile(p, a, b float64) (x, y float64) { panic("dist: not built") }
-
-// BinomialLower is P(X <= k) for n trials at probability p, q = 1-p.
-func BinomialLower(k, n, p, q float64) Tail { panic("dist: not built") }
-
-// BinomialUpper is P(X >= k).
-func BinomialUpper(k, n, p, q float64) Tail { panic("dist: not built") }
-
-// BinomialLnPMF is ln P(X = k) (Loader's form).
-func BinomialLnPMF(k, n, p, q float64) float64 { panic("dist: not built") }
-
-// PoissonLower is P(X <= x) at mean mu.
-func PoissonLower(x, mu float64) Tail { panic("dist: not built") }
-
-// PoissonUpper is P(X >= x) at mean mu.
-func PoissonUpper(x, mu float64) Tail { panic("dist: not built") }
-
-// PoissonLnPMF is ln P(X = x).
-func PoissonLnPMF(x, mu float64) float64 { panic("dist: not built") }
-
 // NoncentralTUpper is P(T > t) with nu degrees of freedom and noncentrality delta.
 func NoncentralTUpper(t, nu, delta float64) Tail { panic("dist: not built") }
 
