@@ -71,26 +71,27 @@ type diagPlace struct {
 
 // entry is one result entry while its file is read.
 type entry struct {
-	key      int
-	data     *record.Data
-	src      *diag.Source
-	masked   bool
-	form     form
-	paired   bool // the two columns of a pair are two readings, not two variables
-	binary   [roles]bool
-	whole    [roles]bool
-	uses     []use
-	use      [roles]*use // of uses, nil where there is none
-	labels   []label
-	groups   []string
-	missing  []string
-	exclude  []*filter
-	filters  []*filter // every filter of every set, for finding columns
-	covs     []*covariate
-	sets     []*rows
-	faults   *faults
-	numeric  []role // of uses, those that hold numbers
-	unmapped []string
+	key     int
+	data    *record.Data
+	src     *diag.Source
+	masked  bool
+	form    form
+	paired  bool // the two columns of a pair are two readings, not two variables
+	binary  [roles]bool
+	whole   [roles]bool
+	uses    []use
+	use     [roles]*use   // of uses, nil where there is none
+	cells   [roles][]byte // of the present row, in the order of uses
+	labels  []label
+	groups  []string
+	missing []string
+	longest int // of missing
+	exclude []*filter
+	filters []*filter // every filter of every set, for finding columns
+	covs    []*covariate
+	sets    []*rows
+	faults  *faults
+	numeric []role // of uses, those that hold numbers
 }
 
 // columnOf is the column an entry names for a role.
@@ -163,6 +164,9 @@ func newEntry(rec *record.Record, key int, res *record.Result) *entry {
 		for _, m := range d.MissingValues.V {
 			e.missing = append(e.missing, strings.Trim(m.V, " \t"))
 		}
+	}
+	for _, m := range e.missing {
+		e.longest = max(e.longest, len(m))
 	}
 	for _, g := range outcome.Groups.V {
 		e.groups = append(e.groups, g.V)

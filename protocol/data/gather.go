@@ -157,11 +157,24 @@ func (e *entry) vectors(s *rows, read int, sum string) *Vectors {
 			v.Numeric[c.name] = s.covs[i].values
 		}
 	}
+	v.fit()
 	v.Dropped = e.reasons(s)
 	if e.masked {
 		e.mask(v)
 	}
 	return v
+}
+
+// fit gives back the room that the rows did not take.
+func (v *Vectors) fit() {
+	for _, x := range []*[]float64{&v.Value, &v.First, &v.Second, &v.Time, &v.Event, &v.Exposure} {
+		if cap(*x) > len(*x)+len(*x)/4+64 {
+			*x = slices.Clone(*x)
+		}
+	}
+	if cap(v.Group) > len(v.Group)+len(v.Group)/4+64 {
+		v.Group = slices.Clone(v.Group)
+	}
 }
 
 // join makes pairs of halves, in order of first appearance. A half without

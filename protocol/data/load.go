@@ -163,7 +163,7 @@ func (e *entry) check(sum string) (list diag.List) {
 // readFile passes every record of a file to the entries. ok says that the
 // whole file was read; what is wrong is in list and f.
 func readFile(name string, entries []*entry, files fs.FS, f *faults, list *diag.List) (read int, sum string, ok bool) {
-	file, err := open(name, files)
+	file, size, err := open(name, files)
 	if err != nil {
 		for _, e := range entries {
 			list.Add(cannotOpen(e, name, files, err))
@@ -173,6 +173,7 @@ func readFile(name string, entries []*entry, files fs.FS, f *faults, list *diag.
 	defer file.Close()
 	hash := sha256.New()
 	c := newReader(io.TeeReader(file, hash))
+	c.size = size
 	stop := func(broken *fault) (int, string, bool) {
 		if broken != nil {
 			f.cell(broken.code, f.at, broken.line, broken.column, broken.excerpt, broken.help, broken.message)
@@ -246,13 +247,13 @@ var (
 	errSpecial   = errors.New("it is not a regular file")
 )
 
-func open(name string, files fs.FS) (fs.File, error) {
+func open(name string, files fs.FS) (fs.File, int64, error) {
 	if files == nil {
-		return nil, errNoFiles
+		return nil, 0, errNoFiles
 	}
 	file, err := files.Open(name)
 	if err != nil {
-		return nil, err
+		return nil, 0, err
 	}
 	info, err := file.Stat()
 	switch {
@@ -264,9 +265,9 @@ func open(name string, files fs.FS) (fs.File, error) {
 	}
 	if err != nil {
 		file.Close()
-		return nil, err
+		return nil, 0, err
 	}
-	return file, nil
+	return file, info.Size(), nil
 }
 
 // reasonText is an error of the file system without operation and path.

@@ -17,9 +17,10 @@ import (
 // After next has returned true, fields, line and the place of every field
 // describe that record until the following call.
 type reader struct {
-	src io.Reader
-	eof bool
-	err error // from src, other than io.EOF
+	src  io.Reader
+	size int64 // of the whole text as far as known; a guess for making room
+	eof  bool
+	err  error // from src, other than io.EOF
 
 	buf        []byte
 	start, end int // unread bytes of buf
@@ -209,6 +210,9 @@ func (c *reader) check(raw []byte) *fault {
 		f.help = "save the file as UTF-8 text with commas between the columns"
 		return f
 	}
+	if utf8.Valid(raw) {
+		return nil
+	}
 	for i := 0; i < len(raw); {
 		r, size := utf8.DecodeRune(raw[i:])
 		if r == utf8.RuneError && size == 1 {
@@ -223,76 +227,99 @@ func (c *reader) check(raw []byte) *fault {
 
 // quoted reads a record that has quotes. n is the length of its first line.
 func (c *reader) quoted(n int) (bool, *fault) {
-	fields, out := c.fields[:0], c.scratch[:0]
-	at, end := 0, n // both from the start of the record
+	q := quotedRecord{c: c, end: n, out: c.scratch[:0]}
+	c.fields = c.fields[:0]
 	for {
-		body := len(trimEnd(c.buf[c.start : c.start+end]))
-		field := field{from: len(out), place: at}
-		if at >= body || c.buf[c.start+at] != '"' {
-			stop := bytes.IndexByte(c.buf[c.start+at:c.start+body], ',')
-			if stop < 0 {
-				stop = body - at
-			}
-			if q := bytes.IndexByte(c.buf[c.start+at:c.start+at+stop], '"'); q >= 0 {
-				f := c.faultAt("D113", c.buf[c.start:c.start+end], at+q, "a quote inside a field that does not start with one")
-				f.help = "put the whole field in quotes and double the quotes inside it"
-				return false, f
-			}
-			out = append(out, c.buf[c.start+at:c.start+at+stop]...)
-			at += stop
+		f := field{from: len(q.out), place: q.at}
+		var broken *fault
+		if q.at < q.body() && q.raw()[q.at] == '"' {
+			broken = q.inQuotes()
 		} else {
-			open := at
-			at++
-			for {
-				q := bytes.IndexByte(c.buf[c.start+at:c.start+end], '"')
-				if q < 0 {
-					line := c.buf[c.start+at : c.start+end]
-					body := trimEnd(line)
-					out = append(out, body...)
-					if bytes.HasSuffix(line, []byte("\n")) {
-						out = append(out, '\n')
-					}
-					at = end
-					more, ok := c.lineEnd(end)
-					if c.err != nil && c.err != errTooLong {
-						return false, nil
-					}
-					if !ok || c.err != nil {
-						return false, c.faultAt("D113", c.buf[c.start:c.start+end], open, "this quote is never closed")
-					}
-					end += more
-					c.lines++
-					continue
-				}
-				out = append(out, c.buf[c.start+at:c.start+at+q]...)
-				at += q + 1
-				if at < end && c.buf[c.start+at] == '"' {
-					out = append(out, '"')
-					at++
-					continue
-				}
-				break
-			}
-			if body = len(trimEnd(c.buf[c.start : c.start+end])); at < body && c.buf[c.start+at] != ',' {
-				f := c.faultAt("D113", c.buf[c.start:c.start+end], at, "text after a closing quote")
-				f.help = "double the quotes inside a quoted field"
-				return false, f
-			}
+			broken = q.bare()
 		}
-		field.to = len(out)
-		fields = append(fields, field)
-		if at >= len(trimEnd(c.buf[c.start:c.start+end])) {
+		if broken != nil || c.err != nil {
+			return false, broken
+		}
+		f.to = len(q.out)
+		c.fields = append(c.fields, f)
+		if q.at >= q.body() {
 			break
 		}
-		at++ // the comma
+		q.at++ // the comma
 	}
-	c.fields, c.scratch, c.text = fields, out, out
-	c.raw = c.buf[c.start : c.start+end]
-	if f := c.check(c.raw); f != nil {
-		return false, f
+	c.scratch, c.text, c.raw = q.out, q.out, q.raw()
+	if broken := c.check(c.raw); broken != nil {
+		return false, broken
 	}
-	c.start += end
+	c.start += q.end
 	return true, nil
+}
+
+// quotedRecord is a record with quotes while it is read.
+type quotedRecord struct {
+	c   *reader
+	at  int    // from the start of the record: the next byte
+	end int    // of the lines read so far
+	out []byte // the fields, without their quotes
+}
+
+func (q *quotedRecord) raw() []byte { return q.c.buf[q.c.start : q.c.start+q.end] }
+func (q *quotedRecord) body() int   { return len(trimEnd(q.raw())) }
+
+// bare reads a field without quotes.
+func (q *quotedRecord) bare() *fault {
+	text := q.raw()[q.at:q.body()]
+	if i := bytes.IndexByte(text, ','); i >= 0 {
+		text = text[:i]
+	}
+	if i := bytes.IndexByte(text, '"'); i >= 0 {
+		f := q.c.faultAt("D113", q.raw(), q.at+i, "a quote inside a field that does not start with one")
+		f.help = "put the whole field in quotes and double the quotes inside it"
+		return f
+	}
+	q.out = append(q.out, text...)
+	q.at += len(text)
+	return nil
+}
+
+// inQuotes reads a field in quotes, over as many lines as it takes.
+func (q *quotedRecord) inQuotes() *fault {
+	open := q.at
+	q.at++
+	for {
+		rest := q.raw()[q.at:]
+		i := bytes.IndexByte(rest, '"')
+		if i < 0 {
+			q.out = append(q.out, trimEnd(rest)...)
+			if bytes.HasSuffix(rest, []byte("\n")) {
+				q.out = append(q.out, '\n')
+			}
+			q.at = q.end
+			more, ok := q.c.lineEnd(q.end)
+			if q.c.err != nil && q.c.err != errTooLong {
+				return nil
+			}
+			if !ok || q.c.err != nil {
+				return q.c.faultAt("D113", q.raw(), open, "this quote is never closed")
+			}
+			q.end += more
+			q.c.lines++
+			continue
+		}
+		q.out = append(q.out, rest[:i]...)
+		q.at += i + 1
+		if i+1 < len(rest) && rest[i+1] == '"' {
+			q.out = append(q.out, '"')
+			q.at++
+			continue
+		}
+		if q.at < q.body() && q.raw()[q.at] != ',' {
+			f := q.c.faultAt("D113", q.raw(), q.at, "text after a closing quote")
+			f.help = "double the quotes inside a quoted field"
+			return f
+		}
+		return nil
+	}
 }
 
 // cell is field i of the record without the blanks around it.

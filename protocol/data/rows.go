@@ -12,6 +12,8 @@ type rows struct {
 	keep []*filter
 	live bool // the present row is still in
 
+	sized bool // room has been made
+
 	// dropped counts rows by reason (exclusions, filters of the set, missing
 	// cells, incomplete pairs or subjects) and group (unknown, first, second).
 	dropped [][3]int
@@ -91,12 +93,33 @@ func (e *entry) row(c *reader) {
 	}
 	for _, s := range e.sets {
 		if s.live {
+			if !s.sized {
+				e.size(s, c)
+			}
 			e.add(s, c, &p)
 		}
 	}
 }
 
+// size makes room for the rows that a file of this length should hold.
+func (e *entry) size(s *rows, c *reader) {
+	s.sized = true
+	if e.form == halfARow {
+		return
+	}
+	n := int(min(c.size, 1<<30))/max(1, len(c.raw)) + 1
+	for _, r := range e.numeric {
+		s.num[r] = make([]float64, 0, n)
+	}
+	if e.use[roleGroup] != nil || e.form == crossover {
+		s.group = make([]uint8, 0, n)
+	}
+}
+
 func (e *entry) isMissing(cell []byte) bool {
+	if len(cell) > e.longest {
+		return false
+	}
 	for _, m := range e.missing {
 		if string(cell) == m {
 			return true
@@ -109,6 +132,9 @@ func (e *entry) isMissing(cell []byte) bool {
 func (e *entry) filter(c *reader) bool {
 	for _, s := range e.sets {
 		s.live = true
+	}
+	if len(e.filters) == 0 {
+		return len(e.sets) > 0
 	}
 	ask := func(f *filter) bool {
 		cell := c.cell(f.column)
@@ -192,26 +218,27 @@ func period(cell []byte) uint8 {
 // cellsMissing drops a row that lacks a cell the entry needs, counted once,
 // by the first such column.
 func (e *entry) cellsMissing(c *reader) bool {
-	lacks := func(i int, column int) bool {
-		if !e.isMissing(c.cell(column)) {
-			return false
-		}
-		for _, s := range e.sets {
-			s.drop(len(e.exclude)+len(s.keep)+i, e, c)
-		}
-		return true
-	}
+	lacking := -1
 	for i := range e.uses {
-		if lacks(i, e.uses[i].column) {
-			return true
+		u := &e.uses[i]
+		cell := c.cell(u.column)
+		if lacking < 0 && e.isMissing(cell) {
+			lacking = i
+		}
+		e.cells[i] = cell
+	}
+	for i, v := range e.covs {
+		if lacking < 0 && e.isMissing(c.cell(v.column)) {
+			lacking = len(e.uses) + i
 		}
 	}
-	for i := range e.covs {
-		if lacks(len(e.uses)+i, e.covs[i].column) {
-			return true
-		}
+	if lacking < 0 {
+		return false
 	}
-	return false
+	for _, s := range e.sets {
+		s.drop(len(e.exclude)+len(s.keep)+lacking, e, c)
+	}
+	return true
 }
 
 // fault reports a cell. The format takes the cell as shown.
@@ -228,8 +255,7 @@ func (e *entry) fault(c *reader, code string, u use, format, help string) {
 // parse understands the cells of the row.
 func (e *entry) parse(c *reader, p *parsed) {
 	for i := range e.uses {
-		u := &e.uses[i]
-		cell := c.cell(u.column)
+		u, cell := &e.uses[i], e.cells[i]
 		switch u.role {
 		case roleGroup, roleSequence:
 			g := e.lookUp(cell)

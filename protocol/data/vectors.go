@@ -1,11 +1,23 @@
 // Package data turns columns of a CSV file into vectors: labels mapped to
 // groups, rows filtered, every dropped row counted by reason and group. It
 // reads from the file system it is given and computes no statistic.
+//
+//	tables, faults := data.Load(rec, files)
+//	v := tables[data.Key{Entry: 0}]
 package data
 
 // Vectors are the columns that one result entry uses in one analysis set:
 // the rows that are analysed, in the order of the file. A column that the
 // entry does not name is nil.
+//
+// Halves of pairs in two rows are matched: First and Second, in the order in
+// which pairs begin. A crossover has the group of each row in Group whether
+// or not the file names it, and only subjects with both periods.
+//
+// A masked entry (record.Masked) has no Group, Period, Sequence, Subject,
+// Cluster, covariates, First or Second, and its Dropped names no group; the
+// two readings of its pairs are in Value, the smaller of each pair first, so
+// that Value is twice as long as Used.
 type Vectors struct {
 	File   string // as the record names it
 	SHA256 string // of the file, lower-case hex
