@@ -11,6 +11,7 @@ import (
 
 	"steelyard/protocol/data"
 	"steelyard/protocol/diag"
+	"steelyard/protocol/read"
 	"steelyard/protocol/record"
 )
 
@@ -26,7 +27,23 @@ type Loaded struct {
 // Load reads a record. Files named by the record are opened in files, whose
 // root is the record's folder; nil refuses every file. sealText is the chain
 // beside the record, nil when there is none.
+//
+// Data files are read only for a record without errors of its own: columns
+// cannot be judged by a plan that is not understood.
 func Load(name string, text, sealText []byte, files fs.FS) *Loaded {
 	src := diag.NewSource(name, text)
-	return &Loaded{Source: src, Record: &record.Record{Source: src}}
+	rec, list := read.Record(src)
+	in := &Loaded{Source: src, Record: rec, Diagnostics: list}
+	if list.HasErrors() {
+		return in
+	}
+	in.PlanSHA256 = planDigest(rec)
+	tables, faults := data.Load(rec, files)
+	in.Tables = tables
+	in.Diagnostics = append(in.Diagnostics, faults...)
+	in.Diagnostics.Sort()
+	return in
 }
+
+// planDigest is the digest of the canonical plan.
+func planDigest(rec *record.Record) string { return "" }

@@ -247,9 +247,11 @@ func earlierKeys(results []Key) []Key {
 	return out
 }
 
-func above(low float64) *Range           { return &Range{Low: low, High: inf, LowOpen: true} }
-func atLeast(low float64) *Range         { return &Range{Low: low, High: inf} }
-func between(low, high float64) *Range   { return &Range{Low: low, High: high, LowOpen: true, HighOpen: true} }
+func above(low float64) *Range   { return &Range{Low: low, High: inf, LowOpen: true} }
+func atLeast(low float64) *Range { return &Range{Low: low, High: inf} }
+func between(low, high float64) *Range {
+	return &Range{Low: low, High: high, LowOpen: true, HighOpen: true}
+}
 func fromTo(low, high float64) *Range    { return &Range{Low: low, High: high} }
 func fromBelow(low, high float64) *Range { return &Range{Low: low, High: high, HighOpen: true} }
 

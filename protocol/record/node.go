@@ -21,6 +21,7 @@ const (
 	LocalDateTimeNode                 // Text as written: no offset
 	LocalDateNode                     // Date; Text as written
 	LocalTimeNode                     // Text as written
+	UnreadNode                        // written, but at fault; only in records with errors
 )
 
 // Node is one stated value of the file with its place. The tree of nodes holds

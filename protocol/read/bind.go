@@ -1,0 +1,452 @@
+package read
+
+import (
+	"reflect"
+	"regexp"
+	"strconv"
+	"strings"
+	"unicode/utf8"
+
+	"steelyard/protocol/diag"
+	"steelyard/protocol/record"
+)
+
+// A field of the typed record is in one of three states: stated; refused (its
+// place is known, the value is not: a fault was reported); absent or default
+// (no place). Rules look at stated values only, and call nothing missing that
+// was refused.
+
+// binder checks the tree by the table of keys and fills the typed record.
+type binder struct {
+	list      diag.List
+	ready     func(*record.Key) bool
+	damaged   bool // a fault may have hidden keys
+	versionOK bool
+	skipReady bool // inside a table that was reported as not computed
+}
+
+// fieldIndex finds the fields of a struct by key.
+type fieldIndex map[string]int
+
+// fields holds the index of every struct of the record. It is made once and
+// never changed.
+var fields = indexFields(reflect.TypeFor[record.Record](), map[reflect.Type]fieldIndex{})
+
+func indexFields(t reflect.Type, into map[reflect.Type]fieldIndex) map[reflect.Type]fieldIndex {
+	for t.Kind() == reflect.Pointer || t.Kind() == reflect.Slice {
+		t = t.Elem()
+	}
+	if t.Kind() != reflect.Struct || into[t] != nil {
+		return into
+	}
+	index := fieldIndex{}
+	for i := range t.NumField() {
+		if key := t.Field(i).Tag.Get("key"); key != "" {
+			index[key] = i
+			if into[t] == nil {
+				into[t] = index
+			}
+			indexFields(t.Field(i).Type, into)
+		}
+	}
+	return into
+}
+
+var namePattern = regexp.MustCompile(`^[A-Za-z][A-Za-z0-9_-]*$`)
+
+// record binds the whole tree.
+func (b *binder) record(rec *record.Record) {
+	b.version(rec.Tree)
+	if !b.versionOK {
+		return
+	}
+	at := diag.Span{}
+	if e := rec.Tree.Entry("steelyard"); e != nil {
+		at = e.KeySpan
+	}
+	b.table(rec.Tree, reflect.ValueOf(rec).Elem(), "", at)
+}
+
+// version demands the key of the language first of all. Another version is
+// another language: nothing else is then said.
+func (b *binder) version(root *record.Node) {
+	b.versionOK = true
+	e := root.Entry("steelyard")
+	switch {
+	case e == nil:
+		if !b.damaged {
+			b.list.Add(diag.Error("R110", diag.Span{}, "the record does not begin with the version of its language").
+				WithHelp("write steelyard = 1 as the first line"))
+		}
+		return
+	case e.Value.Kind == record.IntegerNode && e.Value.Int != 1:
+		b.versionOK = false
+		b.list.Add(diag.Error("R111", e.Value.Span, "this record is written in version %d of the language; this program reads version 1", e.Value.Int).
+			WithHelp("use a later version of the program, or write steelyard = 1 if the record follows version 1"))
+		return
+	case e.Value.Kind != record.IntegerNode && e.Value.Kind != record.UnreadNode:
+		b.versionOK = false
+		b.list.Add(diag.Error("R111", e.Value.Span, "the version of the language is a whole number, not %s", describe(e.Value)).
+			WithHelp("write steelyard = 1"))
+		return
+	}
+	if root.Entries[0].Key != "steelyard" {
+		b.list.Add(diag.Error("R110", e.KeySpan, "the version of the language must be the first key of the record").
+			WithHelp("move steelyard = 1 to the first line"))
+	}
+}
+
+// table binds one table: v is its struct, path the path of its keys.
+func (b *binder) table(n *record.Node, v reflect.Value, path string, at diag.Span) {
+	if f := v.FieldByName("At"); f.IsValid() {
+		f.Set(reflect.ValueOf(at))
+	}
+	rows := record.KeysIn(path)
+	index := fields[v.Type()]
+	var meant []string // keys that were probably meant by unknown ones
+	for _, e := range n.Entries {
+		row := record.KeyOf(join(path, e.Key))
+		if row == nil || row.Parent() != path {
+			meant = append(meant, b.unknown(e, rows, path))
+			continue
+		}
+		b.entry(row, e, v.Field(index[e.Key]))
+	}
+	for _, row := range rows {
+		if n.Entry(row.Name()) != nil {
+			continue
+		}
+		if row.Default != nil {
+			setDefault(v.Field(index[row.Name()]), row.Default)
+		}
+		if row.Required && row.Path != "steelyard" && !b.damaged && !contains(meant, row.Name()) {
+			b.list.Add(diag.Error("R205", at, "%s is missing%s", missingName(row), in(path)).WithHelp("%s", missingHelp(row)))
+		}
+		b.emptyTable(row, v.Field(index[row.Name()]))
+	}
+}
+
+// emptyTable gives the defaults of a table that is always there but was not
+// written.
+func (b *binder) emptyTable(row *record.Key, f reflect.Value) {
+	if row.Kind != record.KindTable || f.Kind() != reflect.Struct {
+		return
+	}
+	index := fields[f.Type()]
+	for _, r := range record.KeysIn(row.Below()) {
+		if r.Default != nil {
+			setDefault(f.Field(index[r.Name()]), r.Default)
+		}
+		b.emptyTable(r, f.Field(index[r.Name()]))
+	}
+}
+
+func missingName(row *record.Key) string {
+	if row.Kind == record.KindNamedTables {
+		return "a table [" + row.Path + ".NAME]"
+	}
+	if row.Kind == record.KindTable {
+		return "the table [" + row.Path + "]"
+	}
+	return strconv.Quote(row.Name())
+}
+
+func missingHelp(row *record.Key) string {
+	switch {
+	case row.Kind.IsTable():
+		return strings.ReplaceAll(row.Doc, "`", "")
+	case len(row.Words) > 0 && len(row.Words) <= 12:
+		return row.Name() + " is one of " + words(row.Words)
+	}
+	return "it takes " + row.Kind.String()
+}
+
+func in(path string) string {
+	if path == "" {
+		return ""
+	}
+	if i := strings.LastIndex(path, ".NAME"); i >= 0 && i+5 == len(path) {
+		path = path[:i]
+	}
+	return " in " + path
+}
+
+func join(path, key string) string {
+	if path == "" {
+		return key
+	}
+	return path + "." + key
+}
+
+func contains(list []string, s string) bool {
+	for _, x := range list {
+		if x == s {
+			return true
+		}
+	}
+	return false
+}
+
+// unknown reports an unknown key and returns the key that was probably meant.
+func (b *binder) unknown(e record.Entry, rows []*record.Key, path string) string {
+	known := make([]string, len(rows))
+	for i, r := range rows {
+		known[i] = r.Name()
+	}
+	d := diag.Error("R201", e.KeySpan, "%s is not a key%s", quoteShort(e.Key), in(path))
+	near := nearest(e.Key, known)
+	switch {
+	case near != "":
+		d = d.WithHelp("did you mean %q?", near)
+	case elsewhere(e.Key, path) != "":
+		d = d.WithHelp("%q belongs in %s", e.Key, elsewhere(e.Key, path))
+	case len(known) > 0 && len(known) <= 14:
+		d = d.WithHelp("the keys here are %s", words(known))
+	}
+	b.list.Add(d)
+	return near
+}
+
+// elsewhere finds the one table that has a key of this name.
+func elsewhere(key, path string) string {
+	found := ""
+	for _, k := range record.Keys {
+		if k.Name() != key || k.Parent() == path || strings.HasPrefix(k.Path, "earlier_result.") {
+			continue
+		}
+		if found != "" {
+			return ""
+		}
+		found = k.Parent()
+	}
+	if found == "" {
+		return ""
+	}
+	return "[" + found + "]"
+}
+
+// entry checks one key and binds its value.
+func (b *binder) entry(row *record.Key, e record.Entry, f reflect.Value) {
+	n := e.Value
+	if n.Kind == record.UnreadNode {
+		refuse(f, n.Span)
+		return
+	}
+	if !b.skipReady && !b.ready(row) {
+		b.list.Add(diag.Error("R208", e.KeySpan, "this version of the program reads %q but does not compute what it asks for", row.Name()).
+			WithHelp("leave it out, or use a later version: a key that could change a number or a verdict is never passed over"))
+		b.skipReady = true
+		defer func() { b.skipReady = false }()
+	}
+	switch row.Kind {
+	case record.KindTable:
+		b.oneTable(row, e, f)
+	case record.KindNamedTables:
+		b.namedTables(row, e, f)
+	case record.KindTables:
+		b.tables(row, e, f)
+	case record.KindNamedStrings, record.KindNamedNumbers:
+		b.namedValues(row, e, f)
+	case record.KindString, record.KindWord, record.KindStrings, record.KindWords, record.KindNumber,
+		record.KindNumbers, record.KindRows, record.KindInt, record.KindBool, record.KindDay, record.KindInstant,
+		record.KindBounds, record.KindScalar, record.KindScalars, record.KindLook:
+		b.leaf(row, n, f)
+	}
+}
+
+func (b *binder) oneTable(row *record.Key, e record.Entry, f reflect.Value) {
+	if e.Value.Kind != record.TableNode {
+		b.wrongType(row, e.Value)
+		refuse(f, e.Value.Span)
+		return
+	}
+	if f.Kind() == reflect.Pointer {
+		f.Set(reflect.New(f.Type().Elem()))
+		f = f.Elem()
+	}
+	b.table(e.Value, f, row.Below(), headOf(e))
+}
+
+// headOf is the place of a table's head.
+func headOf(e record.Entry) diag.Span {
+	// A table in braces begins after its key; a head begins before it.
+	if e.Value.Span.Start > e.KeySpan.Start {
+		return e.KeySpan
+	}
+	return e.Value.Span
+}
+
+func (b *binder) namedTables(row *record.Key, e record.Entry, f reflect.Value) {
+	if e.Value.Kind != record.TableNode {
+		b.wrongType(row, e.Value)
+		refuse(f, e.Value.Span)
+		return
+	}
+	for _, named := range e.Value.Entries {
+		b.name(named)
+		elem := reflect.New(f.Type().Elem().Elem())
+		elem.Elem().FieldByName("Name").SetString(named.Key)
+		f.Set(reflect.Append(f, elem))
+		switch named.Value.Kind {
+		case record.TableNode:
+			b.table(named.Value, elem.Elem(), row.Below(), headOf(named))
+		case record.UnreadNode:
+			refuse(elem, named.Value.Span)
+		default:
+			b.notTable(row, named)
+			refuse(elem, named.Value.Span)
+		}
+	}
+}
+
+// notTable reports a value where tables under names are expected.
+func (b *binder) notTable(row *record.Key, e record.Entry) {
+	d := diag.Error("R203", e.Value.Span, "%q in %s takes a table, not %s", e.Key, row.Path, describe(e.Value))
+	for _, r := range record.KeysIn(row.Below()) {
+		if r.Name() == e.Key {
+			d = d.WithHelp("the table of %s needs a name: [%s.NAME]", row.Name(), row.Path)
+		}
+	}
+	b.list.Add(d)
+}
+
+// name checks a name that the user gave.
+func (b *binder) name(e record.Entry) {
+	if !namePattern.MatchString(e.Key) {
+		b.list.Add(diag.Error("R206", e.KeySpan, "%s is no name", quoteShort(e.Key)).
+			WithHelp("a name begins with a letter a to z and goes on with letters, digits, _ and -"))
+	}
+}
+
+func (b *binder) tables(row *record.Key, e record.Entry, f reflect.Value) {
+	n := e.Value
+	if n.Kind == record.TableNode && row.Parent() == "" {
+		b.list.Add(diag.Error("R203", n.Span, "%s is one of several: its head has two brackets", row.Name()).WithHelp("write [[%s]]", row.Path))
+		refuse(f, n.Span)
+		return
+	}
+	if n.Kind != record.ArrayNode {
+		b.wrongType(row, n)
+		refuse(f, n.Span)
+		return
+	}
+	for _, item := range n.Items {
+		elem := reflect.New(f.Type().Elem().Elem())
+		f.Set(reflect.Append(f, elem))
+		if item.Kind != record.TableNode {
+			b.list.Add(diag.Error("R203", item.Span, "%q takes tables, not %s", row.Name(), describe(item)).
+				WithHelp("%s", exampleOf(row)))
+			refuse(elem, item.Span)
+			continue
+		}
+		b.table(item, elem.Elem(), row.Below(), item.Span)
+	}
+}
+
+// exampleOf shows an array of inline tables with its first keys.
+func exampleOf(row *record.Key) string {
+	var keys []string
+	for _, k := range record.KeysIn(row.Below()) {
+		if k.Required {
+			keys = append(keys, k.Name()+" = …")
+		}
+	}
+	if len(keys) == 0 {
+		keys = []string{record.KeysIn(row.Below())[0].Name() + " = …"}
+	}
+	return "write " + row.Name() + " = [ { " + strings.Join(keys, ", ") + " } ]"
+}
+
+// namedValues binds a table of texts or numbers under the user's own names.
+func (b *binder) namedValues(row *record.Key, e record.Entry, f reflect.Value) {
+	if e.Value.Kind != record.TableNode {
+		b.wrongType(row, e.Value)
+		return
+	}
+	leaf := record.Key{Path: row.Path + ".NAME", Kind: record.KindString, Ready: true, Range: row.Range}
+	if row.Kind == record.KindNamedNumbers {
+		leaf.Kind = record.KindNumber
+	}
+	for _, named := range e.Value.Entries {
+		if row.Name() != "labels" { // codes of a data file are what they are
+			b.name(named)
+		}
+		elem := reflect.New(f.Type().Elem()).Elem()
+		elem.FieldByName("Name").SetString(named.Key)
+		elem.FieldByName("At").Set(reflect.ValueOf(named.KeySpan))
+		v := elem.Field(elem.NumField() - 1)
+		if named.Value.Kind == record.UnreadNode {
+			refuse(v, named.Value.Span)
+		} else {
+			leaf.Path = row.Path + "." + named.Key
+			b.leaf(&leaf, named.Value, v)
+		}
+		f.Set(reflect.Append(f, elem))
+	}
+}
+
+// refuse marks a field as written and at fault: every value below it gets the
+// place, none is stated.
+func refuse(f reflect.Value, at diag.Span) {
+	switch f.Kind() {
+	case reflect.Pointer:
+		if f.IsNil() {
+			f.Set(reflect.New(f.Type().Elem()))
+		}
+		refuse(f.Elem(), at)
+	case reflect.Slice:
+		if t := f.Type().Elem(); t.Kind() == reflect.Pointer {
+			elem := reflect.New(t.Elem())
+			refuse(elem, at)
+			f.Set(reflect.Append(f, elem))
+		}
+	case reflect.Struct:
+		if s := f.FieldByName("Span"); s.IsValid() {
+			s.Set(reflect.ValueOf(at))
+			return
+		}
+		if s := f.FieldByName("At"); s.IsValid() {
+			s.Set(reflect.ValueOf(at))
+		}
+		for _, i := range fields[f.Type()] {
+			refuse(f.Field(i), at)
+		}
+	}
+}
+
+// describe says what a value is, quoting it.
+func describe(n *record.Node) string {
+	switch n.Kind {
+	case record.TableNode:
+		return "a table"
+	case record.ArrayNode:
+		return "an array"
+	case record.StringNode:
+		if utf8.RuneCountInString(n.Text) == 0 {
+			return "an empty text"
+		}
+		return "the text " + quoteShort(n.Text)
+	case record.IntegerNode:
+		return "the number " + strconv.FormatInt(n.Int, 10)
+	case record.FloatNode:
+		return "the number " + record.FormatNumber(n.Float)
+	case record.BoolNode:
+		return strconv.FormatBool(n.Bool)
+	case record.InstantNode:
+		return "the date and time " + n.Text
+	case record.LocalDateTimeNode:
+		return "the date and time " + n.Text + " without an offset"
+	case record.LocalDateNode:
+		return "the date " + n.Text
+	case record.LocalTimeNode:
+		return "the time " + n.Text
+	case record.UnreadNode:
+		return "a value at fault"
+	}
+	return "a value"
+}
+
+// words lists words for a sentence.
+func words(list []string) string {
+	return strings.Join(list, ", ")
+}
