@@ -32,7 +32,8 @@ type Result struct {
 	Masked bool
 
 	Outcomes    []Outcome
-	Studies     []Study // every entry, in record order: results, earlier, missing
+	Studies     []Study      // every entry, in record order: results, earlier, missing
+	Totals      []GroupTotal // page one: counts per outcome of a primary hypothesis and group, over its analysed entries
 	Hypotheses  []Hypothesis
 	Pooled      []Pooled
 	Combined    []Combined
@@ -129,9 +130,10 @@ type Study struct {
 	Groups              []GroupNumbers
 	Source              string
 	File                string
-	Analysis            Analysis // Method "" when not computed
-	P                   P        // two-sided at the null
-	BareP               *BareP   // entry that gives only a p-value
+	Analysis            Analysis        // Method "" when not computed
+	P                   P               // two-sided at the null
+	BareP               *BareP          // entry that gives only a p-value
+	Survival            []SurvivalCurve // time-to-event data
 }
 
 // BareP is a p-value that came without an estimate.
@@ -150,6 +152,25 @@ type GroupNumbers struct {
 	N, Mean, SD, Median, Events, Exposure, R       Opt
 	Assessed, Randomised, Received, Lost, Analysed Opt // flow
 	Missing                                        int // rows dropped with this group known
+}
+
+// GroupTotal counts one group of one outcome over all its analysed entries.
+// Group is "" for one-sample and paired measures. A number nobody stated does
+// not apply; Planned is of [plan.size] or the plan of looks.
+type GroupTotal struct {
+	Outcome, Group                         string
+	Planned, Randomised, Analysed, Missing Opt
+}
+
+// SurvivalCurve is the Kaplan–Meier curve of one group: a step at each event
+// time, with pointwise limits at the plan's level, and the numbers at risk at
+// a few round times.
+type SurvivalCurve struct {
+	Group                 string
+	Time, Share           []float64
+	Low, High             []float64 // nil: no limits
+	Censored              []float64 // times of censoring, ascending
+	RiskTimes, RiskCounts []float64
 }
 
 // Analysis is one estimate with its interval, on the effect's own scale; for
@@ -285,6 +306,7 @@ type Pooled struct {
 	I2, I2Low, I2High, H2         Opt
 	Tau2, Tau2Low, Tau2High       Opt
 	PredictionLow, PredictionHigh Opt
+	PredictionReading             Reading   // where the prediction interval falls against null and region
 	Share                         []float64 // weight per study
 	LeaveOneOut                   []LeftOne
 	Cumulative                    []Step

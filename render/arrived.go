@@ -1,0 +1,262 @@
+package render
+
+import (
+	"steelyard/compute/result"
+	"steelyard/render/number"
+)
+
+// arrived lists every entry, the numbers behind it, the flow and the files.
+func (c *composer) arrived() {
+	if len(c.res.Studies) == 0 && len(c.res.Files) == 0 {
+		return
+	}
+	c.heading(1, "What arrived", "arrived")
+	c.studyTable()
+	if !c.res.Masked {
+		c.groupTable()
+		c.flowTable()
+		c.survivalFigures()
+	} else {
+		c.totalsTable()
+	}
+	c.fileTable()
+}
+
+// studyTable is one row an entry, analysed or not.
+func (c *composer) studyTable() {
+	t := newTable("Results, each analysed alone at the plan's descriptive level", "Study", "Outcome", "Set", "Known", "Look", ">n", "#Estimate", "Interval", "#p at the null", "Use")
+	for i := range c.res.Studies {
+		s := &c.res.Studies[i]
+		o := outcomeOf(c.res, s.Outcome)
+		sh := c.studyShown(s, o)
+		use := useText(s.Use)
+		if s.Why != "" {
+			use += ": " + s.Why
+		}
+		n := ""
+		if s.Analysis.N > 0 {
+			n = number.Count(s.Analysis.N)
+		}
+		p := ""
+		switch {
+		case s.P.OK:
+			p = number.P(s.P)
+		case s.BareP != nil && !c.res.Masked:
+			p = bareText(s.BareP)
+		}
+		interval := sh.Range()
+		if interval != "" {
+			interval += " (" + number.Level(s.Analysis.Level) + ")"
+		}
+		row := t.row(s.Study, o.Label, s.Set, dateText(s.Date), s.Look, n, sh.EstimateUnit(), interval, p, use)
+		row.Grey = s.Use != result.Analysed && s.Use != result.MaskedUse
+	}
+	t.note(c.sourcesNote())
+	t.to(c)
+}
+
+// studyShown is an entry's own estimate as text; empty while masked.
+func (c *composer) studyShown(s *result.Study, o *result.Outcome) number.Shown {
+	f := number.Of(o)
+	if s.Use == result.MaskedUse || s.Analysis.Method == "" {
+		return number.Shown{}
+	}
+	return f.Interval(s.Analysis.Estimate, s.Analysis.Low, s.Analysis.High, outcomePoints(o)...)
+}
+
+// outcomePoints are the points of an outcome that exist.
+func outcomePoints(o *result.Outcome) []float64 {
+	var p []float64
+	for _, x := range []result.Opt{o.Low, o.Null, o.High} {
+		if x.OK {
+			p = append(p, x.V)
+		}
+	}
+	return p
+}
+
+// useText is what became of an entry.
+func useText(u result.Use) string {
+	switch u {
+	case result.Analysed:
+		return "analysed"
+	case result.LeftOut:
+		return "left out"
+	case result.EarlierUse:
+		return "earlier than the plan, shown only"
+	case result.Superseded:
+		return "superseded"
+	case result.MaskedUse:
+		return "masked"
+	case result.MissingUse:
+		return "missing"
+	case result.NotComputed:
+		return "not computable"
+	}
+	return string(u)
+}
+
+// bareText is a p-value that came without an estimate, as it was given.
+func bareText(b *result.BareP) string {
+	rel := b.Relation
+	if rel == "" {
+		rel = "="
+	}
+	s := rel + number.Hard + number.Plain(b.Value)
+	if b.Sides == 1 {
+		s += ", one-sided"
+	}
+	if b.Direction != "" {
+		s += ", " + b.Direction
+	}
+	return s + " (as given)"
+}
+
+// sourcesNote lists where results are written down.
+func (c *composer) sourcesNote() string {
+	var s string
+	for _, st := range c.res.Studies {
+		if st.Source != "" {
+			s += st.Study + ": " + fullStop(st.Source) + " "
+		}
+	}
+	if s == "" {
+		return ""
+	}
+	return "Sources. " + s[:len(s)-1]
+}
+
+// groupTable prints the numbers of each group as the entry gave them.
+func (c *composer) groupTable() {
+	t := newTable("The numbers by group", "Study", "Outcome", "Group", ">n", "#Mean", "#SD", "#Median", ">Events", ">Exposure", "#r", ">Missing")
+	for i := range c.res.Studies {
+		s := &c.res.Studies[i]
+		if s.Use == result.MaskedUse {
+			continue
+		}
+		o := outcomeOf(c.res, s.Outcome)
+		for _, g := range s.Groups {
+			missing := ""
+			if g.Missing > 0 {
+				missing = number.Int(g.Missing)
+			}
+			row := t.row(s.Study, o.Label, g.Name, number.CountOpt(g.N), spreadText(o, g.Mean, g.SD), spreadText(o, g.SD, g.SD),
+				spreadText(o, g.Median, g.SD), number.CountOpt(g.Events), plainOpt(g.Exposure), number.SignificantOpt(g.R, 3), missing)
+			row.Grey = s.Use != result.Analysed
+		}
+	}
+	t.to(c)
+}
+
+// spreadText writes a value of the outcome's unit to the decimals of a spread.
+func spreadText(o *result.Outcome, v, sd result.Opt) string {
+	if !v.OK {
+		return number.Absent
+	}
+	f := number.Format{Digits: o.Digits}
+	if !sd.OK || sd.V <= 0 {
+		return number.Significant(v.V, 4)
+	}
+	return f.Value(v.V, sd.V/10)
+}
+
+// plainOpt writes a stated number.
+func plainOpt(o result.Opt) string {
+	if !o.OK {
+		return number.Absent
+	}
+	return number.Plain(o.V)
+}
+
+// flowTable prints how many were assessed, randomised, received, lost,
+// analysed.
+func (c *composer) flowTable() {
+	t := newTable("Flow", "Study", "Group", ">Assessed", ">Randomised", ">Received", ">Lost", ">Analysed")
+	for i := range c.res.Studies {
+		s := &c.res.Studies[i]
+		for _, g := range s.Groups {
+			if !g.Assessed.OK && !g.Randomised.OK && !g.Received.OK && !g.Lost.OK && !g.Analysed.OK {
+				continue
+			}
+			t.row(s.Study, g.Name, number.CountOpt(g.Assessed), number.CountOpt(g.Randomised), number.CountOpt(g.Received),
+				number.CountOpt(g.Lost), number.CountOpt(g.Analysed))
+		}
+	}
+	t.to(c)
+}
+
+// totalsTable prints what may be shown while results are masked.
+func (c *composer) totalsTable() {
+	c.small("Some results are masked: of these only totals over all groups are shown.")
+	t := newTable("Totals of masked results", "Study", "Outcome", ">n", "#SD, labels ignored", ">Events", ">Exposure", ">Missing")
+	for i := range c.res.Studies {
+		s := &c.res.Studies[i]
+		if s.Use != result.MaskedUse {
+			continue
+		}
+		o := outcomeOf(c.res, s.Outcome)
+		for _, g := range s.Groups {
+			if g.Name != "" {
+				continue
+			}
+			missing := ""
+			if g.Missing > 0 {
+				missing = number.Int(g.Missing)
+			}
+			t.row(s.Study, o.Label, number.CountOpt(g.N), spreadText(o, g.SD, g.SD), number.CountOpt(g.Events), plainOpt(g.Exposure), missing)
+		}
+	}
+	t.to(c)
+}
+
+// fileTable prints data files with digests and dropped rows by reason.
+func (c *composer) fileTable() {
+	t := newTable("Data files", "File", "Set", ">Rows", ">Used", "Dropped")
+	for _, f := range c.res.Files {
+		t.row(f.Path, f.Set, number.Int(f.Rows), number.Int(f.Used), droppedText(f.Dropped))
+	}
+	t.to(c)
+	var fs facts
+	seen := map[string]bool{}
+	for _, f := range c.res.Files {
+		if f.SHA256 != "" && !seen[f.Path] {
+			seen[f.Path] = true
+			fs.code("SHA-256 of "+f.Path, f.SHA256)
+		}
+	}
+	fs.to(c, 1)
+}
+
+// droppedText counts rows by reason and group.
+func droppedText(d []result.Dropped) string {
+	if len(d) == 0 {
+		return "none"
+	}
+	var s string
+	for i, x := range d {
+		if i > 0 {
+			s += "; "
+		}
+		s += number.Int(x.Count) + ": " + x.Reason
+		if x.Group != "" {
+			s += " (" + x.Group + ")"
+		}
+		if x.Why != "" {
+			s += ", " + x.Why
+		}
+	}
+	return s
+}
+
+// survivalFigures draws the curves of time-to-event data.
+func (c *composer) survivalFigures() {
+	for i := range c.res.Studies {
+		s := &c.res.Studies[i]
+		if len(s.Survival) == 0 || s.Use == result.MaskedUse {
+			continue
+		}
+		if fig := c.survivalFigure(s); fig != nil {
+			c.add(*fig)
+		}
+	}
+}

@@ -1,0 +1,282 @@
+package render
+
+import (
+	"path/filepath"
+	"strings"
+
+	"steelyard/compute/result"
+	"steelyard/protocol/record"
+	"steelyard/render/number"
+	"steelyard/render/page"
+)
+
+// pageOne decides: all that a reader with one minute needs, on one page.
+func (c *composer) pageOne() {
+	c.add(page.Heading{Level: 0, Text: page.T(c.res.Record.Title), Anchor: "top"})
+	c.identityFacts()
+	if q := c.rec.Plan.Question.V; q != "" {
+		c.add(page.Paragraph{Text: page.T(q), Style: page.Lead})
+	}
+	c.small(c.kindOfComparison())
+	primary := c.primary()
+	for _, h := range primary {
+		c.add(c.verdictBlock(h))
+	}
+	c.small(c.otherClaims(len(primary)))
+	c.arrivalFacts(primary)
+	c.supports(primary)
+	c.closingFacts()
+	c.pageOneCaution()
+	c.small(c.howToVerify())
+}
+
+// identityFacts are status, number, version, digest, date.
+func (c *composer) identityFacts() {
+	r := &c.res.Record
+	var f facts
+	f.add("Record", identity(r))
+	f.add("Status", statusText(r))
+	date := dateText(r.Date)
+	if date == "" {
+		date = "undated"
+	}
+	f.add("Date", date)
+	f.add("Setting", r.Setting)
+	f.code("Record SHA-256", short(r.SourceSHA256))
+	f.code("Plan SHA-256", short(r.PlanSHA256))
+	f.to(c, 2)
+}
+
+// statusText is document control and stage: "draft; interim: more results may come".
+func statusText(r *result.Record) string {
+	var parts []string
+	if r.Status != "" {
+		parts = append(parts, r.Status)
+	}
+	switch r.Stage {
+	case result.PlanOnly:
+		parts = append(parts, "plan only")
+	case result.Interim:
+		parts = append(parts, "interim, more results may come")
+	case result.Complete:
+		parts = append(parts, "complete, no more results will come")
+	}
+	return strings.Join(parts, "; ")
+}
+
+// kindOfComparison says what is compared with what, and which way is better.
+func (c *composer) kindOfComparison() string {
+	var out []string
+	if s := c.rec.Plan.Comparison.V; s != "" {
+		out = append(out, fullStop(s))
+	}
+	seen := map[string]bool{}
+	for _, h := range c.primary() {
+		if seen[h.Outcome] {
+			continue
+		}
+		seen[h.Outcome] = true
+		o := outcomeOf(c.res, h.Outcome)
+		s := o.Label + ": " + effectName(o)
+		if d := direction(o); d != "" {
+			s += "; " + d
+		}
+		out = append(out, s+".")
+	}
+	return strings.Join(out, " ")
+}
+
+// fullStop ends a sentence of the user's.
+func fullStop(s string) string {
+	s = strings.TrimSpace(s)
+	if s == "" || strings.ContainsAny(s[len(s)-1:], ".!?…:") {
+		return s
+	}
+	return s + "."
+}
+
+// primary are the primary hypotheses; all where none is.
+func (c *composer) primary() []*result.Hypothesis {
+	var p, all []*result.Hypothesis
+	for i := range c.res.Hypotheses {
+		h := &c.res.Hypotheses[i]
+		all = append(all, h)
+		if h.Role == "primary" || h.Role == "" {
+			p = append(p, h)
+		}
+	}
+	if len(p) == 0 {
+		return all
+	}
+	return p
+}
+
+// verdictBlock is the page-one block of one hypothesis.
+func (c *composer) verdictBlock(h *result.Hypothesis) page.Verdict {
+	v := voiceOf(c.res, h)
+	j := &h.Judged
+	b := page.Verdict{Name: h.Name, Word: VerdictWord(j.Verdict), Tone: tone(j.Verdict), Qualify: c.qualify(h)}
+	b.Claim = page.T(capital(v.claim()) + ".")
+	b.Answer = v.answer(j)
+	if name, words := reading(j.Reading, v.o.Better); name != "" && judged(j.Verdict) {
+		b.Reading = []page.Inline{page.Text("Reading: "), page.Strong(name), page.Text(" – " + words + ".")}
+	}
+	b.Region = page.T(v.regionText())
+	b.Figure = c.beam(h)
+	return b
+}
+
+// tone maps a verdict to how it stands.
+func tone(v result.Verdict) page.Tone {
+	switch v {
+	case result.Established, result.Suggested:
+		return page.Established
+	case result.Contradicted:
+		return page.Contradicted
+	case result.Open:
+		return page.Open
+	case result.Pending, result.Described, result.Masked:
+		return page.Neutral
+	}
+	return page.Neutral
+}
+
+// qualify is what must stand beside the verdict word.
+func (c *composer) qualify(h *result.Hypothesis) string {
+	var q []string
+	if h.PostHoc && judged(h.Verdict) {
+		q = append(q, "post hoc")
+	}
+	if h.Role == "exploratory" {
+		q = append(q, "exploratory, unadjusted")
+	}
+	if h.Evidence == "combined" && judged(h.Verdict) {
+		q = append(q, "in at least one study")
+	}
+	if h.Evidence == "pooled" && judged(h.Verdict) {
+		q = append(q, "pooled over "+plural(len(h.Studies), "study", "studies"))
+	}
+	return strings.Join(q, "; ")
+}
+
+// answer is the estimate with the interval that decides, or why there is none.
+func (v voice) answer(j *result.Judged) []page.Inline {
+	switch j.Verdict {
+	case result.Pending:
+		return page.T("No result has arrived yet.")
+	case result.Masked:
+		return page.T("The results are masked until a planned look.")
+	}
+	if j.Reason != nil {
+		return page.T("Not decided: " + fullStop(noteText(*j.Reason)))
+	}
+	s := v.shown(j)
+	var in []page.Inline
+	if s.Estimate != "" {
+		in = append(in, page.Text(capital(v.t.short)+" "), page.Strong(s.EstimateUnit()))
+	}
+	if r := s.Range(); r != "" {
+		if len(in) > 0 {
+			in = append(in, page.Text("; "))
+		}
+		in = append(in, page.Text(number.Level(j.Level)+" interval "), page.Strong(r))
+		if !j.IntervalDecides && judged(j.Verdict) {
+			in = append(in, page.Text(" (does not decide)"))
+		}
+	}
+	if p := decidingP(&v.h.Judged); p.OK && judged(j.Verdict) && j == &v.h.Judged {
+		in = append(in, page.Text("; "+pName(j)+number.PEquals(p, v.h.Alpha)))
+	}
+	in = append(in, page.Text("."))
+	if a := v.aside(j); a != "" {
+		in = append(in, page.Text(" "+a))
+	}
+	return in
+}
+
+// decidingP is the adjusted p where there is one.
+func decidingP(j *result.Judged) result.P {
+	if j.PAdjusted.OK {
+		return j.PAdjusted
+	}
+	return j.P
+}
+
+// pName stands before the p of decidingP.
+func pName(j *result.Judged) string {
+	if j.PAdjusted.OK {
+		return "adjusted "
+	}
+	return ""
+}
+
+// regionText is the margin or region and why it is that size.
+func (v voice) regionText() string {
+	why := v.h.MarginWhy
+	if why == "" {
+		why = v.o.Why
+	}
+	var s string
+	switch v.h.Claim {
+	case "noninferior":
+		if m := v.harm(); m.OK {
+			s = "Margin " + v.f.PointUnit(m.V)
+		}
+	case "below", "above":
+		if v.h.Limit.OK {
+			s = "Limit " + v.f.PointUnit(v.h.Limit.V)
+		}
+	}
+	if r := v.region(); r != "" {
+		if s != "" {
+			s += "; too small to matter: " + r
+		} else {
+			s = "Too small to matter: " + r
+		}
+	}
+	if s == "" {
+		return "No smallest effect that matters was stated."
+	}
+	if why != "" {
+		return s + ". Why this size: " + fullStop(why)
+	}
+	return s + "."
+}
+
+// otherClaims lists the verdicts that page one does not show in full.
+func (c *composer) otherClaims(shown int) string {
+	if shown == len(c.res.Hypotheses) {
+		return ""
+	}
+	var parts []string
+	for i := range c.res.Hypotheses {
+		h := &c.res.Hypotheses[i]
+		if h.Role == "primary" || h.Role == "" {
+			continue
+		}
+		parts = append(parts, h.Name+" ("+h.Role+", "+claimName(h.Claim)+"): "+string(h.Verdict))
+	}
+	return "Also in this record: " + strings.Join(parts, "; ") + "."
+}
+
+// howToVerify says how this file is checked.
+func (c *composer) howToVerify() string {
+	if c.res.Masked || !c.attaches("record") {
+		return "To check this file: steelyard compile with the record of the digest above prints the same document. The record is not attached to this file."
+	}
+	name := strings.TrimSuffix(filepath.Base(c.in.Source.Name), ".toml")
+	if name == "" || name == "-" || name == "." {
+		name = "NAME"
+	}
+	return "To check this file: steelyard verify " + name + ".pdf takes the record out of it, compiles it again and compares every number. Engine " + c.res.Engine + "."
+}
+
+// bodyOf finds the label of an outcome in the record, nil when it has none.
+func (c *composer) outcomeRecord(name string) *record.Outcome {
+	for _, o := range c.rec.Plan.Outcomes {
+		if o.Name == name {
+			return o
+		}
+	}
+	return nil
+}

@@ -1,0 +1,280 @@
+package render
+
+import (
+	"strings"
+
+	"steelyard/compute/result"
+	"steelyard/render/number"
+	"steelyard/render/page"
+)
+
+// arrivalFacts are the numbers per group, the looks, the seal and what is not
+// in the analysis.
+func (c *composer) arrivalFacts(primary []*result.Hypothesis) {
+	var f facts
+	f.add("Numbers", c.numbers(primary))
+	f.add("Looks", c.looksTaken())
+	f.add("Seal", c.sealText())
+	f.add("Changes", c.changeCounts())
+	f.add("Not analysed", c.notAnalysed())
+	f.to(c, 1)
+}
+
+// numbers are planned, randomised, analysed and missing per group.
+func (c *composer) numbers(primary []*result.Hypothesis) string {
+	if len(c.res.Totals) > 0 {
+		var parts []string
+		many := false
+		for _, t := range c.res.Totals {
+			many = many || t.Outcome != c.res.Totals[0].Outcome
+		}
+		for _, t := range c.res.Totals {
+			name := t.Group
+			if name == "" {
+				name = "all"
+			}
+			if many {
+				name = outcomeOf(c.res, t.Outcome).Label + ", " + name
+			}
+			parts = append(parts, name+": "+strings.Join(totalParts(t), ", "))
+		}
+		return strings.Join(parts, "; ") + "."
+	}
+	if len(primary) == 0 || c.res.Masked {
+		return ""
+	}
+	var parts []string
+	for i := range c.res.Studies {
+		s := &c.res.Studies[i]
+		if s.Outcome != primary[0].Outcome || s.Use != result.Analysed {
+			continue
+		}
+		for _, g := range s.Groups {
+			if t := groupParts(&g); len(t) > 0 {
+				name := s.Study
+				if g.Name != "" {
+					name += ", " + g.Name
+				}
+				parts = append(parts, name+": "+strings.Join(t, ", "))
+			}
+		}
+	}
+	if len(parts) > 4 {
+		return "Listed by study and group under What arrived."
+	}
+	if len(parts) == 0 {
+		return ""
+	}
+	return strings.Join(parts, "; ") + "."
+}
+
+// totalParts are the counts of one group, those that are known.
+func totalParts(t result.GroupTotal) []string {
+	var p []string
+	add := func(o result.Opt, word string) {
+		if o.OK {
+			p = append(p, number.Count(o.V)+number.Hard+word)
+		}
+	}
+	add(t.Planned, "planned")
+	add(t.Randomised, "randomised")
+	add(t.Analysed, "analysed")
+	add(t.Missing, "missing")
+	return p
+}
+
+// groupParts are the counts of one group of one entry.
+func groupParts(g *result.GroupNumbers) []string {
+	var p []string
+	add := func(o result.Opt, word string) {
+		if o.OK {
+			p = append(p, number.Count(o.V)+number.Hard+word)
+		}
+	}
+	add(g.Randomised, "randomised")
+	if g.N.OK {
+		add(g.N, "analysed")
+	} else {
+		add(g.Analysed, "analysed")
+	}
+	if g.Missing > 0 {
+		p = append(p, number.Int(g.Missing)+number.Hard+"missing")
+	}
+	return p
+}
+
+// looksTaken counts planned and taken looks; "" in a plan without looks.
+func (c *composer) looksTaken() string {
+	l := c.rec.Plan.Looks
+	if l == nil && len(c.res.Looks) == 0 {
+		return ""
+	}
+	var parts []string
+	if l != nil {
+		if l.Anytime.V {
+			parts = append(parts, "valid at every look, planned or not")
+		} else if n := len(l.Fractions.V); n > 0 {
+			parts = append(parts, number.Int(n)+" planned")
+		}
+	}
+	taken, unplanned := map[string]bool{}, map[string]bool{}
+	for _, k := range c.res.Looks {
+		key := k.Look + " " + k.Date.String()
+		if k.Look == "unplanned" {
+			unplanned[key] = true
+		} else {
+			taken[key] = true
+		}
+	}
+	parts = append(parts, number.Int(len(taken))+" taken")
+	if len(unplanned) > 0 {
+		parts = append(parts, number.Int(len(unplanned))+" unplanned")
+	}
+	for _, k := range c.res.Looks {
+		if k.Crossed == "efficacy" || k.Crossed == "futility" {
+			parts = append(parts, k.Hypothesis+" crossed its "+k.Crossed+" boundary at look "+k.Look)
+		}
+	}
+	if l != nil && l.Masked.Stated && !l.Masked.V {
+		parts = append(parts, "masking turned off")
+	}
+	return strings.Join(parts, "; ") + "."
+}
+
+// sealText says how the seal stands to the results.
+func (c *composer) sealText() string {
+	s := &c.res.Seal
+	if s.State == "broken" {
+		return "Broken chain: " + fullStop(s.Broken)
+	}
+	return capital(orderText(s.Order)) + sealWhen(s)
+}
+
+// orderText is the order of seal and results in words.
+func orderText(order string) string {
+	switch order {
+	case "before-results":
+		return "sealed before results"
+	case "same-day":
+		return "sealed on the same day as results, order unproven"
+	case "after-results":
+		return "sealed after results"
+	}
+	return "unsealed: nothing shows that the plan came before the results"
+}
+
+// sealWhen is when the binding seal was made.
+func sealWhen(s *result.Seal) string {
+	switch {
+	case s.Entries == 0:
+		return "."
+	case s.Entries == 1 || s.FirstAt == s.LastAt:
+		return " (" + s.LastAt + ")."
+	}
+	return " (" + number.Int(s.Entries) + " seals, the first " + s.FirstAt + ", the last " + s.LastAt + ")."
+}
+
+// changeCounts counts changes since the seal.
+func (c *composer) changeCounts() string {
+	s := &c.res.Seal
+	if s.State == "unsealed" {
+		return ""
+	}
+	declared, undeclared, words := 0, 0, 0
+	for _, ch := range s.Changes {
+		switch {
+		case ch.Wording:
+			words++
+		case ch.Declared:
+			declared++
+		default:
+			undeclared++
+		}
+	}
+	parts := []string{
+		plural(undeclared, "undeclared change of the plan", "undeclared changes of the plan"),
+		number.Int(declared) + number.Hard + "declared",
+		plural(len(s.EditedResults), "sealed result changed later", "sealed results changed later"),
+	}
+	if words > 0 {
+		parts = append(parts, plural(words, "change of wording only", "changes of wording only"))
+	}
+	if n := len(c.rec.Deviations); n > 0 {
+		parts = append(parts, plural(n, "deviation declared", "deviations declared"))
+	}
+	return strings.Join(parts, "; ") + "."
+}
+
+// notAnalysed counts what is shown but not in the analysis.
+func (c *composer) notAnalysed() string {
+	counts := map[result.Use]int{}
+	for _, s := range c.res.Studies {
+		counts[s.Use]++
+	}
+	if len(c.res.Studies) == 0 {
+		return ""
+	}
+	var parts []string
+	for _, u := range []struct {
+		use  result.Use
+		word string
+	}{{result.LeftOut, "left out"}, {result.MissingUse, "missing"}, {result.EarlierUse, "earlier than the plan"},
+		{result.Superseded, "superseded by a later look"}, {result.MaskedUse, "masked"}, {result.NotComputed, "not computable"}} {
+		if n := counts[u.use]; n > 0 {
+			parts = append(parts, plural(n, "result ", "results ")+u.word)
+		}
+	}
+	if len(parts) == 0 {
+		return "Nothing: no result was left out, missing or earlier."
+	}
+	return strings.Join(parts, "; ") + "."
+}
+
+// supports says what the results support and what they do not.
+func (c *composer) supports(primary []*result.Hypothesis) {
+	var yes, no list
+	for _, h := range primary {
+		v := voiceOf(c.res, h)
+		j := &h.Judged
+		switch j.Verdict {
+		case result.Established, result.Suggested, result.Contradicted:
+			yes.named(h.Name, v.verdict(j)+".")
+		case result.Open:
+			no.named(h.Name, v.verdict(j)+".")
+		case result.Described, result.Pending, result.Masked:
+			no.named(h.Name, v.verdict(j)+".")
+		}
+		if j.Verdict != result.Open || j.Reason == nil {
+			no.named(h.Name, notShown(j.Reading, v.o.Better))
+		}
+	}
+	for _, f := range c.res.Families {
+		yes.named(f.Name, familyLine(&f))
+	}
+	if len(yes.items) > 0 {
+		c.heading(2, "What the results support", "")
+		yes.to(c)
+	}
+	if len(no.items) > 0 {
+		c.heading(2, "What they do not", "")
+		no.to(c)
+	}
+}
+
+// closingFacts are what is still needed, the decision and its deciders.
+func (c *composer) closingFacts() {
+	var f facts
+	f.add("Still needed", c.stillNeeded())
+	f.add("Decision", c.decision())
+	f.to(c, 1)
+}
+
+// pageOneCaution adds the setting's caution.
+func (c *composer) pageOneCaution() {
+	s, _ := caution(c.res.Record.Setting)
+	if strictSetting(c.res.Record.Setting) {
+		c.add(page.Callout{Kind: page.Caution, Title: "Caution", Blocks: []page.Block{page.Paragraph{Text: page.T(s), Style: page.Small}}})
+		return
+	}
+	c.small(s)
+}
