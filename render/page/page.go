@@ -18,6 +18,8 @@ type Document struct {
 
 	Attachments []Attachment
 	Keywords    []string
+
+	Typeface []byte // a TrueType face asked for characters the built-in ones lack; nil for none
 }
 
 // Attachment is a file carried inside the PDF.

@@ -1,0 +1,29 @@
+package pdf
+
+import (
+	"bytes"
+	"os"
+	"testing"
+)
+
+func mustWrite(t testing.TB) []byte {
+	t.Helper()
+	var b bytes.Buffer
+	if err := Write(&b, sample()); err != nil {
+		t.Fatal(err)
+	}
+	return b.Bytes()
+}
+
+// The file is kept for looking at when PDF_OUT names a place.
+func TestWriteSample(t *testing.T) {
+	b := mustWrite(t)
+	if !bytes.HasPrefix(b, []byte("%PDF-1.7\n")) || !bytes.HasSuffix(b, []byte("%%EOF\n")) {
+		t.Error("the file does not begin and end as a PDF")
+	}
+	if out := os.Getenv("PDF_OUT"); out != "" {
+		if err := os.WriteFile(out, b, 0o644); err != nil {
+			t.Fatal(err)
+		}
+	}
+}
