@@ -1,15 +1,69 @@
 // Package compute is the door of the second room: a record with its data in,
-// a result out. Only this package knows both the record and the numbers.
+// a result out. Only this package knows both the record and the numbers: it
+// turns entries into inputs, asks the measures' methods, lets claims, families
+// and pools decide, and gives every note its place in the record.
+//
+//	res := compute.Run(in, "0.1.0")
 package compute
 
 import (
 	"steelyard/compute/result"
 	"steelyard/protocol"
+	"steelyard/protocol/diag"
+	"steelyard/protocol/record"
+	"steelyard/protocol/seal"
 )
 
 // Run computes everything the record asks for. The record must have no
 // errors. Diagnostics of the result are those of the record and those that
 // only the numbers can raise, sorted.
 func Run(in *protocol.Loaded, engine string) *result.Result {
-	return &result.Result{Engine: engine, Diagnostics: in.Diagnostics}
+	r := newRun(in, engine)
+	r.describe()
+	if in.Diagnostics.HasErrors() {
+		r.res.Diagnostics = in.Diagnostics
+		return r.res
+	}
+	r.studies()
+	for _, h := range r.rec.Plan.Hypotheses {
+		r.hypothesis(h)
+	}
+	r.families()
+	r.settle()
+	r.sensitivities()
+	r.beliefs()
+	r.finish()
+	return r.res
+}
+
+// run is one computation of one record.
+type run struct {
+	in    *protocol.Loaded
+	rec   *record.Record
+	res   *result.Result
+	seed  uint64
+	level float64
+	notes diag.List
+	tried []*trial // one per hypothesis, in order
+}
+
+func newRun(in *protocol.Loaded, engine string) *run {
+	r := &run{in: in, rec: in.Record, res: &result.Result{Engine: engine}, level: in.Record.Plan.Level.V}
+	if r.level == 0 {
+		r.level = 0.95
+	}
+	r.seed = seal.Seed(in.PlanSHA256)
+	if r.rec.Plan.Seed.Stated {
+		r.seed = uint64(r.rec.Plan.Seed.V)
+	}
+	return r
+}
+
+// finish gathers what the views need beside the numbers.
+func (r *run) finish() {
+	r.files()
+	r.choices()
+	r.timeline()
+	r.res.Diagnostics = append(append(diag.List{}, r.in.Diagnostics...), r.notes...)
+	r.res.Diagnostics.Sort()
 }

@@ -112,12 +112,9 @@ func (q Question) AtNullOnly() bool {
 	return false
 }
 
-// Assess computes the claim's tests, interval, reading and smallest margin.
-func Assess(inf *effect.Inference, q Question) Assessment {
+// Judge computes the claim's tests alone: what a verdict needs.
+func Judge(inf *effect.Inference, q Question) Assessment {
 	a := Assessment{Judged: q.Claim != "describe"}
-	e := q.Error()
-	a.Level = 1 - 2*e
-	a.Low, a.High = inf.Method.Limits(e)
 	switch q.Claim {
 	case "describe":
 	case "differs":
@@ -125,6 +122,15 @@ func Assess(inf *effect.Inference, q Question) Assessment {
 	default:
 		a.oneSided(inf, q)
 	}
+	return a
+}
+
+// Assess computes the claim's tests, interval, reading and smallest margin.
+func Assess(inf *effect.Inference, q Question) Assessment {
+	a := Judge(inf, q)
+	e := q.Error()
+	a.Level = 1 - 2*e
+	a.Low, a.High = inf.Method.Limits(e)
 	a.Reading = reading(inf, q, e)
 	a.smallest(q)
 	a.agree(inf, q, e)

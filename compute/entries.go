@@ -1,0 +1,240 @@
+package compute
+
+import (
+	"slices"
+	"strconv"
+	"strings"
+
+	"steelyard/compute/effect"
+	"steelyard/compute/result"
+	"steelyard/protocol/data"
+	"steelyard/protocol/record"
+)
+
+// entries lists the analysed entries of an outcome in a set, in record order.
+// Left-out entries come too when withLeftOut is set.
+func (r *run) entries(outcome, set string, withLeftOut bool) []entry {
+	var out []entry
+	for i, res := range r.rec.Results {
+		if res.Outcome.V != outcome || res.LeaveOut.Stated && !withLeftOut {
+			continue
+		}
+		if e, ok := r.entry(data.Key{Entry: i, Set: set}, res, result.Analysed); ok {
+			out = append(out, e)
+		}
+	}
+	return out
+}
+
+// entry finds an entry's numbers in a set: its vectors, or its summary when
+// it speaks of that set.
+func (r *run) entry(key data.Key, res *record.Result, use result.Use) (entry, bool) {
+	e := entry{key: key, res: res, kind: use}
+	if res.Data != nil {
+		if res.Set.Stated && res.Set.V != key.Set {
+			return e, false
+		}
+		e.vec = r.in.Tables[key]
+		return e, e.vec != nil
+	}
+	return e, !res.Set.Stated || res.Set.V == key.Set
+}
+
+// sets are the analysis sets of the plan, or one nameless set.
+func (r *run) sets() []string {
+	if len(r.rec.Plan.Sets) == 0 {
+		return []string{""}
+	}
+	var out []string
+	for _, s := range r.rec.Plan.Sets {
+		out = append(out, s.Name)
+	}
+	return out
+}
+
+// studies fills the list of entries, each with its own analysis at the
+// descriptive level.
+func (r *run) studies() {
+	for _, set := range r.sets() {
+		for i, res := range r.rec.Results {
+			use := result.Analysed
+			if res.LeaveOut.Stated {
+				use = result.LeftOut
+			}
+			r.study(data.Key{Entry: i, Set: set}, res, use)
+		}
+		for i, res := range r.rec.Earlier {
+			r.study(data.Key{Entry: -1 - i, Set: set}, res, result.EarlierUse)
+		}
+	}
+	for _, m := range r.rec.Missing {
+		r.res.Studies = append(r.res.Studies, result.Study{Study: m.Study.V, Outcome: m.Outcome.V,
+			Use: result.MissingUse, Why: m.Why.V})
+	}
+}
+
+func (r *run) study(key data.Key, res *record.Result, use result.Use) {
+	e, ok := r.entry(key, res, use)
+	o := r.rec.OutcomeNamed(res.Outcome.V)
+	if !ok || o == nil {
+		return
+	}
+	s := result.Study{Study: res.Study.V, Outcome: res.Outcome.V, Set: key.Set, Date: res.Day(), Look: lookOf(res.Look),
+		Use: use, Why: res.LeaveOut.V, Form: formOf(res), Source: res.Source.V}
+	if res.Data != nil {
+		s.File = res.Data.File.V
+	}
+	sp := r.studySpec(o)
+	if res.P != nil {
+		s.BareP = &result.BareP{Value: res.P.Value.V, Sides: int(res.P.Sides.V), Direction: res.P.Direction.V,
+			Relation: res.P.Relation.V, N: result.Opt{V: res.P.N.V, OK: res.P.N.Stated}}
+	} else {
+		in := r.input(e, sp)
+		s.Groups = groupNumbers(in, e, o)
+		inf, problem := r.analyse(sp, in)
+		if problem != nil {
+			s.Analysis.Notes = []result.Note{*problem}
+			if use == result.Analysed {
+				s.Use, s.Why = result.NotComputed, Text(*problem)
+			}
+		} else {
+			low, high := inf.Method.Limits((1 - r.level) / 2)
+			s.Analysis = analysisOf(sp, inf, r.level, low, high)
+			t := inf.Method.Test(in.Null)
+			p := twoSided(t)
+			s.P = p
+		}
+	}
+	r.res.Studies = append(r.res.Studies, s)
+}
+
+// studySpec is how an entry of an outcome is shown: by the method that the
+// first hypothesis on the outcome names, else by the default.
+func (r *run) studySpec(o *record.Outcome) spec {
+	s := spec{outcome: o, measure: record.MeasureOf(o.Measure.V), a: (1 - r.level) / 2}
+	for _, h := range r.rec.Plan.Hypotheses {
+		if h.Outcome.V == o.Name {
+			return r.specOf(h, o, s.a)
+		}
+	}
+	return s
+}
+
+func (r *run) specOf(h *record.Hypothesis, o *record.Outcome, a float64) spec {
+	s := spec{outcome: o, measure: record.MeasureOf(o.Measure.V), method: h.Method.V, strata: h.Strata.V, a: a}
+	for _, c := range h.Adjust.V {
+		s.adjust = append(s.adjust, c.V)
+	}
+	return s
+}
+
+func analysisOf(s spec, inf *effect.Inference, level, low, high float64) result.Analysis {
+	return result.Analysis{Measure: s.measure.Word, Method: inf.Word, N: inf.N, Events: inf.Events,
+		Estimate: opt(inf.Estimate), SE: inf.SE, DF: inf.DF, Level: level, Low: opt(low), High: opt(high), Notes: inf.Notes}
+}
+
+func lookOf(l record.Look) string {
+	switch {
+	case l.Unplanned:
+		return "unplanned"
+	case l.Stated:
+		return strconv.Itoa(l.Number)
+	}
+	return ""
+}
+
+func formOf(r *record.Result) string {
+	switch {
+	case r.Data != nil:
+		return "data"
+	case r.Effect != nil:
+		return "effect"
+	case r.P != nil:
+		return "p"
+	case r.Pairs != nil:
+		return "pairs"
+	case r.Sample != nil:
+		return "sample"
+	}
+	return "groups"
+}
+
+// groupNumbers says what an entry gives for each group, with its flow and
+// the rows that dropped.
+func groupNumbers(in effect.Input, e entry, o *record.Outcome) []result.GroupNumbers {
+	var out []result.GroupNumbers
+	m := record.MeasureOf(o.Measure.V)
+	counts := slices.Contains([]string{"proportion", "risk-difference", "risk-ratio", "odds-ratio"}, m.Word)
+	of := func(name string, g effect.Group) result.GroupNumbers {
+		n := result.GroupNumbers{Name: name, N: opt(g.N)}
+		switch {
+		case counts:
+			n.Events = opt(g.Events)
+		case g.Exposure > 0:
+			n.Events, n.Exposure = opt(g.Events), opt(g.Exposure)
+		case g.SD > 0 || g.Mean != 0:
+			n.Mean, n.SD = opt(g.Mean), opt(g.SD)
+		}
+		return n
+	}
+	switch {
+	case in.Given != nil:
+		if in.Given.N.OK {
+			out = append(out, result.GroupNumbers{N: in.Given.N})
+		}
+	case m.Shape == record.TwoGroups:
+		for i, g := range []effect.Group{in.First, in.Second} {
+			if len(o.Groups.V) == 2 {
+				out = append(out, of(o.Groups.V[i].V, g))
+			}
+		}
+	case m.Shape == record.Paired:
+		p := in.Pairs
+		n := p.N
+		if sum := p.Both + p.FirstOnly + p.SecondOnly + p.Neither; n == 0 {
+			n = sum
+		}
+		g := result.GroupNumbers{N: opt(n)}
+		if m.Word != "paired-risk-difference" {
+			g.Mean, g.SD = opt(p.Mean), opt(p.SD)
+		}
+		out = append(out, g)
+	default:
+		out = append(out, of("", in.Sample))
+	}
+	return withFlow(withDropped(out, e), e.res)
+}
+
+func withDropped(out []result.GroupNumbers, e entry) []result.GroupNumbers {
+	if e.vec == nil {
+		return out
+	}
+	for i := range out {
+		for _, d := range e.vec.Dropped {
+			if d.Group == out[i].Name {
+				out[i].Missing += d.Count
+			}
+		}
+	}
+	return out
+}
+
+func withFlow(out []result.GroupNumbers, res *record.Result) []result.GroupNumbers {
+	of := func(n record.Int) result.Opt { return result.Opt{V: float64(n.V), OK: n.Stated} }
+	for _, f := range res.Flow {
+		i := slices.IndexFunc(out, func(g result.GroupNumbers) bool { return g.Name == f.Name })
+		if i < 0 {
+			out = append(out, result.GroupNumbers{Name: f.Name})
+			i = len(out) - 1
+		}
+		g := &out[i]
+		g.Assessed, g.Randomised, g.Received, g.Lost, g.Analysed = of(f.Assessed), of(f.Randomised), of(f.Received), of(f.Lost), of(f.Analysed)
+	}
+	return out
+}
+
+// keyOfEarlier is the key of the i-th earlier result.
+func keyOfEarlier(i int, set string) data.Key { return data.Key{Entry: -1 - i, Set: set} }
+
+// join lists names for a message.
+func join(names []string) string { return strings.Join(names, "; ") }

@@ -1,0 +1,234 @@
+package compute
+
+import (
+	"math"
+
+	"steelyard/compute/claim"
+	"steelyard/compute/dist"
+	"steelyard/compute/effect"
+	"steelyard/compute/result"
+	"steelyard/protocol/record"
+)
+
+// trial is one hypothesis on its way to a verdict.
+type trial struct {
+	h        *record.Hypothesis
+	out      *result.Hypothesis
+	question claim.Question
+	bySet    []attempt
+	deciding int // index into bySet of the set with the largest p; -1: none
+	// p decides, against contradicts: after sets and families.
+	p, against dist.Tail
+	adjusted   bool
+}
+
+// attempt is one analysis of a hypothesis: in one set, or an alternative.
+type attempt struct {
+	set     string
+	because string
+	inf     *effect.Inference
+	a       claim.Assessment
+	problem *result.Note
+	empty   bool // no results
+	studies []string
+	spec    spec
+}
+
+// analyse asks the measure's method.
+func (r *run) analyse(s spec, in effect.Input) (*effect.Inference, *result.Note) {
+	return r.method(s, in)
+}
+
+// hypothesis tries one claim in every set it names.
+func (r *run) hypothesis(h *record.Hypothesis) {
+	o := r.rec.OutcomeNamed(h.Outcome.V)
+	q := r.question(h, o)
+	t := &trial{h: h, question: q, deciding: -1, out: r.hypothesisHead(h, o, q)}
+	sets := []string{""}
+	if len(r.rec.Plan.Sets) > 0 {
+		sets = nil
+		for _, s := range h.Sets.V {
+			sets = append(sets, s.V)
+		}
+	}
+	for _, set := range sets {
+		at := r.attempt(h, o, q, set, false)
+		t.bySet = append(t.bySet, at)
+		if at.problem != nil {
+			r.note(h.At, h.Name, *at.problem)
+		} else if at.inf != nil {
+			for _, n := range append(at.inf.Notes, at.a.Notes...) {
+				r.note(h.At, h.Name, n)
+			}
+		}
+	}
+	t.decide()
+	r.tried = append(r.tried, t)
+}
+
+func (r *run) question(h *record.Hypothesis, o *record.Outcome) claim.Question {
+	m := record.MeasureOf(o.Measure.V)
+	null, low, high, has := h.Points(o)
+	alpha, _ := h.ErrorLevel(&r.rec.Plan)
+	better := o.Better.V
+	if better == "" {
+		better = "neither"
+	}
+	return claim.Question{Claim: h.Claim.V, Better: better, Alpha: alpha, Null: null, Low: low, High: high, HasRegion: has,
+		Limit: h.Limit.V, Scale: m.Scale, RangeLow: m.Low, RangeHigh: m.High, Level: r.level}
+}
+
+func (r *run) hypothesisHead(h *record.Hypothesis, o *record.Outcome, q claim.Question) *result.Hypothesis {
+	role := h.Role.V
+	if role == "" {
+		role = "primary"
+	}
+	out := &result.Hypothesis{Name: h.Name, Outcome: o.Name, Claim: h.Claim.V, Role: role, Statement: h.Statement.V,
+		Alpha: q.Alpha, TwoSided: q.Claim == "differs", MarginWhy: h.MarginWhy.V, Evidence: "none",
+		Limit: result.Opt{V: h.Limit.V, OK: h.Limit.Stated}}
+	if q.HasRegion {
+		out.MarginLow, out.MarginHigh = result.Some(q.Low), result.Some(q.High)
+	}
+	return out
+}
+
+// attempt analyses a hypothesis in one set.
+func (r *run) attempt(h *record.Hypothesis, o *record.Outcome, q claim.Question, set string, withLeftOut bool) attempt {
+	at := attempt{set: set, spec: r.specOf(h, o, q.Error())}
+	var found []entry
+	for _, e := range r.entries(o.Name, set, withLeftOut) {
+		if wanted(h.Studies, e.res.Study.V) {
+			found = append(found, e)
+			at.studies = append(at.studies, e.res.Study.V)
+		}
+	}
+	r.gather(&at, h, q, found)
+	return at
+}
+
+func wanted(list record.Strings, study string) bool {
+	if !list.Stated {
+		return true
+	}
+	for _, s := range list.V {
+		if s.V == study {
+			return true
+		}
+	}
+	return false
+}
+
+// gather turns the entries into one inference by the stated evidence.
+func (r *run) gather(at *attempt, h *record.Hypothesis, q claim.Question, found []entry) {
+	switch {
+	case len(found) == 0:
+		at.empty = true
+	case h.Evidence.V == "pooled" && len(found) > 1:
+		at.inf, at.problem = r.pooled(at, h, found)
+	case len(found) > 1:
+		at.problem = &result.Note{Code: "S111", Message: "%d results are given and `evidence` does not say how they count together", Args: []any{len(found)}}
+	case found[0].res.P != nil:
+		at.problem = &result.Note{Code: "S113", Message: "a p-value alone gives no estimate and no interval; it can only join a combination"}
+	default:
+		at.inf, at.problem = r.analyse(at.spec, r.input(found[0], at.spec))
+	}
+	if at.inf == nil {
+		return
+	}
+	if at.inf.NullOnly && !q.AtNullOnly() {
+		at.problem = &result.Note{Code: "S104", Message: "the method %s tests the null only and cannot decide a claim at another value", Args: []any{at.inf.Word}}
+		at.inf = nil
+		return
+	}
+	at.a = claim.Assess(at.inf, q)
+}
+
+// decide finds the set that decides: the one with the largest p. A set that
+// could not be analysed leaves the claim open; a set without results leaves
+// it pending.
+func (t *trial) decide() {
+	for i, at := range t.bySet {
+		switch {
+		case at.empty || at.problem != nil || !at.judged():
+			if at.judgedOrDescribed() && t.deciding < 0 {
+				t.deciding = i
+			}
+		case t.deciding < 0 || at.a.P.LnP > t.bySet[t.deciding].a.P.LnP:
+			t.deciding = i
+		}
+	}
+}
+
+func (at attempt) done() bool              { return !at.empty && at.problem == nil }
+func (at attempt) judged() bool            { return at.done() && at.a.Judged }
+func (at attempt) judgedOrDescribed() bool { return at.done() }
+
+// blocked returns the first set that keeps the claim from being decided.
+func (t *trial) blocked() (attempt, bool) {
+	for _, at := range t.bySet {
+		if at.problem != nil {
+			return at, true
+		}
+	}
+	for _, at := range t.bySet {
+		if at.empty {
+			return at, true
+		}
+	}
+	return attempt{}, len(t.bySet) == 0
+}
+
+// numbers writes an attempt as a judged analysis without its verdict.
+func (t *trial) numbers(at attempt) result.Judged {
+	j := result.Judged{Set: at.set, Because: at.because}
+	if !at.done() {
+		j.Reason = at.problem
+		j.Verdict = result.Open
+		if at.empty {
+			j.Verdict = result.Pending
+		}
+		return j
+	}
+	a := at.a
+	if at.inf != nil {
+		j.Analysis = analysisOf(at.spec, at.inf, a.Level, a.Low, a.High)
+		j.Analysis.Notes = append(append([]result.Note{}, at.inf.Notes...), a.Notes...)
+		j.IntervalDecides = a.Judged
+		j.Reading = a.Reading
+	}
+	j.Tests = a.Tests
+	if a.Judged {
+		j.P = result.P{P: a.P.P, Ln: a.P.LnP, OK: true}
+		j.SValue = result.Some(claim.SValue(a.P.LnP))
+		j.SmallestMargin, j.SmallestLimit = a.SmallestMargin, a.SmallestLimit
+	}
+	return j
+}
+
+// verdictOf settles one attempt on its own, without families.
+func (t *trial) verdictOf(at attempt) result.Verdict {
+	if !at.done() {
+		if at.empty {
+			return result.Pending
+		}
+		return result.Open
+	}
+	return at.a.Verdict(at.a.P.P, at.a.Against.P, t.question.Alpha, t.out.Role == "exploratory")
+}
+
+// curvePoints is the length of a p-value function; costly methods get few.
+func curvePoints(inf *effect.Inference) int {
+	if inf.Costly {
+		return 33
+	}
+	return 201
+}
+
+// twoSided is a two-sided p of a test.
+func twoSided(t effect.Test) result.P {
+	p := claim.TwoSided(t)
+	if math.IsNaN(p.P) {
+		return result.P{}
+	}
+	return result.P{P: p.P, Ln: p.LnP, OK: true}
+}
