@@ -33,3 +33,9 @@ func strictSetting(setting string) bool { return setting == "clinical" || settin
 
 // noSignature is said beside every sign-off.
 const noSignature = "The program makes no electronic signature. Sign by hand, or in the system that your procedures name."
+
+// Caution is the short caution of a setting.
+func Caution(setting string) string {
+	s, _ := caution(setting)
+	return s
+}

@@ -237,3 +237,8 @@ func plural(n int, one, many string) string {
 	}
 	return number.Int(n) + number.Hard + many
 }
+
+// Better is an outcome's direction of benefit: higher, lower or neither.
+func Better(res *result.Result, outcome string) string {
+	return outcomeOf(res, outcome).Better
+}

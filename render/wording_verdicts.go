@@ -232,3 +232,6 @@ func noteText(n result.Note) string {
 	}
 	return b.String()
 }
+
+// NoteText is a note's message with its arguments.
+func NoteText(n result.Note) string { return noteText(n) }
