@@ -310,13 +310,6 @@ func (e *entry) find(header []string, list *diag.List) bool {
 }
 
 func helpColumn(name string, header []string) string {
-	if len(header) == 1 {
-		for _, s := range []string{";", "\t"} {
-			if strings.Contains(header[0], s) {
-				return "the columns must be separated by commas, not by " + quoteText(s)
-			}
-		}
-	}
 	if n := nearest(name, header); n != "" {
 		return "did you mean " + quoteText(n) + "?"
 	}

@@ -194,6 +194,10 @@ func readFile(name string, entries []*entry, files fs.FS, f *faults, list *diag.
 	for i := range header {
 		header[i] = string(c.cell(i))
 	}
+	if d, bad := separated(name, header, f.at); bad {
+		list.Add(d)
+		return 0, "", false
+	}
 	found := true
 	for _, e := range entries {
 		found = e.find(header, list) && found
@@ -224,6 +228,19 @@ func readFile(name string, entries []*entry, files fs.FS, f *faults, list *diag.
 		}
 	}
 	return read, hex.EncodeToString(hash.Sum(nil)), true
+}
+
+// separated finds a file whose columns are separated by something else.
+func separated(name string, header []string, at diag.Span) (diag.Diagnostic, bool) {
+	if len(header) == 1 {
+		for _, s := range [...][2]string{{";", "semicolons"}, {"\t", "tabs"}} {
+			if strings.Contains(header[0], s[0]) {
+				return diag.Error("D114", at, "%s is separated by %s", name, s[1]).
+					WithHelp("save it with commas between the columns, and a point in its numbers"), true
+			}
+		}
+	}
+	return diag.Diagnostic{}, false
 }
 
 // emptyRows counts the empty lines before a row of a file with one column:
