@@ -1,0 +1,95 @@
+package dist
+
+import (
+	"math"
+
+	"steelyard/compute/numeric"
+)
+
+// drop is how far, in natural logarithms, an integrand is followed below its
+// largest value: e^-45 = 3e-20.
+const drop = 45
+
+// lnIntegral is ln ∫ exp(g(v)) dv over [lo, hi] for a unimodal log integrand
+// g; either end may be infinite. The peak is looked for from guess in steps
+// that begin at width; the mass around it is cut into panels that widen
+// outward and integrated adaptively to 1e-14 of the total.
+func lnIntegral(g func(float64) float64, lo, hi, guess, width float64) float64 {
+	m, top := climb(g, lo, hi, guess, width)
+	if math.IsInf(top, -1) {
+		return math.Inf(-1)
+	}
+	f := func(v float64) float64 { return math.Exp(g(v) - top) }
+	// Breakpoints walk out from the peak by doubling steps on both sides.
+	var left, right [48]float64
+	nl := walkDown(g, m, lo, -width, top, &left)
+	nr := walkDown(g, m, hi, width, top, &right)
+	var breaks [97]float64
+	n := 0
+	for i := nl - 1; i >= 0; i-- {
+		breaks[n] = left[i]
+		n++
+	}
+	breaks[n] = m
+	n++
+	n += copy(breaks[n:], right[:nr])
+	s := numeric.Integrate(f, breaks[:n], 1e-14)
+	return top + math.Log(s)
+}
+
+// climb finds the peak of a unimodal g well enough to scale by.
+func climb(g func(float64) float64, lo, hi, guess, width float64) (m, top float64) {
+	m = min(max(guess, lo), hi)
+	top = g(m)
+	for _, dir := range [2]float64{width, -width} {
+		step := dir
+		moved := false
+		for range 200 {
+			v := min(max(m+step, lo), hi)
+			if v == m {
+				break
+			}
+			gv := g(v)
+			if !(gv > top) {
+				break
+			}
+			m, top, moved = v, gv, true
+			step *= 2
+		}
+		// The peak now lies within one step on either side.
+		if moved {
+			a, b := max(lo, m-math.Abs(step)), min(hi, m+math.Abs(step))
+			v := numeric.Golden(func(v float64) float64 { return -g(v) }, a, b, 0.05*width/max(b-a, width))
+			if gv := g(v); gv > top {
+				m, top = v, gv
+			}
+			break
+		}
+	}
+	return m, top
+}
+
+// walkDown lists points from m toward end until g has dropped out of sight.
+func walkDown(g func(float64) float64, m, end, step, top float64, out *[48]float64) int {
+	if m == end {
+		return 0
+	}
+	n := 0
+	v := m
+	for n < len(out) {
+		w := v + step
+		if (step > 0 && w >= end) || (step < 0 && w <= end) {
+			w = end
+		}
+		out[n] = w
+		n++
+		if w == end || g(w) < top-drop {
+			break
+		}
+		v = w
+		if n%2 == 0 {
+			step *= 2
+		}
+	}
+	return n
+}
