@@ -9,7 +9,7 @@ import (
 )
 
 // testOnly are modules that no build of the program holds.
-var testOnly = []string{"github.com/google/go-cmp", "github.com/rogpeppe/go-internal"}
+var testOnly = []string{"github.com/google/go-cmp", "github.com/rogpeppe/go-internal", "golang.org/x/tools"}
 
 // unlicensed lists the modules of a go.mod for which no licence is kept.
 func unlicensed(gomod string) (list []string) {
