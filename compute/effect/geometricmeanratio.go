@@ -11,7 +11,7 @@ import (
 // values, or the summary of logarithms that was given.
 func logSample(who string, g Group, design float64) (sample, *Problem) {
 	if g.Values == nil {
-		return sample{n: g.N, mean: g.LogMean, sd: g.LogSD, eff: g.N / design}, nil
+		return summary(g.N, g.LogMean, g.LogSD, design), nil
 	}
 	logs, bad := logsOf(who, g.Values)
 	if bad != nil {

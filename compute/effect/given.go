@@ -4,7 +4,6 @@ import (
 	"math"
 	"slices"
 
-	"steelyard/compute/dist"
 	"steelyard/compute/result"
 	"steelyard/protocol/record"
 )
@@ -118,7 +117,7 @@ func givenError(m *record.Measure, e *Given, y, df, slope float64) (float64, []r
 			case !(e.Low.V <= e.Estimate && e.Estimate <= e.High.V):
 				return 0, nil, problem("S103", outsideRange, "the given estimate", e.Estimate)
 			}
-			se = half / dist.TQuantile((1-e.Level.V)/2, df)
+			se = half / tQuantile((1-e.Level.V)/2, df)
 		}
 	}
 	if e.SE.OK {
@@ -126,10 +125,10 @@ func givenError(m *record.Measure, e *Given, y, df, slope float64) (float64, []r
 	} else if !e.Low.OK || !e.High.OK {
 		return 0, nil, problem("S113", noError)
 	}
-	if !(se >= 0) || !isFinite(se) {
+	if !(se >= 0 && se <= largestNumber) {
 		return 0, nil, problem("S103", outsideRange, "the given effect's standard error", se)
 	}
-	if se == 0 {
+	if se < smallestSD {
 		return 0, nil, problem("S102", noVariation, "the given effect")
 	}
 	return se, notes, nil

@@ -26,9 +26,17 @@ func (s sample) c() float64 { return s.sd * s.sd / s.eff }
 // sampleOf reads a group; individual values take the place of a summary.
 func sampleOf(g Group, design float64) sample {
 	if g.Values == nil {
-		return sample{n: g.N, mean: g.Mean, sd: g.SD, eff: g.N / design}
+		return summary(g.N, g.Mean, g.SD, design)
 	}
 	return sampleOfValues(g.Values, design)
+}
+
+func summary(n, mean, sd, design float64) sample {
+	s := sample{n: n, mean: mean, sd: sd, eff: n / design}
+	if sd >= 0 && sd < smallestSD {
+		s.sd = 0
+	}
+	return s
 }
 
 func sampleOfValues(x []float64, design float64) sample {
@@ -37,11 +45,19 @@ func sampleOfValues(x []float64, design float64) sample {
 		s.moments = numeric.MomentsOf(x)
 		s.mean, s.sd = s.moments.Mean, s.moments.SD
 	}
-	if len(x) < 2 {
+	if len(x) < 2 || s.sd < smallestSD {
 		s.sd = 0
 	}
 	return s
 }
+
+// The sizes of numbers that can be squared and divided without overflow; a
+// spread below the smallest counts as none.
+const (
+	largestNumber = 1e150
+	smallestSD    = 1e-140
+	largestCount  = 1 << 53
+)
 
 // bad reports numbers that no data can have.
 func (s sample) bad(who string) *Problem {
@@ -50,9 +66,9 @@ func (s sample) bad(who string) *Problem {
 		value float64
 		ok    bool
 	}{
-		{"n", s.n, s.n >= 0 && !math.IsInf(s.n, 0)},
-		{"mean", s.mean, isFinite(s.mean)},
-		{"sd", s.sd, s.sd >= 0 && isFinite(s.sd)},
+		{"n", s.n, s.n >= 0 && s.n <= largestCount},
+		{"mean", s.mean, math.Abs(s.mean) <= largestNumber},
+		{"sd", s.sd, s.sd >= 0 && s.sd <= largestNumber},
 	} {
 		if !v.ok {
 			return problem("S103", outsideRange, who+"'s "+v.what, v.value)

@@ -22,6 +22,9 @@ func satterthwaite(c1, nu1, c2, nu2 float64) float64 {
 		return nu1 + nu2
 	}
 	top := math.Max(c1, c2)
+	if math.IsInf(top, 1) {
+		return math.Min(nu1, nu2)
+	}
 	a, b := c1/top, c2/top
 	s := a + b
 	den := 0.0

@@ -13,15 +13,21 @@ func differencesOf(p Pairs, design float64) (sample, *Problem) {
 		}
 		return sampleOfValues(d, design), nil
 	}
-	s := sample{n: p.N, mean: p.Mean, sd: p.SD, eff: p.N / design}
+	s := summary(p.N, p.Mean, p.SD, design)
 	if p.HasParts {
 		if !(p.R >= -1 && p.R <= 1) {
 			return s, problem("S103", outsideRange, "the pairs' r", p.R)
 		}
-		s.mean = p.FirstMean - p.SecondMean
+		if !(p.FirstSD >= 0) {
+			return s, problem("S103", outsideRange, "the pairs' first sd", p.FirstSD)
+		}
+		if !(p.SecondSD >= 0) {
+			return s, problem("S103", outsideRange, "the pairs' second sd", p.SecondSD)
+		}
 		// s1^2 + s2^2 - 2 r s1 s2 without cancellation where r is near 1.
 		d := p.FirstSD - p.SecondSD
-		s.sd = math.Sqrt(math.Max(0, d*d+2*(1-p.R)*p.FirstSD*p.SecondSD))
+		sd := math.Sqrt(math.Max(0, d*d+2*(1-p.R)*p.FirstSD*p.SecondSD))
+		s = summary(p.N, p.FirstMean-p.SecondMean, sd, design)
 	}
 	return s, nil
 }

@@ -49,7 +49,7 @@ func (p *Permutation) Test(c float64) Test {
 	atMost := float64(firstAbove(p.nulls, x+p.tol))
 	atLeast := float64(len(p.nulls) - firstAbove(p.nulls, math.Nextafter(x-p.tol, math.Inf(-1))))
 	return Test{Up: counted(p.same+atMost, m), Down: counted(p.same+atLeast, m),
-		Value: p.estimate - c, Kind: "permutation", Step: true}
+		Value: ratio(p.estimate-c, 1), Kind: "permutation", Step: true}
 }
 
 // firstAbove is how many of the sorted values are at most x.

@@ -3,7 +3,6 @@ package effect
 import (
 	"math"
 
-	"steelyard/compute/dist"
 	"steelyard/compute/result"
 	"steelyard/protocol/record"
 )
@@ -31,7 +30,7 @@ func (f Fieller) Test(c float64) Test {
 		b := r * r * f.C1
 		t, df = ratio(r*f.M1-f.M2, math.Sqrt(b+f.C2)), satterthwaite(b, f.Nu1, f.C2, f.Nu2)
 	}
-	up := dist.TUpper(t, df)
+	up := tUpper(t, df)
 	return Test{Up: up, Down: up.Complement(), Value: t, DF: df, Kind: "t"}
 }
 
@@ -45,7 +44,16 @@ func (f Fieller) Limits(a float64) (low, high float64) {
 }
 
 // relative is the variance of the log ratio by the delta method.
-func (f Fieller) relative() float64 { return f.C1/(f.M1*f.M1) + f.C2/(f.M2*f.M2) }
+func (f Fieller) relative() float64 {
+	a, b := f.parts()
+	return a + b
+}
+
+// parts are the squared relative errors of the two means.
+func (f Fieller) parts() (a, b float64) {
+	a, b = math.Sqrt(f.C1)/f.M1, math.Sqrt(f.C2)/f.M2
+	return a * a, b * b
+}
 
 func ratioOfMeansFieller(in Input) (*Inference, *Problem) {
 	if in.SystematicU > 0 {
@@ -66,7 +74,7 @@ func ratioOfMeansDelta(in Input) (*Inference, *Problem) {
 	if bad != nil {
 		return nil, bad
 	}
-	a, b := f.C1/(f.M1*f.M1), f.C2/(f.M2*f.M2)
+	a, b := f.parts()
 	w := Welch(inf.Y.V, a, f.Nu1, b, f.Nu2)
 	w.Scale, w.Low = record.Log, 0
 	w = w.WithSystematic(in.SystematicU)
@@ -82,9 +90,9 @@ func ratioOfMeans(word string, in Input) (Fieller, *Inference, *Problem) {
 	switch {
 	case bad != nil:
 		return Fieller{}, nil, bad
-	case !(s1.mean > 0):
+	case !(s1.mean > smallestSD):
 		return Fieller{}, nil, problem("S103", outsideRange, "the first group's mean", s1.mean)
-	case !(s2.mean > 0):
+	case !(s2.mean > smallestSD):
 		return Fieller{}, nil, problem("S103", outsideRange, "the second group's mean", s2.mean)
 	}
 	f := Fieller{M1: s1.mean, C1: s1.c(), Nu1: s1.nu(), M2: s2.mean, C2: s2.c(), Nu2: s2.nu()}

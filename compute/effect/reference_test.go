@@ -98,7 +98,7 @@ type valueRow struct {
 	Date     string             `json:"date"`
 	Input    json.RawMessage    `json:"input"`
 	Expected map[string]float64 `json:"expected"`
-	Digits   map[string]int     `json:"digits"` // significant digits that hold; "" is the default of the row
+	Digits   map[string]int     `json:"digits"` // significant digits that hold; "all" is the default of the row
 }
 
 // values loads a file of rows under testdata/reference.
@@ -123,7 +123,7 @@ func (r valueRow) check(t reporter, name string, got float64) {
 	}
 	digits, ok := r.Digits[name]
 	if !ok {
-		digits = r.Digits[""]
+		digits = r.Digits["all"]
 	}
 	if digits <= 0 {
 		t.Errorf("%s: no digits for %q", r.ID, name)

@@ -25,8 +25,8 @@ func (m NoncentralT) Test(c float64) Test {
 		up = sureTail
 	case math.IsInf(delta, -1):
 		up = sureTail.Complement()
-	case delta == 0:
-		up = dist.TUpper(m.T, m.DF)
+	case delta == 0 || math.IsNaN(delta):
+		up = tUpper(m.T, m.DF)
 	default:
 		up = dist.NoncentralTUpper(m.T, m.DF, delta)
 	}

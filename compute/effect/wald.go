@@ -20,7 +20,7 @@ type Wald struct {
 // complement. 0/0 counts as 0; c/0 is infinite.
 func (w Wald) Test(c float64) Test {
 	t := ratio(w.Y-onScale(w.Scale, c), w.SE)
-	up := dist.TUpper(t, w.DF)
+	up := tUpper(t, w.DF)
 	out := Test{Up: up, Down: up.Complement(), Value: t, DF: w.DF, Kind: "t"}
 	if math.IsInf(w.DF, 1) {
 		out.DF, out.Kind = 0, "z"
@@ -36,7 +36,7 @@ func (w Wald) Limits(a float64) (low, high float64) {
 	case a >= 1:
 		return w.High, w.Low
 	}
-	half := dist.TQuantile(a, w.DF) * w.SE
+	half := tQuantile(a, w.DF) * w.SE
 	return w.clip(From(w.Scale, w.Y-half)), w.clip(From(w.Scale, w.Y+half))
 }
 
@@ -84,4 +84,21 @@ func sign(x float64) int {
 		return -1
 	}
 	return 1
+}
+
+// tUpper is the t tail; beyond 1e20 degrees of freedom it is the normal one,
+// whose difference no double holds in the reach of any test.
+func tUpper(t, df float64) dist.Tail {
+	if df > 1e20 {
+		df = math.Inf(1)
+	}
+	return dist.TUpper(t, df)
+}
+
+// tQuantile is its inverse.
+func tQuantile(p, df float64) float64 {
+	if df > 1e20 {
+		df = math.Inf(1)
+	}
+	return dist.TQuantile(p, df)
 }
