@@ -54,7 +54,7 @@ func (s *setter) link(parent *elem, l page.Link) *elem {
 // blocks sets a list of blocks below one another.
 func (s *setter) blocks(bs []page.Block, fr frame, parent *elem) []piece {
 	var out []piece
-	fresh := false
+	fresh, headed := false, false
 	for _, b := range bs {
 		var ps []piece
 		switch b := b.(type) {
@@ -90,6 +90,11 @@ func (s *setter) blocks(bs []page.Block, fr frame, parent *elem) []piece {
 		if len(ps) > 0 && fresh {
 			ps[0].fresh, fresh = true, false
 		}
+		h, head := b.(page.Heading)
+		if head && headed && len(ps) > 0 && h.Level > 1 {
+			ps[0].before = min(ps[0].before, 7) // headings that follow one another stand close
+		}
+		headed = head && h.Level > 0
 		out = append(out, ps...)
 	}
 	return out
@@ -268,11 +273,16 @@ func (s *setter) boxed(ps []piece, before, pad float64, bands []band) []piece {
 	}
 	out[len(out)-1].keep = true
 	out = append(out, piece{height: pad})
+	if height(out) < 0.3*s.sheet.depth() {
+		out = glued(out)
+	}
 	for i := range out {
+		under := make([]band, 0, len(bands)+len(out[i].back))
 		for _, b := range bands {
 			b.first = i == 0
-			out[i].back = append([]band{b}, out[i].back...)
+			under = append(under, b)
 		}
+		out[i].back = append(under, out[i].back...)
 	}
 	return out
 }

@@ -237,13 +237,27 @@ func wrap(cs []char, width float64) []line {
 		switch {
 		case i == len(cs):
 			best, bestW = i, solid
-		case best < 0:
-			best, bestW = i, x
+		case best < 0 || width-bestW > 40 && long(cs[best:], width):
+			best, bestW = i, solid // a word that fits on no line is begun here
 		}
 		out = append(out, line{cs[start:best], bestW})
 		start = best
 	}
 	return out
+}
+
+// long reports whether the first word is wider than a line.
+func long(cs []char, width float64) bool {
+	x := 0.0
+	for i := range cs {
+		if x += cs[i].w; x > width {
+			return true
+		}
+		if cs[i].after != joined {
+			return false
+		}
+	}
+	return false
 }
 
 // natural is the width on one line; word is that of the widest part that must

@@ -32,10 +32,13 @@ func (p *press) xmp() []byte {
 	var b strings.Builder
 	b.WriteString("<?xpacket begin=\"\ufeff\" id=\"W5M0MpCehiHzreSzNTczkc9d\"?>\n<x:xmpmeta xmlns:x=\"adobe:ns:meta/\">\n" +
 		"<rdf:RDF xmlns:rdf=\"http://www.w3.org/1999/02/22-rdf-syntax-ns#\">\n<rdf:Description rdf:about=\"\"" +
-		" xmlns:dc=\"http://purl.org/dc/elements/1.1/\" xmlns:xmp=\"http://ns.adobe.com/xap/1.0/\" xmlns:pdf=\"http://ns.adobe.com/pdf/1.3/\"" +
-		" xmlns:pdfaid=\"http://www.aiim.org/pdfa/ns/id/\" xmlns:pdfuaid=\"http://www.aiim.org/pdfua/ns/id/\" xmlns:steelyard=\"" + namespace + "\"" +
 		" xmlns:pdfaExtension=\"http://www.aiim.org/pdfa/ns/extension/\" xmlns:pdfaSchema=\"http://www.aiim.org/pdfa/ns/schema#\"" +
-		" xmlns:pdfaProperty=\"http://www.aiim.org/pdfa/ns/property#\">\n")
+		" xmlns:pdfaProperty=\"http://www.aiim.org/pdfa/ns/property#\">\n<pdfaExtension:schemas><rdf:Bag>\n")
+	schema(&b, "PDF/UA identification schema", "http://www.aiim.org/pdfua/ns/id/", "pdfuaid", "part", "Integer", "part of ISO 14289 the file is built to")
+	schema(&b, "Steelyard file schema", namespace, "steelyard", "writtenBy", "Text", "program that wrote the file")
+	b.WriteString("</rdf:Bag></pdfaExtension:schemas>\n</rdf:Description>\n<rdf:Description rdf:about=\"\"" +
+		" xmlns:dc=\"http://purl.org/dc/elements/1.1/\" xmlns:xmp=\"http://ns.adobe.com/xap/1.0/\" xmlns:pdf=\"http://ns.adobe.com/pdf/1.3/\"" +
+		" xmlns:pdfaid=\"http://www.aiim.org/pdfa/ns/id/\" xmlns:pdfuaid=\"http://www.aiim.org/pdfua/ns/id/\" xmlns:steelyard=\"" + namespace + "\">\n")
 	alt := func(tag, text string) {
 		if text != "" {
 			fmt.Fprintf(&b, "<%s><rdf:Alt><rdf:li xml:lang=\"x-default\">%s</rdf:li></rdf:Alt></%s>\n", tag, escapeXML(text), tag)
@@ -62,10 +65,7 @@ func (p *press) xmp() []byte {
 		t := p.when.Format("2006-01-02T15:04:05Z07:00")
 		fmt.Fprintf(&b, "<xmp:CreateDate>%s</xmp:CreateDate>\n<xmp:ModifyDate>%s</xmp:ModifyDate>\n", t, t)
 	}
-	b.WriteString("<pdfaExtension:schemas><rdf:Bag>\n")
-	schema(&b, "PDF/UA identification schema", "http://www.aiim.org/pdfua/ns/id/", "pdfuaid", "part", "Integer", "part of ISO 14289 the file is built to")
-	schema(&b, "Steelyard file schema", namespace, "steelyard", "writtenBy", "Text", "program that wrote the file")
-	b.WriteString("</rdf:Bag></pdfaExtension:schemas>\n</rdf:Description>\n</rdf:RDF>\n</x:xmpmeta>\n<?xpacket end=\"r\"?>")
+	b.WriteString("</rdf:Description>\n</rdf:RDF>\n</x:xmpmeta>\n<?xpacket end=\"r\"?>")
 	return []byte(b.String())
 }
 

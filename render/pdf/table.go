@@ -1,6 +1,7 @@
 package pdf
 
 import (
+	"sort"
 	"strings"
 
 	"steelyard/render/page"
@@ -200,6 +201,7 @@ func measure(cols []page.Column, head []cell, rows [][]cell, fr frame) *grid {
 		}
 	}
 	room := fr.w - gutter*float64(n-1)
+	stiffen(cols, whole, word, room, fr.w)
 	share(g.w, cols, whole, word, room, fr.w)
 	x := fr.x
 	for i := range g.x {
@@ -207,6 +209,28 @@ func measure(cols []page.Column, head []cell, rows [][]cell, fr frame) *grid {
 		x += g.w[i] + gutter
 	}
 	return g
+}
+
+// stiffen keeps narrow columns on one line, the narrowest first, as long as
+// all widest words still fit: numbers and intervals are not broken while a
+// column of prose can give way.
+func stiffen(cols []page.Column, whole, word []float64, room, full float64) {
+	var order []int
+	for i, c := range cols {
+		if c.Share > 0 {
+			room -= min(c.Share, 1) * full
+			continue
+		}
+		order = append(order, i)
+		room -= word[i]
+	}
+	sort.SliceStable(order, func(a, b int) bool { return whole[order[a]] < whole[order[b]] })
+	for _, i := range order {
+		if more := whole[i] - word[i]; more > 0 && more <= room && whole[i] <= 0.3*full {
+			word[i] = whole[i]
+			room -= more
+		}
+	}
 }
 
 // share fills w. When all cells fit on one line the spare room goes to the
