@@ -33,6 +33,10 @@ type Loaded struct {
 func Load(name string, text, sealText []byte, files fs.FS) *Loaded {
 	src := diag.NewSource(name, text)
 	rec, list := read.Record(src)
+	if len(rec.Tree.Entries) > 0 && sealText == nil { // a seal has a time, and dates the record
+		list = append(list, read.Dated(rec)...)
+		list.Sort()
+	}
 	in := &Loaded{Source: src, Record: rec, Diagnostics: list}
 	if list.HasErrors() {
 		return in

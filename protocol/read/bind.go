@@ -19,7 +19,7 @@ import (
 // binder checks the tree by the table of keys and fills the typed record.
 type binder struct {
 	list      diag.List
-	ready     func(*record.Key) bool
+	all       bool // every key and word counts as computed
 	damaged   bool // a fault may have hidden keys
 	versionOK bool
 	skipReady bool // inside a table that was reported as not computed
@@ -232,7 +232,7 @@ func (b *binder) entry(row *record.Key, e record.Entry, f reflect.Value) {
 		refuse(f, n.Span)
 		return
 	}
-	if !b.skipReady && !b.ready(row) {
+	if !b.skipReady && !row.Ready && !b.all {
 		b.list.Add(diag.Error("R208", e.KeySpan, "this version of the program reads %q but does not compute what it asks for", row.Name()).
 			WithHelp("leave it out, or use a later version: a key that could change a number or a verdict is never passed over"))
 		b.skipReady = true

@@ -152,7 +152,7 @@ func (b *binder) later(row *record.Key, n *record.Node) {
 	if row.Path == "plan.outcome.NAME.measure" {
 		unready = !record.MeasureOf(n.Text).Ready
 	}
-	if unready && !b.skipReady && b.ready(row) {
+	if unready && !b.skipReady && !b.all {
 		b.list.Add(diag.Error("R208", n.Span, "this version of the program reads %s = %q but does not compute it", row.Name(), n.Text).
 			WithHelp("choose another, or use a later version"))
 	}

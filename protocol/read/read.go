@@ -21,11 +21,12 @@ const maxDiagnostics = 1000
 // Record reads a text. The record is never nil; it is incomplete when there
 // are errors. The list is sorted.
 func Record(src *diag.Source) (*record.Record, diag.List) {
-	return readWith(src, func(k *record.Key) bool { return k.Ready })
+	return readWith(src, false)
 }
 
-// readWith reads with another opinion of what is computed, for tests.
-func readWith(src *diag.Source, ready func(*record.Key) bool) (*record.Record, diag.List) {
+// readWith reads; all takes every key and word for computed, for tests of the
+// language as a whole.
+func readWith(src *diag.Source, all bool) (*record.Record, diag.List) {
 	rec := &record.Record{Source: src, Tree: &record.Node{Kind: record.TableNode}}
 	text, list := clean(src.Text)
 	if text == nil {
@@ -40,7 +41,7 @@ func readWith(src *diag.Source, ready func(*record.Key) bool) (*record.Record, d
 		return rec, limit(list)
 	}
 	rec.Tree = root
-	b := &binder{ready: ready, damaged: !whole}
+	b := &binder{all: all, damaged: !whole}
 	b.record(rec)
 	list = append(list, b.list...)
 	if b.versionOK {
