@@ -152,6 +152,7 @@ type walked struct {
 func scan(b []byte, budget *int) *walked {
 	w := &walked{objects: map[int]any{}, streams: map[int][]byte{}, trailer: pdfDict{}, budget: budget}
 	closed := true // "endstream" may still come
+	wasted := 0    // bytes of values given up
 	for i := 0; i < len(b); {
 		j := bytes.Index(b[i:], []byte("obj"))
 		stop := len(b)
@@ -170,6 +171,10 @@ func scan(b []byte, budget *int) *walked {
 		p := parser{b: b, i: i}
 		v, err := p.value()
 		if err != nil {
+			// Look inside what could not be read, but not for ever.
+			if wasted += p.i - i; wasted > 4*len(b) {
+				i = p.i
+			}
 			continue
 		}
 		i = p.i

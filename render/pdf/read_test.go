@@ -84,6 +84,16 @@ func TestReadRefuses(t *testing.T) {
 	}
 }
 
+// Values that never end must not be read again from each of their starts.
+func TestReadLinear(t *testing.T) {
+	for _, part := range []string{"1 0 obj(", "1 0 obj<<", "1 0 obj[1 ", "trailer<<", "1 0 obj<<>>stream\n", "startxref\n5\n", "9 9 9 9 9 9 ", "1 0 obj%"} {
+		file := []byte("%PDF-xref" + strings.Repeat(part, 1<<20/len(part)))
+		if f, err := Read(file); err == nil && len(f.Attachments) > 0 {
+			t.Errorf("%q: attachments out of nothing", part)
+		}
+	}
+}
+
 // Files that others have saved again, or that were cut off.
 func TestReadResaved(t *testing.T) {
 	b := mustWrite(t)
