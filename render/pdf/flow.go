@@ -65,7 +65,7 @@ func (p *piece) put(s *setter, cs []char, x, y float64) {
 	for i := 0; i < len(cs); {
 		c := cs[i]
 		j, w := i, 0.0
-		start := x + c.dx
+		start := x + float64(c.dx)
 		var text []byte
 		for ; j < len(cs); j++ {
 			n := cs[j]
@@ -73,11 +73,11 @@ func (p *piece) put(s *setter, cs []char, x, y float64) {
 				break
 			}
 			text = append(text, byte(n.gid>>8), byte(n.gid))
-			s.cuts[n.face].use(n.gid, n.r)
+			s.cuts[n.face].use(int(n.gid), n.r)
 			w += n.w
 		}
 		p.items = append(p.items, item{
-			kind: textItem, el: c.look.el, x: start, y: y - c.look.rise - c.dy, face: c.face, size: c.look.size,
+			kind: textItem, el: c.look.el, x: start, y: y - c.look.rise - float64(c.dy), face: c.face, size: c.look.size,
 			colour: c.look.colour, text: string(text), w: w, actual: c.look.actual,
 		})
 		x += w

@@ -19,12 +19,12 @@ type look struct {
 
 // char is one glyph to set.
 type char struct {
-	r      rune
-	face   faceID
-	gid    int
-	w      float64 // advance in points
-	dx, dy float64 // of marks that stand over the glyph before
 	look   *look
+	w      float64 // advance in points
+	dx, dy float32 // of marks that stand over the glyph before
+	r      rune
+	gid    uint16
+	face   faceID
 	after  brk
 }
 
@@ -42,7 +42,11 @@ const smaller = 0.68
 
 // chars turns inlines into glyphs; el is the element the text belongs to.
 func (s *setter) chars(in []page.Inline, st textStyle, el *elem) []char {
-	out := make([]char, 0, 64)
+	n := 0
+	for _, i := range in {
+		n += width(i)
+	}
+	out := make([]char, 0, n)
 	for _, i := range in {
 		l := look{face: st.family.regular, size: st.size, colour: st.colour, el: el}
 		var text string
@@ -72,6 +76,27 @@ func (s *setter) chars(in []page.Inline, st textStyle, el *elem) []char {
 	}
 	breaks(out)
 	return out
+}
+
+// width is at least the number of characters of an inline.
+func width(i page.Inline) int {
+	switch i := i.(type) {
+	case page.Text:
+		return len(i)
+	case page.Strong:
+		return len(i)
+	case page.Emph:
+		return len(i)
+	case page.Code:
+		return len(i)
+	case page.Sub:
+		return len(i)
+	case page.Sup:
+		return len(i)
+	case page.Link:
+		return len(i.Text)
+	}
+	return 0
 }
 
 // run appends the glyphs of one stretch of text.
@@ -131,12 +156,12 @@ func (s *setter) glyph(out []char, r rune, l *look, text string) []char {
 		return out
 	}
 	f := s.cuts[id].face
-	c := char{r: r, face: id, gid: g, w: float64(f.advance(g)) * l.size / 1000, look: l}
+	c := char{r: r, face: id, gid: uint16(g), w: float64(f.advance(g)) * l.size / 1000, look: l}
 	if r >= 0x300 && unicode.Is(unicode.Mn, r) {
 		c.w = 0
 		if n := len(out); n > 0 && out[n-1].face == id {
-			c.dx, c.dy = over(f, out[n-1].gid, g, l.size)
-			c.dx -= out[n-1].w
+			dx, dy := over(f, int(out[n-1].gid), g, l.size)
+			c.dx, c.dy = float32(dx-out[n-1].w), float32(dy)
 		}
 	}
 	return append(out, c)

@@ -268,5 +268,19 @@ func textString(s string) string {
 
 // literal is an ASCII string in parentheses.
 func literal(s string) string {
-	return "(" + strings.NewReplacer(`\`, `\\`, "(", `\(`, ")", `\)`, "\r", `\r`, "\n", `\n`).Replace(s) + ")"
+	b := make([]byte, 0, len(s)+8)
+	b = append(b, '(')
+	for i := 0; i < len(s); i++ {
+		switch s[i] {
+		case '\\', '(', ')':
+			b = append(b, '\\', s[i])
+		case '\r':
+			b = append(b, '\\', 'r')
+		case '\n':
+			b = append(b, '\\', 'n')
+		default:
+			b = append(b, s[i])
+		}
+	}
+	return string(append(b, ')'))
 }

@@ -95,10 +95,16 @@ func (c *cut) sfnt() []byte {
 	for n > 1 && !keep[n-1] {
 		n--
 	}
+	size := 0
+	for g, k := range keep[:n] {
+		if k {
+			size += len(f.outline(g))
+		}
+	}
 	metrics := min(n, f.metrics)
 	hmtx := make([]byte, 4*metrics+2*(n-metrics))
 	loca := make([]byte, 4*(n+1))
-	var glyf []byte
+	glyf := make([]byte, 0, size+4*n)
 	for g := range n {
 		binary.BigEndian.PutUint32(loca[4*g:], uint32(len(glyf)))
 		if keep[g] {
@@ -143,7 +149,11 @@ func assemble(tables map[string][]byte) []byte {
 	for pow*2 <= n {
 		pow, log = pow*2, log+1
 	}
-	out := binary.BigEndian.AppendUint32(nil, 0x00010000)
+	size := 12 + 16*n
+	for _, name := range names {
+		size += len(tables[name]) + 4
+	}
+	out := binary.BigEndian.AppendUint32(make([]byte, 0, size), 0x00010000)
 	for _, v := range []int{n, pow * 16, log, (n - pow) * 16} {
 		out = binary.BigEndian.AppendUint16(out, uint16(v))
 	}
