@@ -5,7 +5,6 @@ import (
 	"math"
 	"strings"
 	"testing"
-
 )
 
 // Values of other programs for the count measures: testdata/reference/counts.json,
@@ -47,7 +46,8 @@ var countChecks = map[string]func(t *testing.T, r valueRow, in givenNumbers){
 	"score-z-":         checkScoreRow,
 	"score-limits-":    checkScoreLimitsRow,
 	"tango-":           checkTangoRow,
-	"unconditional-":   checkUnconditionalRow,
+	"boschloo-":        checkBoschlooRow,
+	"barnard-":         checkBarnardRow,
 	"newcombe-":        checkNewcombeRow,
 }
 
@@ -216,15 +216,17 @@ func checkTangoRow(t *testing.T, r valueRow, in givenNumbers) {
 	checkLimits(t, r, m, "", "", 0.025)
 }
 
-func checkUnconditionalRow(t *testing.T, r valueRow, in givenNumbers) {
-	for name, m := range map[string]Method{
-		"boschloo_": analysed(t, "odds-ratio", "boschloo", in.two()).Method,
-		"barnard_":  analysed(t, "risk-difference", "unconditional", in.two()).Method,
-	} {
-		null := map[string]float64{"boschloo_": 1, "barnard_": 0}[name]
-		at := m.Test(null)
-		r.check(t, name+"greater", at.Up.P)
-		r.check(t, name+"less", at.Down.P)
+func checkBoschlooRow(t *testing.T, r valueRow, in givenNumbers) {
+	at := analysed(t, "odds-ratio", "boschloo", in.two()).Method.Test(1)
+	r.check(t, "boschloo_greater", at.Up.P)
+	r.check(t, "boschloo_less", at.Down.P)
+}
+
+func checkBarnardRow(t *testing.T, r valueRow, in givenNumbers) {
+	for measure, null := range map[string]float64{"risk-difference": 0, "risk-ratio": 1} {
+		at := analysed(t, measure, "unconditional", in.two()).Method.Test(null)
+		r.check(t, "greater", at.Up.P)
+		r.check(t, "less", at.Down.P)
 	}
 }
 
@@ -232,8 +234,10 @@ func checkNewcombeRow(t *testing.T, r valueRow, in givenNumbers) {
 	checkLimits(t, r, analysed(t, "risk-difference", "newcombe", in.two()).Method, "", "", 0.025)
 }
 
-// Check values of methods.md M, computed for that document by a second
-// implementation.
+// Check values of the method paper, computed there by a second implementation.
+// Two of its limits are off by one or two units of the last printed place
+// (farrington-manning high, 0.75383176…; mid-p low, 1.56346891…: 40-digit and
+// R values in counts.json agree with this program), hence the tolerance.
 func TestCountsCheckValues(t *testing.T) {
 	seven := two(7, 12, 1, 12)
 	for _, tc := range []struct {
@@ -254,8 +258,8 @@ func TestCountsCheckValues(t *testing.T) {
 		{"rate-difference", "score", twoExposed(12, 100, 5, 90), -0.0238807, 0.1609037},
 	} {
 		low, high := analysed(t, tc.measure, tc.method, tc.in).Method.Limits(0.025)
-		within(t, tc.measure+" "+tc.method+" low", low, tc.low, 0.5001e-7)
-		within(t, tc.measure+" "+tc.method+" high", high, tc.high, 0.5001e-7)
+		within(t, tc.measure+" "+tc.method+" low", low, tc.low, 1.2e-7)
+		within(t, tc.measure+" "+tc.method+" high", high, tc.high, 1.2e-7)
 	}
 	exact := analysed(t, "odds-ratio", "exact", seven)
 	within(t, "conditional estimate", exact.Estimate, 13.5569997, 0.5001e-7)
@@ -271,4 +275,3 @@ func TestCountsCheckValues(t *testing.T) {
 	within(t, "stratified RD", rd.Estimate, 0.0602973, 0.5001e-7)
 	within(t, "stratified RD se", math.Sqrt(rd.V), 0.0631631, 0.5001e-7)
 }
-

@@ -37,6 +37,9 @@ func newcombeReach(t table, z float64) float64 {
 
 // wilsonReach is x/n minus its lower Wilson limit, without cancellation.
 func wilsonReach(x, n, z float64) float64 {
+	if z == 0 || x == 0 {
+		return 0
+	}
 	p, e := x/n, 0.5-x/n
 	r := math.Sqrt(x*(n-x)/n + z*z/4)
 	if e > 0 {

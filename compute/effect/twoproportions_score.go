@@ -209,7 +209,14 @@ func oddsRatioZ(t table, c, factor float64) float64 {
 	}
 	p1, q1, p2, q2 := oddsRatioNull(t, c)
 	v1, v2 := t.n1*p1*q1, t.n2*p2*q2
-	return ratio(t.x1-t.n1*p1, math.Sqrt(factor*v1/(v1+v2)*v2))
+	// x1 - n1·p1 in the one of its four equal forms that loses fewest digits.
+	excess, least := t.x1-t.n1*p1, t.x1+t.n1*p1
+	for _, form := range [...][2]float64{{t.n1 * q1, t.y1()}, {t.n2 * p2, t.x2}, {t.y2(), t.n2 * q2}} {
+		if size := form[0] + form[1]; size < least {
+			excess, least = form[0]-form[1], size
+		}
+	}
+	return ratio(excess, math.Sqrt(factor*v1/(v1+v2)*v2))
 }
 
 // oddsRatioNull gives the risks of maximum likelihood with the odds ratio c,
