@@ -14,6 +14,7 @@ import (
 	"steelyard/compute/result"
 	"steelyard/protocol"
 	"steelyard/protocol/record"
+	"steelyard/render/chart"
 	"steelyard/render/page"
 )
 
@@ -51,6 +52,7 @@ type composer struct {
 	rec    *record.Record
 	res    *result.Result
 	blocks []page.Block
+	axes   map[string]chart.Axis // one an outcome
 }
 
 // document wraps the blocks with what every page carries.

@@ -74,6 +74,29 @@ func widenLog(lo, hi, share float64) (float64, float64) {
 	return l, h
 }
 
+// Widened extends the range to hold further values, on each side by at most
+// times the present width (on a log axis: of its logarithm).
+func (a Axis) Widened(times float64, values ...float64) Axis {
+	lo, hi := a.Lo, a.Hi
+	least, most := lo-(hi-lo)*times, hi+(hi-lo)*times
+	if a.Log {
+		w := math.Exp((math.Log(hi) - math.Log(lo)) * times)
+		least, most = lo/w, hi*w
+	}
+	for _, v := range values {
+		if math.IsNaN(v) || math.IsInf(v, 0) || a.Log && v <= 0 {
+			continue
+		}
+		lo, hi = min(lo, math.Max(v, least)), max(hi, math.Min(v, most))
+	}
+	if lo > 0 || !a.Log {
+		if !math.IsInf(lo, 0) && !math.IsInf(hi, 0) {
+			a.Lo, a.Hi = lo, hi
+		}
+	}
+	return a
+}
+
 // At is where a value stands between 0 and 1 along the axis; values outside
 // the range stand at its ends.
 func (a Axis) At(v float64) float64 {

@@ -1,0 +1,206 @@
+package render
+
+import (
+	"math"
+	"time"
+
+	"steelyard/compute/result"
+	"steelyard/protocol/record"
+	"steelyard/render/chart"
+	"steelyard/render/number"
+	"steelyard/render/page"
+)
+
+// outcomeGround is a beam with the points of an outcome.
+func (c *composer) outcomeGround(o *result.Outcome) chart.Beam {
+	f := number.Of(o)
+	return chart.Beam{Axis: c.axis(o), Band: band(f, o.Low, o.High), Null: point(f, o.Null), Names: 150, Right: 150, Height: 16}
+}
+
+// shownRow is an interval with its text on the right.
+func shownRow(f number.Format, name string, s number.Shown, est, low, high result.Opt) chart.Row {
+	r := chart.Row{Name: name, Est: point(f, est), Low: point(f, low), High: point(f, high), Right: s.Estimate}
+	if g := s.Range(); g != "" {
+		r.Right += " (" + g + ")"
+	}
+	return r
+}
+
+// studiesFigure shows every study and the pooled results under one beam.
+// Points are drawn to size by weight.
+func (c *composer) studiesFigure(group []*result.Pooled) *page.Figure {
+	d := deciding(group)
+	o := outcomeOf(c.res, d.Outcome)
+	f := number.Of(o)
+	b := c.outcomeGround(o)
+	most := 0.0
+	for _, s := range d.Share {
+		most = math.Max(most, s)
+	}
+	for i, name := range d.Studies {
+		s := c.studyEntry(name, d.Outcome, d.Set)
+		if s == nil {
+			continue
+		}
+		r := shownRow(f, name, c.studyShown(s, o), s.Analysis.Estimate, s.Analysis.Low, s.Analysis.High)
+		if i < len(d.Share) && most > 0 {
+			r.Weight = d.Share[i] / most
+		}
+		b.Rows = append(b.Rows, r)
+	}
+	b.Rows = append(b.Rows, c.greyStudies(d, o, f)...)
+	for i, p := range group {
+		r := shownRow(f, p.Model+" model", pooledShown(p, o), p.Estimate, p.Low, p.High)
+		r.Strong, r.Separate = p.Decides, i == 0
+		r.Wider, r.WiderHigh = point(f, p.PredictionLow), point(f, p.PredictionHigh)
+		b.Rows = append(b.Rows, r)
+	}
+	if len(b.Rows) == 0 {
+		return nil
+	}
+	s := pooledShown(d, o)
+	alt := "Estimates and intervals of " + join(d.Studies) + " with the pooled results below; the model that decides gives " + s.EstimateUnit() + " (" + s.Range() + ")."
+	return figure("Study by study. Discs are sized by weight; the heavy bar is the model that decides, dashed its interval for a new setting like these. Arrows go on beyond the axis.", alt, b.Draw(), b.Plain(plainColumns))
+}
+
+// greyStudies are entries of the outcome that are shown and not pooled.
+func (c *composer) greyStudies(d *result.Pooled, o *result.Outcome, f number.Format) []chart.Row {
+	var rows []chart.Row
+	for i := range c.res.Studies {
+		s := &c.res.Studies[i]
+		if s.Outcome != d.Outcome || s.Analysis.Method == "" || s.Use != result.LeftOut && s.Use != result.EarlierUse {
+			continue
+		}
+		pooled := false
+		for _, n := range d.Studies {
+			pooled = pooled || n == s.Study
+		}
+		if pooled {
+			continue
+		}
+		r := shownRow(f, s.Study+" ("+useText(s.Use)+")", c.studyShown(s, o), s.Analysis.Estimate, s.Analysis.Low, s.Analysis.High)
+		r.Grey, r.Separate = true, len(rows) == 0
+		rows = append(rows, r)
+	}
+	return rows
+}
+
+// cumulativeFigure is the pooled evidence as it grew.
+func (c *composer) cumulativeFigure(p *result.Pooled) *page.Figure {
+	if len(p.Cumulative) < 2 {
+		return nil
+	}
+	o := outcomeOf(c.res, p.Outcome)
+	f := number.Of(o)
+	b := c.outcomeGround(o)
+	for _, s := range p.Cumulative {
+		est, low, high := result.Some(s.Estimate), result.Some(s.Low), result.Some(s.High)
+		name := s.Study
+		if d := dateText(s.Date); d != "" {
+			name = d + " " + s.Study
+		}
+		b.Rows = append(b.Rows, shownRow(f, name, f.Interval(est, low, high, outcomePoints(o)...), est, low, high))
+	}
+	b.Rows[len(b.Rows)-1].Strong = true
+	first, last := p.Cumulative[0], p.Cumulative[len(p.Cumulative)-1]
+	alt := "Pooled evidence as studies arrived, from " + first.Study + " alone to all up to " + last.Study + "."
+	return figure("Evidence over time: pooled over the studies up to each date.", alt, b.Draw(), b.Plain(plainColumns))
+}
+
+// tallyFigure counts directions, one disc a result.
+func (c *composer) tallyFigure(name string, t *result.Tally) *page.Figure {
+	text := number.Int(t.Toward) + " of " + number.Int(t.With) + " toward the claim"
+	d := chart.Tally{Toward: t.Toward, With: t.With, TowardText: text, Other: "full: toward the claim; open: away from it"}
+	return figure(name+": directions of the results.", text+".", d.Draw(), nil)
+}
+
+// survivalFigure is the curve of time-to-event data.
+func (c *composer) survivalFigure(s *result.Study) *page.Figure {
+	o := outcomeOf(c.res, s.Outcome)
+	d := chart.Survival{Unit: o.Unit}
+	alt := "Shares without the event over time in " + s.Study + ":"
+	for i, g := range s.Survival {
+		d.Groups = append(d.Groups, chart.Survive{Name: g.Group, Time: g.Time, Frac: g.Share, Censored: g.Censored, Risk: g.RiskCounts})
+		if len(g.RiskTimes) > len(d.RiskTimes) {
+			d.RiskTimes = g.RiskTimes
+		}
+		if n := min(len(g.Time), len(g.Share)); n > 0 {
+			if i > 0 {
+				alt += ";"
+			}
+			alt += " " + g.Group + " ends at " + number.Share(g.Share[n-1]) + " after " + number.Significant(g.Time[n-1], 3)
+		}
+	}
+	return figure(s.Study+", "+o.Label+": share without the event (Kaplan–Meier). Ticks mark where observation ended.", alt+".", d.Draw(), nil)
+}
+
+// beliefFigure is a belief before and after.
+func (c *composer) beliefFigure(p *result.Prior, o *result.Outcome) *page.Figure {
+	if !(p.Before.SD > 0) || !(p.After.SD > 0) {
+		return nil
+	}
+	f := number.Of(o)
+	ax := c.axis(o)
+	d := chart.Beliefs{Axis: ax, Band: band(f, o.Low, o.High), Null: point(f, o.Null)}
+	for i, b := range []result.Belief{p.Before, p.After} {
+		h := chart.Hill{Name: "before", Dashed: true}
+		if i == 1 {
+			h = chart.Hill{Name: "after the results"}
+		}
+		for k := -120; k <= 120; k++ {
+			z := float64(k) / 30
+			h.X = append(h.X, f.Show(fromScale(o.Scale, b.Mean+z*b.SD)))
+			h.H = append(h.H, math.Exp(-z*z/2)/b.SD)
+		}
+		d.Hills = append(d.Hills, h)
+	}
+	alt := "Belief " + p.Name + " before and after the results: inside the region " + number.Share(p.Before.Inside) + " before, " + number.Share(p.After.Inside) + " after."
+	return figure("Belief "+p.Name+", before (dashed) and after (solid), as densities on the analysis scale.", alt, d.Draw(), nil)
+}
+
+// fromScale takes a value of the analysis scale back to the effect's own, to
+// place it on an axis.
+func fromScale(s record.Scale, v float64) float64 {
+	switch s {
+	case record.Log:
+		return math.Exp(v)
+	case record.Logit:
+		return 1 / (1 + math.Exp(-v))
+	case record.Atanh:
+		return math.Tanh(v)
+	case record.Identity:
+		return v
+	}
+	return v
+}
+
+// timelineFigure draws events with a known day, one line a kind.
+func (c *composer) timelineFigure() *page.Figure {
+	var d chart.Timeline
+	seen := map[string]bool{}
+	for _, e := range c.res.Timeline {
+		at, ok := eventTime(e.At)
+		if !ok {
+			continue
+		}
+		d.Events = append(d.Events, chart.Event{At: at, Kind: e.Kind, Unproven: e.Order == "unproven"})
+		if !seen[e.Kind] {
+			seen[e.Kind] = true
+			d.Kinds = append(d.Kinds, e.Kind)
+		}
+	}
+	if len(d.Events) < 2 {
+		return nil
+	}
+	return figure("Timeline. Open marks: the order within the day cannot be proved.", "Timeline of "+joinKinds(d.Kinds)+"; the table lists every event.", d.Draw(), nil)
+}
+
+// eventTime reads a date or an instant.
+func eventTime(s string) (time.Time, bool) {
+	for _, layout := range []string{time.RFC3339Nano, "2006-01-02"} {
+		if t, err := time.Parse(layout, s); err == nil {
+			return t, true
+		}
+	}
+	return time.Time{}, false
+}
