@@ -64,7 +64,7 @@ func (b *binder) record(rec *record.Record) {
 	if e := rec.Tree.Entry("steelyard"); e != nil {
 		at = e.KeySpan
 	}
-	b.table(rec.Tree, reflect.ValueOf(rec).Elem(), "", at)
+	b.table(rec.Tree, reflect.ValueOf(rec).Elem(), "", "", at)
 }
 
 // version demands the key of the language first of all. Another version is
@@ -96,10 +96,11 @@ func (b *binder) version(root *record.Node) {
 	}
 }
 
-// table binds one table: v is its struct, path the path of its keys.
-func (b *binder) table(n *record.Node, v reflect.Value, path string, at diag.Span) {
-	if f := v.FieldByName("At"); f.IsValid() {
-		f.Set(reflect.ValueOf(at))
+// table binds one table: v is its struct, path the path of its keys, shown the
+// same path with the user's own names.
+func (b *binder) table(n *record.Node, v reflect.Value, path, shown string, at diag.Span) {
+	if f := v.FieldByName("Table"); f.IsValid() { // not At: entries have a key of that name
+		f.Set(reflect.ValueOf(record.Table{At: at}))
 	}
 	rows := record.KeysIn(path)
 	index := fields[v.Type()]
@@ -107,10 +108,10 @@ func (b *binder) table(n *record.Node, v reflect.Value, path string, at diag.Spa
 	for _, e := range n.Entries {
 		row := record.KeyOf(join(path, e.Key))
 		if row == nil || row.Parent() != path {
-			meant = append(meant, b.unknown(e, rows, path))
+			meant = append(meant, b.unknown(e, rows, path, shown))
 			continue
 		}
-		b.entry(row, e, v.Field(index[e.Key]))
+		b.entry(row, e, v.Field(index[e.Key]), join(shown, e.Key))
 	}
 	for _, row := range rows {
 		if n.Entry(row.Name()) != nil {
@@ -120,7 +121,7 @@ func (b *binder) table(n *record.Node, v reflect.Value, path string, at diag.Spa
 			setDefault(v.Field(index[row.Name()]), row.Default)
 		}
 		if row.Required && row.Path != "steelyard" && !b.damaged && !contains(meant, row.Name()) {
-			b.list.Add(diag.Error("R205", at, "%s is missing%s", missingName(row), in(path)).WithHelp("%s", missingHelp(row)))
+			b.list.Add(diag.Error("R205", at, "%s is missing%s", missingName(row), in(shown)).WithHelp("%s", missingHelp(row)))
 		}
 		b.emptyTable(row, v.Field(index[row.Name()]))
 	}
@@ -165,10 +166,7 @@ func in(path string) string {
 	if path == "" {
 		return ""
 	}
-	if i := strings.LastIndex(path, ".NAME"); i >= 0 && i+5 == len(path) {
-		path = path[:i]
-	}
-	return " in " + path
+	return " in [" + path + "]"
 }
 
 func join(path, key string) string {
@@ -188,12 +186,12 @@ func contains(list []string, s string) bool {
 }
 
 // unknown reports an unknown key and returns the key that was probably meant.
-func (b *binder) unknown(e record.Entry, rows []*record.Key, path string) string {
+func (b *binder) unknown(e record.Entry, rows []*record.Key, path, shown string) string {
 	known := make([]string, len(rows))
 	for i, r := range rows {
 		known[i] = r.Name()
 	}
-	d := diag.Error("R201", e.KeySpan, "%s is not a key%s", quoteShort(e.Key), in(path))
+	d := diag.Error("R201", e.KeySpan, "%s is not a key%s", quoteShort(e.Key), in(shown))
 	near := nearest(e.Key, known)
 	switch {
 	case near != "":
@@ -226,7 +224,7 @@ func elsewhere(key, path string) string {
 }
 
 // entry checks one key and binds its value.
-func (b *binder) entry(row *record.Key, e record.Entry, f reflect.Value) {
+func (b *binder) entry(row *record.Key, e record.Entry, f reflect.Value, shown string) {
 	n := e.Value
 	if n.Kind == record.UnreadNode {
 		refuse(f, n.Span)
@@ -240,11 +238,11 @@ func (b *binder) entry(row *record.Key, e record.Entry, f reflect.Value) {
 	}
 	switch row.Kind {
 	case record.KindTable:
-		b.oneTable(row, e, f)
+		b.oneTable(row, e, f, shown)
 	case record.KindNamedTables:
-		b.namedTables(row, e, f)
+		b.namedTables(row, e, f, shown)
 	case record.KindTables:
-		b.tables(row, e, f)
+		b.tables(row, e, f, shown)
 	case record.KindNamedStrings, record.KindNamedNumbers:
 		b.namedValues(row, e, f)
 	case record.KindString, record.KindWord, record.KindStrings, record.KindWords, record.KindNumber,
@@ -254,17 +252,23 @@ func (b *binder) entry(row *record.Key, e record.Entry, f reflect.Value) {
 	}
 }
 
-func (b *binder) oneTable(row *record.Key, e record.Entry, f reflect.Value) {
-	if e.Value.Kind != record.TableNode {
-		b.wrongType(row, e.Value)
-		refuse(f, e.Value.Span)
+func (b *binder) oneTable(row *record.Key, e record.Entry, f reflect.Value, shown string) {
+	n := e.Value
+	if n.Kind == record.ArrayNode && row.Parent() == "" && len(n.Items) == 1 && n.Items[0].Kind == record.TableNode {
+		b.list.Add(diag.Error("R203", n.Span, "there is one %s: its head has one bracket", row.Name()).WithHelp("write [%s]", row.Path))
+		n = n.Items[0]
+		e.Value = n
+	}
+	if n.Kind != record.TableNode {
+		b.wrongType(row, n)
+		refuse(f, n.Span)
 		return
 	}
 	if f.Kind() == reflect.Pointer {
 		f.Set(reflect.New(f.Type().Elem()))
 		f = f.Elem()
 	}
-	b.table(e.Value, f, row.Below(), headOf(e))
+	b.table(n, f, row.Below(), shown, headOf(e))
 }
 
 // headOf is the place of a table's head.
@@ -276,10 +280,13 @@ func headOf(e record.Entry) diag.Span {
 	return e.Value.Span
 }
 
-func (b *binder) namedTables(row *record.Key, e record.Entry, f reflect.Value) {
+func (b *binder) namedTables(row *record.Key, e record.Entry, f reflect.Value, shown string) {
 	if e.Value.Kind != record.TableNode {
 		b.wrongType(row, e.Value)
 		refuse(f, e.Value.Span)
+		return
+	}
+	if b.nameless(row, e) {
 		return
 	}
 	for _, named := range e.Value.Entries {
@@ -289,7 +296,7 @@ func (b *binder) namedTables(row *record.Key, e record.Entry, f reflect.Value) {
 		f.Set(reflect.Append(f, elem))
 		switch named.Value.Kind {
 		case record.TableNode:
-			b.table(named.Value, elem.Elem(), row.Below(), headOf(named))
+			b.table(named.Value, elem.Elem(), row.Below(), join(shown, named.Key), headOf(named))
 		case record.UnreadNode:
 			refuse(elem, named.Value.Span)
 		default:
@@ -299,15 +306,23 @@ func (b *binder) namedTables(row *record.Key, e record.Entry, f reflect.Value) {
 	}
 }
 
-// notTable reports a value where tables under names are expected.
-func (b *binder) notTable(row *record.Key, e record.Entry) {
-	d := diag.Error("R203", e.Value.Span, "%q in %s takes a table, not %s", e.Key, row.Path, describe(e.Value))
-	for _, r := range record.KeysIn(row.Below()) {
-		if r.Name() == e.Key {
-			d = d.WithHelp("the table of %s needs a name: [%s.NAME]", row.Name(), row.Path)
+// nameless reports a table that holds keys where tables under names belong:
+// [plan.outcome] in place of [plan.outcome.NAME]. What it is meant to name is
+// then not called unknown.
+func (b *binder) nameless(row *record.Key, e record.Entry) bool {
+	for _, named := range e.Value.Entries {
+		if record.KeyOf(row.Below()+"."+named.Key) != nil && named.Value.Kind != record.TableNode {
+			b.damaged = true
+			b.list.Add(diag.Error("R203", headOf(e), "this table needs a name of its own").WithHelp("write [%s.NAME], with a name of your choice", row.Path))
+			return true
 		}
 	}
-	b.list.Add(d)
+	return false
+}
+
+// notTable reports a value where tables under names are expected.
+func (b *binder) notTable(row *record.Key, e record.Entry) {
+	b.list.Add(diag.Error("R203", e.Value.Span, "%q in [%s] takes a table, not %s", e.Key, row.Path, describe(e.Value)))
 }
 
 // name checks a name that the user gave.
@@ -318,28 +333,29 @@ func (b *binder) name(e record.Entry) {
 	}
 }
 
-func (b *binder) tables(row *record.Key, e record.Entry, f reflect.Value) {
+func (b *binder) tables(row *record.Key, e record.Entry, f reflect.Value, shown string) {
 	n := e.Value
-	if n.Kind == record.TableNode && row.Parent() == "" {
+	items := n.Items
+	switch {
+	case n.Kind == record.TableNode && row.Parent() == "":
 		b.list.Add(diag.Error("R203", n.Span, "%s is one of several: its head has two brackets", row.Name()).WithHelp("write [[%s]]", row.Path))
-		refuse(f, n.Span)
-		return
-	}
-	if n.Kind != record.ArrayNode {
+		items = []*record.Node{n}
+	case n.Kind != record.ArrayNode:
 		b.wrongType(row, n)
-		refuse(f, n.Span)
 		return
 	}
-	for _, item := range n.Items {
-		elem := reflect.New(f.Type().Elem().Elem())
-		f.Set(reflect.Append(f, elem))
+	for _, item := range items {
+		if item.Kind == record.UnreadNode {
+			continue
+		}
 		if item.Kind != record.TableNode {
 			b.list.Add(diag.Error("R203", item.Span, "%q takes tables, not %s", row.Name(), describe(item)).
 				WithHelp("%s", exampleOf(row)))
-			refuse(elem, item.Span)
 			continue
 		}
-		b.table(item, elem.Elem(), row.Below(), item.Span)
+		elem := reflect.New(f.Type().Elem().Elem())
+		f.Set(reflect.Append(f, elem))
+		b.table(item, elem.Elem(), row.Below(), shown, item.Span)
 	}
 }
 
@@ -385,8 +401,8 @@ func (b *binder) namedValues(row *record.Key, e record.Entry, f reflect.Value) {
 	}
 }
 
-// refuse marks a field as written and at fault: every value below it gets the
-// place, none is stated.
+// refuse marks a field as written and at fault: a table is there, every value
+// in it gets the place, and none is stated.
 func refuse(f reflect.Value, at diag.Span) {
 	switch f.Kind() {
 	case reflect.Pointer:
@@ -405,11 +421,13 @@ func refuse(f reflect.Value, at diag.Span) {
 			s.Set(reflect.ValueOf(at))
 			return
 		}
-		if s := f.FieldByName("At"); s.IsValid() {
-			s.Set(reflect.ValueOf(at))
+		if s := f.FieldByName("Table"); s.IsValid() {
+			s.Set(reflect.ValueOf(record.Table{At: at}))
 		}
 		for _, i := range fields[f.Type()] {
-			refuse(f.Field(i), at)
+			if f.Field(i).Kind() == reflect.Struct {
+				refuse(f.Field(i), at)
+			}
 		}
 	}
 }

@@ -84,7 +84,7 @@ func (b *binder) wrongType(row *record.Key, n *record.Node) {
 		d = d.WithHelp("add the offset from UTC: %s+02:00, or Z for UTC itself", n.Text)
 	case row.Kind == record.KindDay && n.Kind == record.InstantNode && row.Name() == "date" && strings.HasSuffix(row.Parent(), "result"):
 		d = d.WithHelp("the moment a result became known goes under the key known")
-	case n.Kind == record.StringNode && (row.Kind == record.KindDay || row.Kind == record.KindInstant || row.Kind == record.KindNumber || row.Kind == record.KindInt || row.Kind == record.KindBool):
+	case n.Kind == record.StringNode && (row.Kind == record.KindDay || row.Kind == record.KindInstant || row.Kind == record.KindNumber || row.Kind == record.KindInt || row.Kind == record.KindBool || row.Kind == record.KindBounds):
 		if kind, ok := classify(n.Text); ok && fits(row.Kind, kind) {
 			d = d.WithHelp("write it without quotes: %s", n.Text)
 		}
@@ -104,7 +104,7 @@ func fits(kind record.Kind, n record.NodeKind) bool {
 		return n == record.LocalDateNode
 	case record.KindInstant:
 		return n == record.InstantNode
-	case record.KindNumber:
+	case record.KindNumber, record.KindBounds:
 		return n == record.IntegerNode || n == record.FloatNode
 	case record.KindInt:
 		return n == record.IntegerNode

@@ -122,6 +122,11 @@ func refused(p *parser, pieces []piece, err error) *statement {
 		s.value = &record.Node{Kind: record.UnreadNode, Span: s.value.Span}
 	}
 	s.bad = true
+	if strings.HasPrefix(message, "invalid datetime") {
+		p.faults = append(p.faults, fault{code: "R105", span: span, message: "there is no such day or time: " + quoteShort(string(p.text[span.Start:span.End])),
+			help: "a date is written year-month-day, a time hour:minute:second"})
+		return s
+	}
 	if message != "" {
 		message = strings.ToLower(message[:1]) + message[1:]
 	}

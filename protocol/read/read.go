@@ -45,7 +45,7 @@ func readWith(src *diag.Source, all bool) (*record.Record, diag.List) {
 	b.record(rec)
 	list = append(list, b.list...)
 	if b.versionOK {
-		list = append(list, rules(rec, !whole)...)
+		list = append(list, rules(rec, b.damaged)...)
 	}
 	list.Sort()
 	return rec, limit(list)

@@ -54,7 +54,7 @@ func (c *checker) twoGroups(r *record.Result, o *record.Outcome, m *record.Measu
 		if g.Name == "" {
 			return // the whole was at fault
 		}
-		if o.Groups.Stated && !record.Lists(o.Groups, g.Name) {
+		if named(o) && !record.Lists(o.Groups, g.Name) {
 			d := diag.Error("R406", g.At, "%s is no group of the outcome %q", quoteShort(g.Name), o.Name)
 			if near := nearest(g.Name, record.Texts(o.Groups)); near != "" {
 				d = d.WithHelp("did you mean groups.%s?", near)
@@ -66,7 +66,7 @@ func (c *checker) twoGroups(r *record.Result, o *record.Outcome, m *record.Measu
 		}
 		c.group(g, m, "groups."+g.Name)
 	}
-	if !o.Groups.Stated || len(r.Groups) >= 2 || c.damaged {
+	if !named(o) || len(r.Groups) >= 2 || c.damaged {
 		return
 	}
 	for _, s := range o.Groups.V {

@@ -58,6 +58,10 @@ func (c *checker) groups(o *record.Outcome, m *record.Measure) {
 	c.twice(o.Groups)
 }
 
+// named reports that the outcome has its two groups, without fault: only then
+// is a group's name held against them.
+func named(o *record.Outcome) bool { return o.Groups.Stated && len(distinct(o.Groups)) == 2 }
+
 // openEnds reports whether the ends of the measure's range are no values of it.
 func openEnds(m *record.Measure) bool { return m.Scale != record.Identity }
 

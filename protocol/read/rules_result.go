@@ -143,7 +143,7 @@ func (c *checker) setOf(r *record.Result, forms []string) {
 }
 
 func (c *checker) flowGroup(f *record.Flow, o *record.Outcome) {
-	if !o.Groups.Stated || record.Lists(o.Groups, f.Name) || f.Name == "" {
+	if !named(o) || record.Lists(o.Groups, f.Name) || f.Name == "" {
 		return
 	}
 	c.add(diag.Error("R406", f.At, "%s is no group of the outcome %q", quoteShort(f.Name), o.Name).
@@ -267,7 +267,7 @@ func (c *checker) data(d *record.Data, o *record.Outcome, m *record.Measure) {
 		c.misplaced(d.Labels[0].At, "labels", "explains the codes of the column `group`, which is absent")
 	}
 	for _, l := range d.Labels {
-		if l.Text.Stated && o.Groups.Stated && !record.Lists(o.Groups, l.Text.V) {
+		if l.Text.Stated && named(o) && !record.Lists(o.Groups, l.Text.V) {
 			c.add(diag.Error("R406", l.Text.Span, "%s is no group of the outcome %q", quoteShort(l.Text.V), o.Name).
 				WithHelp("its groups are %s", words(record.Texts(o.Groups))))
 		}

@@ -410,5 +410,8 @@ func quoteShort(s string) string {
 	if utf8.RuneCountInString(s) > most {
 		s = string([]rune(s)[:most]) + "…"
 	}
-	return strconv.Quote(s)
+	if q := strconv.Quote(s); strings.ReplaceAll(q, "\\\\", "\\") != `"`+s+`"` {
+		return q
+	}
+	return `"` + s + `"` // a backslash is shown as it was written
 }

@@ -170,7 +170,15 @@ func keyText(key []part) string {
 }
 
 func conflict(k part, first *record.Entry, lineOf func(int) int, what string) *fault {
-	return &fault{"R107", k.span, fmt.Sprintf("%q cannot be %s here: it is %s on line %d", k.text, what, describe(first.Value), lineOf(first.KeySpan.Start)), ""}
+	is := "a value" // what it says is not known yet
+	switch first.Value.Kind {
+	case record.TableNode:
+		is = "a table"
+	case record.ArrayNode:
+		is = "an array"
+	default:
+	}
+	return &fault{"R107", k.span, fmt.Sprintf("%q cannot be %s here: it is %s on line %d", k.text, what, is, lineOf(first.KeySpan.Start)), ""}
 }
 
 // put stores a value under a dotted key, making the tables between.

@@ -288,6 +288,14 @@ func (p *parser) bare() *record.Node {
 		return nil
 	}
 	kind, ok := classify(text)
+	if !ok && p.depth == 0 && !isDigit(text[0]) {
+		// Words without quotes: the fault is the whole of them.
+		for p.pos < len(p.text) && strings.IndexByte("\r\n#", p.text[p.pos]) < 0 {
+			p.pos++
+		}
+		text = strings.TrimRight(string(p.text[start:p.pos]), " \t")
+		p.pos = start + len(text)
+	}
 	if !ok {
 		p.fail("R105", start, p.pos, helpForBare(text), "%s is no value", quoteShort(text))
 		return nil
