@@ -13,6 +13,7 @@ import (
 	"steelyard/protocol/diag"
 	"steelyard/protocol/read"
 	"steelyard/protocol/record"
+	"steelyard/protocol/seal"
 )
 
 // Loaded is one record, read.
@@ -41,13 +42,10 @@ func Load(name string, text, sealText []byte, files fs.FS) *Loaded {
 	if list.HasErrors() {
 		return in
 	}
-	in.PlanSHA256 = planDigest(rec)
+	in.PlanSHA256 = seal.PlanDigest(rec)
 	tables, faults := data.Load(rec, files)
 	in.Tables = tables
 	in.Diagnostics = append(in.Diagnostics, faults...)
 	in.Diagnostics.Sort()
 	return in
 }
-
-// planDigest is the digest of the canonical plan.
-func planDigest(rec *record.Record) string { return "" }
