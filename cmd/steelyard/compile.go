@@ -12,6 +12,7 @@ import (
 	"steelyard/cmd/internal/batch"
 	"steelyard/cmd/internal/pipeline"
 	"steelyard/cmd/internal/term"
+	"steelyard/render/pdf"
 	"steelyard/render/text"
 )
 
@@ -81,7 +82,7 @@ func (a *app) worker(f compileFlags) (batch.Worker, error) {
 	forms, err := f.forms()
 	w := batch.Worker{
 		Rooms: a.rooms, Forms: forms, Out: f.out, Strict: f.strict, Stdin: a.in,
-		Text: text.Options{Width: a.say.Width}, OwnPDF: ownPDF, Now: a.now,
+		Text: text.Options{Width: a.say.Width}, OwnPDF: pdf.WrittenBySteelyard, Now: a.now,
 	}
 	return w, err
 }

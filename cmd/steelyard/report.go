@@ -7,7 +7,6 @@ import (
 	"steelyard/cmd/internal/term"
 	"steelyard/compute/result"
 	"steelyard/protocol/diag"
-	"steelyard/render/pdf"
 )
 
 // shownPath is the record as the user calls it.
@@ -51,8 +50,3 @@ func verdicts(res *result.Result) string {
 	}
 	return strings.Join(parts, ", ")
 }
-
-var _ = pdf.Write
-
-// ownPDF reports whether Steelyard wrote a file.
-func ownPDF(file []byte) bool { return false }
