@@ -74,6 +74,14 @@ func normalTest(z float64) Test {
 	return t
 }
 
+// noAnswer is the test at a null that is not a number.
+func noAnswer(c float64) (Test, bool) {
+	if math.IsNaN(c) {
+		return normalTest(0), true
+	}
+	return Test{}, false
+}
+
 // midTail is the mid-p tail: the mean of P(X beyond x) and P(X at least as
 // far as x), both sides of the pair by sums of positive terms.
 func midTail(beyond, atLeast dist.Tail) dist.Tail {

@@ -330,7 +330,7 @@ func TestCountsNeverNaN(t *testing.T) {
 		}
 		m := record.MeasureOf(c.measure)
 		checkNumbers(t, c.name, inf)
-		nulls := append([]float64{m.Low, m.High, -1, 0, 1, 1e-300, 1e300, -2, 2}, c.nulls...)
+		nulls := append([]float64{m.Low, m.High, math.NaN(), math.Inf(1), math.Inf(-1), -1, 0, 1, 1e-300, 1e300, -2, 2}, c.nulls...)
 		for _, null := range nulls {
 			sane(t, fmt.Sprintf("%s at %v", c.name, null), inf.Method.Test(null))
 		}

@@ -111,7 +111,9 @@ func pairedConditional(in Input, word string, mid bool) (*Inference, *Problem) {
 	if bad = first(bad, noSystematic(word, in), unstratified(word, in), countsOnly(word, in, t.b, t.c)); bad != nil {
 		return nil, bad
 	}
-	return pairedInference(in, word, t, mcnemar{t, mid}), nil
+	inf := pairedInference(in, word, t, mcnemar{t, mid})
+	inf.NullOnly = true
+	return inf, nil
 }
 
 func pairedExact(in Input) (*Inference, *Problem) { return pairedConditional(in, "exact", false) }

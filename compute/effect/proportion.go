@@ -30,6 +30,9 @@ type binomialExact struct{ x, n float64 }
 
 // Test implements Method.
 func (m binomialExact) Test(c float64) Test {
+	if t, none := noAnswer(c); none {
+		return t
+	}
 	return Test{Up: binomialUpper(m.x, m.n, c, 1-c), Down: binomialLower(m.x, m.n, c, 1-c), Value: m.x, Kind: "exact"}
 }
 
@@ -57,6 +60,9 @@ type binomialMidP struct{ x, n float64 }
 
 // Test implements Method.
 func (m binomialMidP) Test(c float64) Test {
+	if t, none := noAnswer(c); none {
+		return t
+	}
 	d := 1 - c
 	return midTest(midTail(binomialUpper(m.x+1, m.n, c, d), binomialUpper(m.x, m.n, c, d)), m.x)
 }

@@ -39,6 +39,9 @@ type poissonRate struct {
 
 // Test implements Method.
 func (m poissonRate) Test(c float64) Test {
+	if t, none := noAnswer(c); none {
+		return t
+	}
 	mu := c * m.e
 	up := poissonUpper(m.x, mu)
 	if m.mid {

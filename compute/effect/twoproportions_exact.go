@@ -41,6 +41,9 @@ func conditionalLower(t table, x, psi float64) dist.Tail {
 
 // Test implements Method.
 func (m oddsExact) Test(c float64) Test {
+	if t, none := noAnswer(c); none {
+		return t
+	}
 	up := conditionalUpper(m.t, m.t.x1, c)
 	if m.mid {
 		return midTest(midTail(conditionalUpper(m.t, m.t.x1+1, c), up), m.t.x1)

@@ -6,14 +6,14 @@ import (
 	"steelyard/compute/dist"
 )
 
-// smallest is where a binomial probability is cut off: far below what a sum
-// of size 1e-250 can notice.
+// smallest is where binomial probabilities are cut off at last: far below what
+// a sum of size 1e-250 can notice.
 const smallest = 1e-290
 
 // binomialMass fills f with the binomial probabilities at p, from the mode
-// outward by their ratios, and returns the range in which they are not 0.
-// Entries outside that range keep old values.
-func binomialMass(f, rise []float64, p, q float64) (lo, hi int) {
+// outward by their ratios down to cut, and returns the range that is filled.
+// Entries outside keep old values.
+func binomialMass(f, rise []float64, p, q, cut float64) (lo, hi int) {
 	n := len(rise)
 	switch {
 	case !(p > 0):
@@ -23,18 +23,19 @@ func binomialMass(f, rise []float64, p, q float64) (lo, hi int) {
 		f[n] = 1
 		return n, n
 	}
+	p, q = math.Min(p, 1), math.Min(q, 1)
 	mode := min(n, int(float64(n+1)*p))
 	top := math.Exp(dist.BinomialLnPMF(float64(mode), float64(n), p, q))
 	f[mode] = top
 	lo, hi = mode, mode
 	for v, odds := top, p/q; hi < n; hi++ {
-		if v *= rise[hi] * odds; v < smallest {
+		if v *= rise[hi] * odds; v < cut {
 			break
 		}
 		f[hi+1] = v
 	}
 	for v, odds := top, q/p; lo > 0; lo-- {
-		if v *= odds / rise[lo-1]; v < smallest {
+		if v *= odds / rise[lo-1]; v < cut {
 			break
 		}
 		f[lo-1] = v
@@ -56,6 +57,7 @@ func binomialLnMass(f, rise []float64, p, q float64) {
 		}
 		return
 	}
+	p, q = math.Min(p, 1), math.Min(q, 1)
 	mode := min(n, int(float64(n+1)*p))
 	f[mode] = dist.BinomialLnPMF(float64(mode), float64(n), p, q)
 	odds := math.Log(p) - math.Log(q)
@@ -83,8 +85,8 @@ func (g *region) logarithmic(r risks) float64 {
 
 // rest is the probability outside the region, as a sum of its own.
 func (g *region) rest(r risks) float64 {
-	lo1, hi1 := binomialMass(g.f1, g.s.rise1, r.p1, r.q1)
-	lo2, hi2 := binomialMass(g.f2, g.s.rise2, r.p2, r.q2)
+	lo1, hi1 := binomialMass(g.f1, g.s.rise1, r.p1, r.q1, smallest)
+	lo2, hi2 := binomialMass(g.f2, g.s.rise2, r.p2, r.q2, smallest)
 	sum, above, j := 0.0, 0.0, hi2+1
 	for i := hi1; i >= lo1; i-- {
 		for b := max(g.last[i], lo2-1); j > b+1; {
@@ -98,7 +100,7 @@ func (g *region) rest(r risks) float64 {
 
 // tail is the probability of the region with its complement.
 func (g *region) tail(r risks) dist.Tail {
-	p, q := math.Min(1, g.plain(r)), math.Min(1, g.rest(r))
+	p, q := math.Min(1, g.plain(r, smallest)), math.Min(1, g.rest(r))
 	t := dist.Tail{P: p, Q: q, LnP: math.Log(p), LnQ: math.Log(q)}
 	if p < 1e-250 {
 		t.LnP = g.logarithmic(r)
@@ -131,6 +133,8 @@ func unconditionalOf(k contrast, word string) analysis {
 			return nil, problem("S105", tooManyTables, word, float64(unconditionalLimit), t.n1*t.n2)
 		}
 		m := unconditional{kind: k, up: newStaircase(k, t), down: newStaircase(k, t.swap())}
-		return twoProportionsInference(in, k, word, t, m), nil
+		inf := twoProportionsInference(in, k, word, t, m)
+		inf.Costly = true
+		return inf, nil
 	}
 }

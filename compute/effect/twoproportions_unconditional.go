@@ -28,22 +28,25 @@ type unconditional struct {
 
 // Test implements Method. It allocates.
 func (m unconditional) Test(c float64) Test {
-	return Test{Up: m.upper(c), Down: m.lower(c), Value: m.up.t.x1, Kind: "exact"}
-}
-
-func (m unconditional) upper(c float64) dist.Tail { return m.up.supremum(c) }
-
-func (m unconditional) lower(c float64) dist.Tail {
-	if m.kind == riskDifference {
-		return m.down.supremum(-c)
+	if t, none := noAnswer(c); none {
+		return t
 	}
-	return m.down.supremum(1 / c)
+	return Test{Up: m.up.supremum(c), Down: m.down.supremum(m.mirror(c)), Value: m.up.t.x1, Kind: "exact"}
 }
 
-// Limits implements Method.
+// mirror is the null that says the same with the groups exchanged.
+func (m unconditional) mirror(c float64) float64 {
+	if m.kind == riskDifference {
+		return -c
+	}
+	return 1 / c
+}
+
+// Limits implements Method. The search need not tell probabilities below
+// 1e-250 from each other.
 func (m unconditional) Limits(a float64) (low, high float64) {
-	up := func(c float64) Test { return Test{Up: m.upper(c)} }
-	down := func(c float64) Test { return Test{Down: m.lower(c)} }
+	up := func(c float64) Test { return Test{Up: m.up.bounded(c)} }
+	down := func(c float64) Test { return Test{Down: m.down.bounded(m.mirror(c))} }
 	return m.kind.invertTable(m.up.t, up, false).side(a, -1), m.kind.invertTable(m.up.t, down, false).side(a, +1)
 }
 
@@ -100,40 +103,93 @@ func Staircase(n1, n2 int, in func(x1, x2 float64) bool) (last []int) {
 
 // supremum is the p-value of the observed table against effects of at most c.
 func (s *staircase) supremum(c float64) dist.Tail {
-	if s.kind == riskDifference && (c < -1 || c > 1) || s.kind != riskDifference && c < 0 {
-		if c > 1 {
-			return sureTail
-		}
-		return sureTail.Complement()
+	if outside, t := s.outside(c); outside {
+		return t
 	}
+	g := s.region(c)
+	p, at := g.largest(c)
+	if p < 1e-250 { // below the range of plain numbers: all in logarithms
+		_, at = g.refine(g.logarithmic, c, -1)
+	}
+	return g.tail(s.risks(c, at))
+}
+
+// bounded is supremum with everything below 1e-250 counted as that.
+func (s *staircase) bounded(c float64) dist.Tail {
+	if outside, t := s.outside(c); outside {
+		return t
+	}
+	p, _ := s.region(c).largest(c)
+	p = math.Min(1, math.Max(p, 1e-250))
+	return dist.Tail{P: p, Q: 1 - p, LnP: math.Log(p), LnQ: math.Log1p(-p)}
+}
+
+// outside answers nulls outside the range of the effect.
+func (s *staircase) outside(c float64) (bool, dist.Tail) {
+	low, high := s.kind.low(), s.kind.high()
+	switch {
+	case c < low:
+		return true, sureTail.Complement()
+	case c > high:
+		return true, sureTail
+	}
+	return false, dist.Tail{}
+}
+
+// region finds the tables at least as extreme as the observed one at c. Equal
+// statistics count as equal although rounded differently.
+func (s *staircase) region(c float64) *region {
 	observed := s.extreme(s.t.x1, s.t.x2, c)
-	tie := observed - 1e-10*math.Max(1, math.Abs(observed))
-	if math.IsInf(observed, 0) {
-		tie = observed
+	tie := observed
+	switch {
+	case math.IsInf(observed, 0):
+	case s.kind == oddsRatio:
+		tie -= 1e-10 // a logarithm: relative to p
+	default:
+		tie -= 1e-10 * math.Max(1, math.Abs(observed))
 	}
-	last := Staircase(s.n1, s.n2, func(x1, x2 float64) bool { return s.extreme(x1, x2, c) >= tie })
-	g := region{s: s, last: last, f1: make([]float64, s.n1+1), f2: make([]float64, s.n2+1)}
-	value, best := g.plain, 0
-	most := -1.0
+	return &region{s: s, f1: make([]float64, s.n1+1), f2: make([]float64, s.n2+1),
+		last: Staircase(s.n1, s.n2, func(x1, x2 float64) bool { return s.extreme(x1, x2, c) >= tie })}
+}
+
+// largest finds the point of the grid, or beside its best one, where the
+// region is most probable.
+func (g *region) largest(c float64) (p, u float64) {
+	// Single probabilities that cannot matter beside the best sum so far are
+	// left out; so the search starts where it expects the best.
+	most := 0.0
+	value := func(r risks) float64 { return g.plain(r, math.Max(smallest, 1e-25*most)) }
+	start := gridPosition(g.s.t.x2 / g.s.t.n2)
+	most = value(g.s.risks(c, start))
+	return g.refine(func(r risks) float64 {
+		p := value(r)
+		most = math.Max(most, p)
+		return p
+	}, c, start)
+}
+
+// refine looks at the whole grid, then between the neighbours of its best
+// point, and keeps the start where nothing is better.
+func (g *region) refine(value func(risks) float64, c, start float64) (most, at float64) {
+	most = math.Inf(-1)
+	best := 0
 	for i := range gridPoints {
-		if p := value(s.risks(c, float64(i))); p > most {
+		if p := value(g.s.risks(c, float64(i))); p > most {
 			most, best = p, i
 		}
 	}
-	if most < 1e-250 { // below the range of plain numbers: all in logarithms
-		value, most = g.logarithmic, math.Inf(-1)
-		for i := range gridPoints {
-			if p := value(s.risks(c, float64(i))); p > most {
-				most, best = p, i
-			}
+	lo, hi := math.Max(0, float64(best-1)), math.Min(gridPoints-1, float64(best+1))
+	at = float64(best)
+	u := numeric.Golden(func(u float64) float64 { return -value(g.s.risks(c, u)) }, lo, hi, 1e-7)
+	if p := value(g.s.risks(c, u)); p > most {
+		most, at = p, u
+	}
+	if start >= 0 {
+		if p := value(g.s.risks(c, start)); p > most {
+			most, at = p, start
 		}
 	}
-	lo, hi := math.Max(0, float64(best-1)), math.Min(gridPoints-1, float64(best+1))
-	at := numeric.Golden(func(u float64) float64 { return -value(s.risks(c, u)) }, lo, hi, 1e-7)
-	if value(s.risks(c, at)) < most {
-		at = float64(best)
-	}
-	return g.tail(s.risks(c, at))
+	return most, at
 }
 
 // gridValue spreads the grid evenly in the angle asin √p, so that it is fine
@@ -144,6 +200,11 @@ func gridValue(u float64) (t, rest float64) {
 		cos = 0
 	}
 	return sin * sin, cos * cos
+}
+
+// gridPosition is the inverse of gridValue.
+func gridPosition(t float64) float64 {
+	return math.Asin(math.Sqrt(t)) * (gridPoints - 1) * 2 / math.Pi
 }
 
 // risks are two risks and their complements.
@@ -185,10 +246,11 @@ type region struct {
 	f1, f2 []float64
 }
 
-// plain is the probability of the region, O(n1 + n2).
-func (g *region) plain(r risks) float64 {
-	lo1, hi1 := binomialMass(g.f1, g.s.rise1, r.p1, r.q1)
-	lo2, hi2 := binomialMass(g.f2, g.s.rise2, r.p2, r.q2)
+// plain is the probability of the region, O(n1 + n2), leaving out single
+// probabilities below cut.
+func (g *region) plain(r risks, cut float64) float64 {
+	lo1, hi1 := binomialMass(g.f1, g.s.rise1, r.p1, r.q1, cut)
+	lo2, hi2 := binomialMass(g.f2, g.s.rise2, r.p2, r.q2, cut)
 	sum, below, j := 0.0, 0.0, lo2-1
 	for i := lo1; i <= hi1; i++ {
 		for b := min(g.last[i], hi2); j < b; {

@@ -75,6 +75,9 @@ func (m rateRatio) share(c float64) (p, q float64) {
 
 // Test implements Method.
 func (m rateRatio) Test(c float64) Test {
+	if t, none := noAnswer(c); none {
+		return t
+	}
 	p, q := m.share(c)
 	x, n := m.t.x1, m.t.x1+m.t.x2
 	switch m.kind {
