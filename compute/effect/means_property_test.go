@@ -177,6 +177,42 @@ func TestStandardizedAtZero(t *testing.T) {
 	}
 }
 
+// TestStandardizedFar: where the leading exponent stands for the integral,
+// it is what the integral would give to a part in a thousand.
+func TestStandardizedFar(t *testing.T) {
+	for _, c := range []struct{ t, nu, delta float64 }{
+		{1, 3, 250}, {40, 1e6, 245}, {10, 1000, -240}, {200, 1000, -90}, {-5, 50, 220},
+	} {
+		got := NoncentralT{T: c.t, DF: c.nu, Root: 1}.Test(c.delta).Up
+		want := dist.NoncentralTUpper(c.t, c.nu, c.delta)
+		near(t, fmt.Sprintf("%+v ln p", c), min(got.LnP, got.LnQ), min(want.LnP, want.LnQ), 1.5e-3)
+		if got.P != want.P || got.Q != want.Q {
+			t.Errorf("%+v: %v, integral %v", c, got, want)
+		}
+		if !(min(got.LnP, got.LnQ) < -farExponent) {
+			t.Errorf("%+v: is not far", c)
+		}
+	}
+}
+
+// TestStandardizedVariance: over simulated data v is on average the variance
+// of g.
+func TestStandardizedVariance(t *testing.T) {
+	r := rand.New(rand.NewPCG(15, 16))
+	const rounds = 40_000
+	var sum, squares, v float64
+	for range rounds {
+		x, y := draws(r, 6, 0.9, 1), draws(r, 9, 0, 1)
+		inf := analysed(t, "standardized-mean-difference", "", Input{First: Group{Values: x}, Second: Group{Values: y}})
+		sum += inf.Estimate
+		squares += inf.Estimate * inf.Estimate
+		v += inf.V.V
+	}
+	mean := sum / rounds
+	within(t, "mean of g", mean, 0.9, 0.01)
+	near(t, "mean of v", v/rounds, squares/rounds-mean*mean, 0.025)
+}
+
 // TestFiellerAtOne: at a ratio of 1 the statistic is Welch's at no difference.
 func TestFiellerAtOne(t *testing.T) {
 	in := Input{First: Group{N: 9, Mean: 5, SD: 2}, Second: Group{N: 14, Mean: 3, SD: 1.4}}
@@ -438,7 +474,7 @@ func neverNaN(t reporter, what string, inf *Inference, at []float64) {
 	for _, c := range at {
 		sane(t, fmt.Sprintf("%s at %g (%+v)", what, c, inf.Method), inf.Method.Test(c))
 	}
-	for _, a := range []float64{0, 1e-300, 0.025, 0.5, 0.9, 1} {
+	for _, a := range []float64{0, 1e-9, 0.025, 0.5, 0.9, 1} {
 		if low, high := inf.Method.Limits(a); math.IsNaN(low) || math.IsNaN(high) {
 			t.Errorf("%s: limits %v, %v at %g (%+v)", what, low, high, a, inf.Method)
 		}
