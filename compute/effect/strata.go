@@ -220,6 +220,9 @@ func mantelHaenszelOf(measure string) analysis {
 		if s.Used == 0 {
 			return nil, problem("S101", tooFew, "the strata with both groups", 0, 1)
 		}
+		if !s.OK && !record.MeasureOf(measure).IsRatio() {
+			return nil, problem("S102", noVariation, "events within the strata")
+		}
 		inf := stratifiedInference(measure, in, s)
 		inf.Events = result.Some(events)
 		if measure != "rate-ratio" && measure != "rate-difference" {
