@@ -2,6 +2,7 @@ package pdf
 
 import (
 	"fmt"
+	"math"
 
 	"steelyard/render/page"
 )
@@ -41,6 +42,40 @@ func newSetter(doc *page.Document) *setter {
 		}
 	}
 	return s
+}
+
+// flow sets the whole document. What stands before the first page break is
+// page one, which is made up to a sixth smaller when it then fits.
+func (s *setter) flow() []piece {
+	fr := frame{s.sheet.left, s.sheet.measure()}
+	for i, b := range s.doc.Blocks {
+		if _, ok := b.(page.PageBreak); ok {
+			return append(s.pageOne(s.doc.Blocks[:i], fr), s.blocks(s.doc.Blocks[i:], fr, s.root)...)
+		}
+	}
+	return s.blocks(s.doc.Blocks, fr, s.root)
+}
+
+func (s *setter) pageOne(bs []page.Block, fr frame) []piece {
+	ps := s.blocks(bs, fr, s.root)
+	depth := s.sheet.depth()
+	h := height(ps)
+	if h <= depth {
+		return ps
+	}
+	for k := math.Sqrt(depth / h); k >= 1-1.0/6; k -= 0.015 {
+		// Elements join the tree when drawn, so those of a trial are forgotten.
+		s.places, s.links, s.anchors = nil, nil, map[string]int{}
+		small := s.blocks(bs, frame{fr.x, fr.w / k}, s.root)
+		if height(small)*k <= depth {
+			for i := range small {
+				small[i].scale(fr.x, k)
+			}
+			return small
+		}
+	}
+	s.places, s.links, s.anchors = nil, nil, map[string]int{}
+	return s.blocks(bs, fr, s.root)
 }
 
 // link makes the element of a link.
@@ -127,7 +162,7 @@ func (s *setter) heading(h page.Heading, fr frame, parent *elem) []piece {
 		p.rule(fr.x, 0, fr.w, 0.8, ink(page.Black))
 		p.height = 6
 	}
-	dest := item{kind: destItem, size: float64(len(s.places)), y: -4}
+	dest := item{kind: destItem, place: len(s.places), y: -4}
 	if h.Anchor != "" {
 		s.anchors[h.Anchor] = len(s.places)
 	}
@@ -153,7 +188,7 @@ func (s *setter) paragraph(b page.Paragraph, fr frame, parent *elem) []piece {
 		st, before, role = quoteStyle, 8, "BlockQuote"
 	}
 	el := parent.child(role)
-	fr.w = min(fr.w, readable*st.size/bodyStyle.size)
+	fr.w = min(fr.w, max(readable, readable*st.size/bodyStyle.size))
 	if b.Style == page.Quote {
 		fr.x, fr.w = fr.x+16, fr.w-28
 		el = el.child("P")
@@ -320,6 +355,6 @@ func (s *setter) callout(b page.Callout, fr frame, parent *elem) []piece {
 		return nil
 	}
 	kind := b.Kind
-	ps[0].items = append(ps[0].items, item{kind: shapeItem, x: fr.x + 9, y: ps[0].height/2 - 6, shape: func(d *drawer, x, y float64) { d.sign(kind, x, y) }})
+	ps[0].items = append(ps[0].items, item{kind: shapeItem, x: fr.x + 9, y: ps[0].height/2 - 6, scale: 1, shape: func(d *drawer, x, y, k float64) { d.sign(kind, x, y, k) }})
 	return s.boxed(ps, 10, 8, []band{{x: fr.x, w: fr.w, colour: tint}, {x: fr.x, w: 2.2, colour: bar}})
 }

@@ -122,7 +122,7 @@ func (d *drawer) item(it *item, x, y float64, layer string) {
 		d.mark(it.mark, x, y, it.scale)
 	case shapeItem:
 		d.begin(nil, layer)
-		it.shape(d, x, y)
+		it.shape(d, x, y, it.scale)
 	case attachItem:
 		if it.el != nil {
 			it.el.join()
@@ -131,7 +131,7 @@ func (d *drawer) item(it *item, x, y float64, layer string) {
 			}
 		}
 	case destItem:
-		p := &d.s.places[int(it.size)]
+		p := &d.s.places[it.place]
 		p.page, p.y = d.page, y
 	}
 }

@@ -20,8 +20,9 @@ type item struct {
 	// rules, boxes and the marks of drawings
 	h     float64
 	mark  page.Mark
-	scale float64
-	shape func(d *drawer, x, y float64)
+	scale float64 // of marks and shapes
+	place int     // of destinations
+	shape func(d *drawer, x, y, k float64)
 }
 
 type itemKind uint8
@@ -133,6 +134,30 @@ func (p *piece) over(q piece, dx, dy float64) {
 		p.items = append(p.items, it)
 	}
 	p.height = max(p.height, dy+q.height)
+}
+
+// scale makes a piece smaller about its left edge x0.
+func (p *piece) scale(x0, k float64) {
+	if k == 1 {
+		return
+	}
+	p.before *= k
+	p.height *= k
+	for i := range p.items {
+		it := &p.items[i]
+		it.x, it.y = x0+(it.x-x0)*k, it.y*k
+		it.size, it.w, it.h, it.scale = it.size*k, it.w*k, it.h*k, it.scale*k
+	}
+	for i := range p.back {
+		b := &p.back[i]
+		b.x, b.w = x0+(b.x-x0)*k, b.w*k
+	}
+	if p.again != nil {
+		again := *p.again
+		again.items = append([]item(nil), again.items...)
+		again.scale(x0, k)
+		p.again = &again
+	}
 }
 
 // glued keeps all pieces together.

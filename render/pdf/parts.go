@@ -36,13 +36,15 @@ func (s *setter) facts(b page.Facts, fr frame, parent *elem) []piece {
 		for c := 0; c < cols && i+c < len(b.Items); c++ {
 			x := fr.x + float64(c)*(w+gap)
 			var q piece
-			q.add(s, wrap(labels[i+c], labelW[c]-6), labelStyle, x, 0)
+			st := labelStyle
+			st.size = valueStyle.size // the baselines of label and value are one
+			q.add(s, wrap(labels[i+c], labelW[c]-6), st, x, 0)
 			p.over(q, 0, 2)
 			v := s.block(b.Items[i+c].Value, valueStyle, frame{x + labelW[c], w - labelW[c]}, lis[i+c].child("LBody"))
 			p.over(v, 0, 2)
 		}
 		p.height += 2
-		for c := 0; c < cols; c++ {
+		for c := 0; c < cols && i+c < len(b.Items); c++ {
 			p.rule(fr.x+float64(c)*(w+gap), p.height, w, 0.3, ink(page.Mist))
 		}
 		p.height += 0.3
@@ -151,7 +153,7 @@ func (s *setter) verdict(b page.Verdict, fr frame, parent *elem) []piece {
 	name := s.chars(page.T(b.Name), textStyle{boldFamily, 9.4, 17, ink(page.Slate)}, el)
 	head := piece{height: 19, keep: true}
 	t := b.Tone
-	head.items = append(head.items, item{kind: shapeItem, x: fr.x, y: 0, shape: func(d *drawer, x, y float64) { d.verdictMark(t, tone, x, y) }})
+	head.items = append(head.items, item{kind: shapeItem, x: fr.x, scale: 1, shape: func(d *drawer, x, y, k float64) { d.verdictMark(t, tone, x, y, k) }})
 	lines := wrap(at, in.w-40)
 	for i, l := range lines {
 		head.put(s, l.cs, in.x, float64(i)*17+13)
@@ -172,7 +174,7 @@ func (s *setter) verdict(b page.Verdict, fr frame, parent *elem) []piece {
 	put(b.Answer, textStyle{family{sansBold, sansBold, sansItalic}, 9.8, 14, ink(page.Black)}, 4)
 	put(b.Reading, bodyStyle, 3)
 	if b.Figure != nil {
-		fig := s.figure(*b.Figure, in, sect)
+		fig := s.figure(*b.Figure, fr, sect)
 		if len(fig) > 0 {
 			fig[0].before = 6
 			fig[len(fig)-1].height -= 4

@@ -53,8 +53,7 @@ func build(doc *page.Document, opt options) ([]byte, error) {
 		s.open(extra)
 	}
 	sh := s.sheet
-	pieces := s.blocks(doc.Blocks, frame{sh.left, sh.measure()}, s.root)
-	leaves := paginate(pieces, sh)
+	leaves := paginate(s.flow(), sh)
 	s.where = "the running head or foot"
 	status := s.status()
 	matter := make([]piece, len(leaves))

@@ -113,7 +113,7 @@ func sample() *page.Document {
 		page.Callout{Kind: page.Caution, Title: "What this record does not say", Blocks: []page.Block{
 			page.Paragraph{Text: t("It supports and does not replace the judgement of those responsible, and defers to the rules that apply on the site.")}}},
 	)
-	add(page.Heading{Level: 1, Text: t("What arrived"), Anchor: "arrived"},
+	add(page.PageBreak{}, page.Heading{Level: 1, Text: t("What arrived"), Anchor: "arrived"},
 		page.Paragraph{Text: []page.Inline{
 			page.Text("Three results came in. The weight of a plot is "), page.Emph("w"), page.Sub("i"), page.Text(" = 1/(SE"), page.Sub("i"), page.Sup("2"),
 			page.Text(" + τ²), the heterogeneity "), page.Emph("I"), page.Text("² is 31%, and the mean x̄ of the plots was "), page.Strong("4.21 kg"),

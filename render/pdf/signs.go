@@ -11,20 +11,20 @@ import (
 // verdictMark draws the mark beside a verdict's word: a short beam from which
 // a different thing hangs for every tone, so that the mark is told apart
 // without colour. Upper left at x, y; about 20 wide, 19 high.
-func (d *drawer) verdictMark(t page.Tone, c colour, x, y float64) {
+func (d *drawer) verdictMark(t page.Tone, c colour, x, y, k float64) {
 	d.setFill(c)
-	d.f.Rect(x, y+2.2, 20, 1.8, "F")
-	cx, cy := x+10, y+11.6
-	d.f.Rect(cx-0.5, y+4, 1, 3.4, "F")
+	d.f.Rect(x, y+2.2*k, 20*k, 1.8*k, "F")
+	cx, cy := x+10*k, y+11.6*k
+	d.f.Rect(cx-0.5*k, y+4*k, k, 3.4*k, "F")
 	switch t {
 	case page.Established: // a full weight
-		d.f.Circle(cx, cy, 4.8, "F")
-	case page.Contradicted: // a weight cut through
-		d.f.Polygon([]fpdf.PointType{{X: cx - 5.2, Y: cy - 4.4}, {X: cx + 5.2, Y: cy - 4.4}, {X: cx, Y: cy + 5}}, "F")
+		d.f.Circle(cx, cy, 4.8*k, "F")
+	case page.Contradicted: // a weight on its point
+		d.f.Polygon([]fpdf.PointType{{X: cx - 5.2*k, Y: cy - 4.4*k}, {X: cx + 5.2*k, Y: cy - 4.4*k}, {X: cx, Y: cy + 5*k}}, "F")
 	case page.Open: // a ring
-		d.ring(cx, cy, 4.1, 1.4, c)
+		d.ring(cx, cy, 4.1*k, 1.4*k, c)
 	case page.Neutral: // nothing yet
-		d.f.Rect(cx-4.6, cy-0.8, 9.2, 1.6, "F")
+		d.f.Rect(cx-4.6*k, cy-0.8*k, 9.2*k, 1.6*k, "F")
 	}
 }
 
@@ -36,32 +36,32 @@ func (d *drawer) ring(x, y, r, width float64, c colour) {
 }
 
 // sign draws the mark of a callout, 12 by 12.
-func (d *drawer) sign(k page.CalloutKind, x, y float64) {
-	cx, cy := x+6, y+6
-	switch k {
+func (d *drawer) sign(kind page.CalloutKind, x, y, k float64) {
+	cx, cy := x+6*k, y+6*k
+	switch kind {
 	case page.Note:
 		c := ink(page.Slate)
-		d.ring(cx, cy, 5.2, 1, c)
+		d.ring(cx, cy, 5.2*k, k, c)
 		d.setFill(c)
-		d.f.Circle(cx, cy-2.5, 0.75, "F")
-		d.f.Rect(cx-0.6, cy-1, 1.2, 4, "F")
+		d.f.Circle(cx, cy-2.5*k, 0.75*k, "F")
+		d.f.Rect(cx-0.6*k, cy-k, 1.2*k, 4*k, "F")
 	case page.Caution:
-		d.exclaim(cx, cy, 5.8, 3, math.Pi/2, ink(page.Warn))
+		d.exclaim(cx, cy, k, 5.8, 3, math.Pi/2, ink(page.Warn))
 	case page.Warning:
-		d.exclaim(cx, cy, 6, 8, math.Pi/8, ink(page.Black))
+		d.exclaim(cx, cy, k, 6, 8, math.Pi/8, ink(page.Black))
 	}
 }
 
 // exclaim is a filled regular polygon with a light exclamation mark.
-func (d *drawer) exclaim(cx, cy, r float64, n int, turn float64, c colour) {
+func (d *drawer) exclaim(cx, cy, k, r float64, n int, turn float64, c colour) {
 	pts := make([]fpdf.PointType, n)
 	for i := range pts {
 		a := turn + 2*math.Pi*float64(i)/float64(n)
-		pts[i] = fpdf.PointType{X: cx + r*math.Cos(a), Y: cy - r*math.Sin(a)}
+		pts[i] = fpdf.PointType{X: cx + r*k*math.Cos(a), Y: cy - r*k*math.Sin(a)}
 	}
 	d.setFill(c)
 	d.f.Polygon(pts, "F")
 	d.setFill(ink(page.Paper))
-	d.f.Rect(cx-0.6, cy-2.9, 1.2, 3.7, "F")
-	d.f.Circle(cx, cy+1.9, 0.7, "F")
+	d.f.Rect(cx-0.6*k, cy-2.9*k, 1.2*k, 3.7*k, "F")
+	d.f.Circle(cx, cy+1.9*k, 0.7*k, "F")
 }

@@ -102,10 +102,10 @@ type textStyle struct {
 
 // The scale: one step is about a fifth.
 var (
-	bodyStyle    = textStyle{serifFamily, 10.4, 14.6, ink(page.Black)}
+	bodyStyle    = textStyle{serifFamily, 10.3, 14.2, ink(page.Black)}
 	leadStyle    = textStyle{serifFamily, 12.6, 17.2, ink(page.Black)}
-	smallStyle   = textStyle{sansFamily, 7.8, 11, ink(page.Slate)}
-	quoteStyle   = textStyle{serifFamily, 10.4, 14.6, ink(page.Black)}
+	smallStyle   = textStyle{sansFamily, 8, 11.2, ink(page.Slate)}
+	quoteStyle   = textStyle{serifFamily, 10.3, 14.2, ink(page.Black)}
 	titleStyle   = textStyle{boldFamily, 19, 23.5, ink(page.Black)}
 	h1Style      = textStyle{boldFamily, 13.4, 17.5, ink(page.Black)}
 	h2Style      = textStyle{boldFamily, 10.6, 14, ink(page.Accent)}
@@ -121,12 +121,15 @@ var (
 // sheet is the paper and its margins, in points.
 type sheet struct{ width, height, left, right, top, bottom float64 }
 
+// sheetOf leaves 480 points between the margins on both papers, the width
+// figures are drawn for.
 func sheetOf(paper string) sheet {
-	s := sheet{width: 595.28, height: 841.89, left: 66, right: 66, top: 74, bottom: 76}
+	s := sheet{width: 595.28, height: 841.89, top: 72, bottom: 70}
 	if paper == "letter" {
-		s.width, s.height = 612, 792
-		s.top, s.bottom = 70, 72
+		s = sheet{width: 612, height: 792, top: 66, bottom: 66}
 	}
+	s.left = (s.width - 480) / 2
+	s.right = s.left
 	return s
 }
 

@@ -1,6 +1,7 @@
 package pdf
 
 import (
+	"math"
 	"sort"
 	"strings"
 
@@ -64,16 +65,23 @@ func (s *setter) table(b page.Table, fr frame, parent *elem) []piece {
 		tops[i] = body.child("TR")
 		rows[i] = s.measureRow(r, cols, tops[i])
 	}
-	g := measure(cols, heads, rows, fr)
+	g, tight := measure(cols, heads, rows, fr)
+	full, k := fr, 1.0
+	if tight > 1 { // smaller type, as far as it stays readable
+		k = max(1/tight, 0.8)
+		fr.w = full.w / k
+		g, _ = measure(cols, heads, rows, fr)
+	}
 	var again *piece
 	if heads != nil {
 		p := s.headPiece(g, heads, fr, thead)
+		p.scale(fr.x, k)
 		a := artifact(p)
 		again = &a
 		out = append(out, p)
 	} else {
 		p := piece{height: 1, keep: true}
-		p.rule(fr.x, 0, fr.w, 0.9, ink(page.Black))
+		p.rule(fr.x, 0, full.w, 0.9, ink(page.Black))
 		out = append(out, p)
 	}
 	for i := range rows {
@@ -85,10 +93,12 @@ func (s *setter) table(b page.Table, fr frame, parent *elem) []piece {
 		} else {
 			p.rule(fr.x, p.height, fr.w, 0.3, ink(page.Mist))
 		}
+		p.scale(fr.x, k)
 		p.again = again
 		p.keep = i == 0 && !last || i == len(rows)-2 || last && len(b.Notes) > 0
 		out = append(out, p)
 	}
+	fr = full
 	if height(out) < 0.34*s.sheet.depth() {
 		out = glued(out)
 		out[len(out)-1].keep = len(b.Notes) > 0
@@ -146,7 +156,9 @@ func (s *setter) measureRow(r page.Row, cols []page.Column, tr *elem) []cell {
 		out[i].cs = s.chars(in, st, el)
 		out[i].whole, out[i].word = natural(out[i].cs)
 		if cols[i].Align == page.Decimal {
-			out[i].left = decimal(out[i].cs)
+			if out[i].left = decimal(out[i].cs); out[i].whole-out[i].left > 48 {
+				out[i].left = -1 // words after the number
+			}
 		}
 		if len(out[i].cs) == 0 {
 			out[i].cs = []char{{look: &look{el: el}}}
@@ -178,10 +190,11 @@ func decimal(cs []char) float64 {
 }
 
 // measure shares the width out: columns with a share get it, the others what
-// their cells need, at least the widest word.
-func measure(cols []page.Column, head []cell, rows [][]cell, fr frame) *grid {
+// their cells need, at least the widest word. Where the widest words have no
+// room, the grid is wider than the frame and tight says by how much.
+func measure(cols []page.Column, head []cell, rows [][]cell, fr frame) (g *grid, tight float64) {
 	n := len(cols)
-	g := &grid{cols: cols, x: make([]float64, n), w: make([]float64, n), dec: make([]float64, n), rest: make([]float64, n)}
+	g = &grid{cols: cols, x: make([]float64, n), w: make([]float64, n), dec: make([]float64, n), rest: make([]float64, n)}
 	whole, word := make([]float64, n), make([]float64, n)
 	for i := range cols {
 		for _, r := range rows {
@@ -200,76 +213,114 @@ func measure(cols []page.Column, head []cell, rows [][]cell, fr frame) *grid {
 			whole[i] = max(whole[i], min(head[i].whole, max(word[i], 72)))
 		}
 	}
-	room := fr.w - gutter*float64(n-1)
-	stiffen(cols, whole, word, room, fr.w)
-	share(g.w, cols, whole, word, room, fr.w)
+	room, least := fr.w-gutter*float64(n-1), 0.0
+	for i, c := range cols {
+		if c.Share > 0 {
+			whole[i] = min(c.Share, 1) * fr.w
+			word[i] = whole[i]
+		}
+		least += word[i]
+	}
+	tight = (least + fr.w - room) / fr.w
+	share(g.w, whole, word, max(room, 8*float64(n)), cost(rows))
 	x := fr.x
 	for i := range g.x {
 		g.x[i] = x
 		x += g.w[i] + gutter
 	}
-	return g
-}
-
-// stiffen keeps narrow columns on one line, the narrowest first, as long as
-// all widest words still fit: numbers and intervals are not broken while a
-// column of prose can give way.
-func stiffen(cols []page.Column, whole, word []float64, room, full float64) {
-	var order []int
-	for i, c := range cols {
-		if c.Share > 0 {
-			room -= min(c.Share, 1) * full
-			continue
-		}
-		order = append(order, i)
-		room -= word[i]
-	}
-	sort.SliceStable(order, func(a, b int) bool { return whole[order[a]] < whole[order[b]] })
-	for _, i := range order {
-		if more := whole[i] - word[i]; more > 0 && more <= room && whole[i] <= 0.3*full {
-			word[i] = whole[i]
-			room -= more
-		}
-	}
+	return g, tight
 }
 
 // share fills w. When all cells fit on one line the spare room goes to the
-// columns in proportion to their width; otherwise each keeps its widest word
-// and the rest is shared by what the cells still want.
-func share(w []float64, cols []page.Column, whole, word []float64, room, full float64) {
-	fixed, want, least := 0.0, 0.0, 0.0
-	for i, c := range cols {
-		if c.Share > 0 {
-			w[i] = min(c.Share, 1) * full
-			fixed += w[i]
-			continue
-		}
+// columns in proportion to their width. Otherwise the narrowest columns stay
+// on one line and the others wrap to about the same depth; how many stay is
+// tried out, and the division with the lowest cost taken.
+func share(w, whole, word []float64, room float64, cost func([]float64) float64) {
+	want, least := 0.0, 0.0
+	for i := range whole {
 		want += whole[i]
 		least += word[i]
 	}
-	free := room - fixed
-	for i, c := range cols {
-		if c.Share > 0 {
-			continue
-		}
-		switch {
-		case want <= free && want > 0:
-			w[i] = whole[i] + (free-want)*whole[i]/want
-		case least <= free && want > least:
-			w[i] = word[i] + (free-least)*(whole[i]-word[i])/(want-least)
-		case least > 0:
-			w[i] = max(free, 8) * word[i] / least
-		}
-	}
-	total := 0.0
-	for i := range w {
-		total += w[i]
-	}
-	if total > room+0.01 {
+	if want <= room || least > room {
 		for i := range w {
-			w[i] *= room / total
+			if want <= room {
+				w[i] = whole[i] * room / max(want, 1)
+			} else {
+				w[i] = word[i] * room / least
+			}
+		}
+		return
+	}
+	order := make([]int, len(whole))
+	for i := range order {
+		order[i] = i
+	}
+	sort.SliceStable(order, func(a, b int) bool { return whole[order[a]] < whole[order[b]] })
+	stiff := append([]float64(nil), word...)
+	try, best := make([]float64, len(w)), math.Inf(1)
+	for n := 0; ; n++ {
+		depth := lines(whole, stiff, room)
+		if depth > 1e3 {
+			return
+		}
+		total := 0.0
+		for i := range try {
+			try[i] = max(stiff[i], whole[i]/depth)
+			total += try[i]
+		}
+		for i := range try {
+			try[i] *= room / total
+		}
+		if c := cost(try); c <= best {
+			best = c
+			copy(w, try)
+		}
+		if n == len(order) {
+			return
+		}
+		stiff[order[n]] = whole[order[n]]
+	}
+}
+
+// cost is about how many lines the rows take at column widths w.
+func cost(rows [][]cell) func(w []float64) float64 {
+	return func(w []float64) float64 {
+		sum := 0.0
+		for _, r := range rows {
+			most := 1.0
+			for i, c := range r {
+				if c.whole > w[i]+0.01 {
+					most = max(most, math.Ceil(c.whole*1.04/w[i]))
+				}
+			}
+			sum += most
+		}
+		return sum
+	}
+}
+
+// lines is the smallest depth at which columns no narrower than least have
+// room together; large when they have none at any.
+func lines(whole, least []float64, room float64) float64 {
+	need := func(depth float64) float64 {
+		sum := 0.0
+		for i := range whole {
+			sum += max(least[i], whole[i]/depth)
+		}
+		return sum
+	}
+	lo, hi := 1.0, 64.0
+	if need(hi) > room {
+		return 1e6
+	}
+	for range 24 {
+		if m := (lo + hi) / 2; need(m) > room {
+			lo = m
+		} else {
+			hi = m
 		}
 	}
+	return hi
 }
 
 func (s *setter) headPiece(g *grid, head []cell, fr frame, thead *elem) piece {
