@@ -224,17 +224,16 @@ func (c *composer) notes(h *result.Hypothesis) {
 }
 
 // judgedTable starts the table in which judgements stand together.
-func judgedTable(caption, first string) *table {
-	return newTable(caption, first, "Method", "#Estimate", "Interval", "#p", "Verdict")
+func (v voice) judgedTable(caption, first string) *table {
+	if u := inUnit(v.f); u != "" {
+		caption = strings.TrimPrefix(caption+u, ", ")
+	}
+	return newTable(capital(caption), first, "Method", "#Estimate", "Interval", "#p", "Verdict")
 }
 
 // judgedRow prints one judgement.
 func (v voice) judgedRow(t *table, name string, j *result.Judged) *page.Row {
 	s := v.shown(j)
-	interval := s.Range()
-	if interval != "" {
-		interval += " (" + number.Level(j.Level) + ")"
-	}
 	word := string(j.Verdict)
 	if j.Reason != nil {
 		word += ": " + noteText(*j.Reason)
@@ -242,7 +241,7 @@ func (v voice) judgedRow(t *table, name string, j *result.Judged) *page.Row {
 	if n := ReadingName(j.Reading, v.o.Better); n != "" && judged(j.Verdict) {
 		word += "; " + n
 	}
-	return t.row(name, j.Method, s.EstimateUnit(), interval, pCell(j.P, v.h.Alpha), word)
+	return t.row(name, j.Method, s.Estimate, withLevel(s.Bare(), j.Level), pCell(j.P, v.h.Alpha), word)
 }
 
 // pCell is a p-value in a table, "" where there is none.
@@ -258,7 +257,7 @@ func (c *composer) bySets(v voice) {
 	if len(v.h.BySet) < 2 {
 		return
 	}
-	t := judgedTable("In each analysis set; the largest p decides", "Set")
+	t := v.judgedTable("In each analysis set; the largest p decides", "Set")
 	for i := range v.h.BySet {
 		j := &v.h.BySet[i]
 		v.judgedRow(t, j.Set, j).Strong = j.Set == v.h.Set
@@ -268,7 +267,7 @@ func (c *composer) bySets(v voice) {
 
 // alternatives prints the verdict as it would stand otherwise.
 func (c *composer) alternatives(v voice) {
-	t := judgedTable("The verdict as it would stand otherwise", "Under")
+	t := v.judgedTable("The verdict as it would stand otherwise", "Under")
 	for i := range v.h.Alternatives {
 		j := &v.h.Alternatives[i]
 		v.judgedRow(t, becauseText(j.Because), j)

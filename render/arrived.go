@@ -11,7 +11,7 @@ func (c *composer) arrived() {
 		return
 	}
 	c.heading(1, "What arrived", "arrived")
-	c.studyTable()
+	c.studyTables()
 	if !c.res.Masked {
 		c.groupTable()
 		c.flowTable()
@@ -22,17 +22,29 @@ func (c *composer) arrived() {
 	c.fileTable()
 }
 
-// studyTable is one row an entry, analysed or not.
-func (c *composer) studyTable() {
-	t := newTable("Results, each analysed alone at the plan's descriptive level", "Study", "Outcome", "Set", "Known", "Look", ">n", "#Estimate", "Interval", "#p at the null", "Use")
+// studyTables print one row an entry, analysed or not, a table an outcome.
+func (c *composer) studyTables() {
+	done := map[string]bool{}
+	for i := range c.res.Studies {
+		if name := c.res.Studies[i].Outcome; !done[name] {
+			done[name] = true
+			c.studyTable(outcomeOf(c.res, name))
+		}
+	}
+	c.small(c.sourcesNote())
+}
+
+// studyTable prints the entries of one outcome.
+func (c *composer) studyTable(o *result.Outcome) {
+	t := newTable(o.Label+": results, each analysed alone"+inUnit(number.Of(o)), "Study", "Set", "Known", "Look", ">n", "#Estimate", "Interval", "#p at the null", "Use")
+	var why list
 	for i := range c.res.Studies {
 		s := &c.res.Studies[i]
-		o := outcomeOf(c.res, s.Outcome)
-		sh := c.studyShown(s, o)
-		use := useText(s.Use)
-		if s.Why != "" {
-			use += ": " + s.Why
+		if s.Outcome != o.Name {
+			continue
 		}
+		sh := c.studyShown(s, o)
+		why.named(s.Study, reasonText(s))
 		n := ""
 		if s.Analysis.N > 0 {
 			n = number.Count(s.Analysis.N)
@@ -44,15 +56,38 @@ func (c *composer) studyTable() {
 		case s.BareP != nil && !c.res.Masked:
 			p = bareText(s.BareP)
 		}
-		interval := sh.Range()
-		if interval != "" {
-			interval += " (" + number.Level(s.Analysis.Level) + ")"
-		}
-		row := t.row(s.Study, o.Label, s.Set, dateText(s.Date), s.Look, n, sh.EstimateUnit(), interval, p, use)
+		row := t.row(s.Study, s.Set, dateText(s.Date), s.Look, n, sh.Estimate, withLevel(sh.Bare(), s.Analysis.Level), p, useText(s.Use))
 		row.Grey = s.Use != result.Analysed && s.Use != result.MaskedUse
 	}
-	t.note(c.sourcesNote())
 	t.to(c)
+	why.to(c)
+}
+
+// reasonText is why an entry is not analysed, "" without one.
+func reasonText(s *result.Study) string {
+	if s.Why == "" {
+		return ""
+	}
+	return useText(s.Use) + ": " + fullStop(s.Why)
+}
+
+// inUnit is ", in UNIT" for captions, "" without a unit.
+func inUnit(f number.Format) string {
+	switch f.Unit {
+	case "":
+		return ""
+	case "%":
+		return ", in percent"
+	}
+	return ", in " + f.Unit
+}
+
+// withLevel adds the level to an interval that is there.
+func withLevel(interval string, level float64) string {
+	if interval == "" {
+		return ""
+	}
+	return interval + " (" + number.Level(level) + ")"
 }
 
 // studyShown is an entry's own estimate as text; empty while masked.
@@ -83,7 +118,7 @@ func useText(u result.Use) string {
 	case result.LeftOut:
 		return "left out"
 	case result.EarlierUse:
-		return "earlier than the plan, shown only"
+		return "earlier than the plan"
 	case result.Superseded:
 		return "superseded"
 	case result.MaskedUse:

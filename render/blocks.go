@@ -1,6 +1,8 @@
 package render
 
 import (
+	"strings"
+
 	"steelyard/render/page"
 )
 
@@ -147,6 +149,15 @@ func (l *list) named(name, text string) {
 	if text != "" {
 		l.items = append(l.items, []page.Inline{page.Strong(name), page.Text(": " + text)})
 	}
+}
+
+// line joins the items into one line of text.
+func (l *list) line() string {
+	var parts []string
+	for _, it := range l.items {
+		parts = append(parts, page.Plain(it))
+	}
+	return strings.Join(parts, " ")
 }
 
 func (l *list) to(c *composer) {

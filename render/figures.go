@@ -110,7 +110,7 @@ func (v voice) row(name string, j *result.Judged) chart.Row {
 		r.HighText = s.High
 	}
 	r.Right = s.Estimate
-	if rg := s.Range(); rg != "" {
+	if rg := s.Bare(); rg != "" {
 		r.Right += " (" + rg + ")"
 	}
 	return r
@@ -123,15 +123,22 @@ func hasInterval(j *result.Judged) bool {
 
 // beam is the figure of page one: one interval under the beam. A claim that
 // waits for results shows the empty beam.
-func (c *composer) beam(h *result.Hypothesis) *page.Figure {
+func (c *composer) beam(h *result.Hypothesis, dense bool) *page.Figure {
 	v := voiceOf(c.res, h)
 	if !v.o.Null.OK && !h.Limit.OK && !hasInterval(&h.Judged) {
 		return nil
 	}
 	b := c.ground(v)
 	b.Height = 27
+	if dense {
+		b.Height = 15
+	}
 	if hasInterval(&h.Judged) {
-		b.Rows = []chart.Row{v.row("", &h.Judged)}
+		r := v.row("", &h.Judged)
+		if dense {
+			r.EstText = ""
+		}
+		b.Rows = []chart.Row{r}
 	}
 	return &page.Figure{Alt: c.beamAlt(v), Drawing: b.Draw(), Plain: b.Plain(plainColumns)}
 }

@@ -20,7 +20,7 @@ func (c *composer) outcomeGround(o *result.Outcome) chart.Beam {
 // shownRow is an interval with its text on the right.
 func shownRow(f number.Format, name string, s number.Shown, est, low, high result.Opt) chart.Row {
 	r := chart.Row{Name: name, Est: point(f, est), Low: point(f, low), High: point(f, high), Right: s.Estimate}
-	if g := s.Range(); g != "" {
+	if g := s.Bare(); g != "" {
 		r.Right += " (" + g + ")"
 	}
 	return r

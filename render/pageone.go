@@ -13,25 +13,24 @@ import (
 // pageOne decides: all that a reader with one minute needs, on one page.
 func (c *composer) pageOne() {
 	c.add(page.Heading{Level: 0, Text: page.T(c.res.Record.Title), Anchor: "top"})
-	c.identityFacts()
+	primary := c.primary()
+	dense := len(primary) > 1
+	c.identityFacts(dense)
 	if q := c.rec.Plan.Question.V; q != "" {
 		c.add(page.Paragraph{Text: page.T(q), Style: page.Lead})
 	}
-	c.small(c.kindOfComparison())
-	primary := c.primary()
+	c.small(c.kindOfComparison(dense))
 	for _, h := range primary {
-		c.add(c.verdictBlock(h))
+		c.add(c.verdictBlock(h, dense))
 	}
 	c.small(c.otherClaims(len(primary)))
-	c.arrivalFacts(primary)
-	c.supports(primary)
-	c.closingFacts()
-	c.pageOneCaution()
+	c.arrivalFacts(primary, dense)
+	c.pageOneCaution(dense)
 	c.small(c.howToVerify())
 }
 
 // identityFacts are status, number, version, digest, date.
-func (c *composer) identityFacts() {
+func (c *composer) identityFacts(dense bool) {
 	r := &c.res.Record
 	var f facts
 	f.add("Record", identity(r))
@@ -41,9 +40,13 @@ func (c *composer) identityFacts() {
 		date = "undated"
 	}
 	f.add("Date", date)
-	f.add("Setting", r.Setting)
+	if !dense {
+		f.add("Setting", r.Setting)
+	}
 	f.code("Record SHA-256", short(r.SourceSHA256))
-	f.code("Plan SHA-256", short(r.PlanSHA256))
+	if !dense {
+		f.code("Plan SHA-256", short(r.PlanSHA256))
+	}
 	f.to(c, 2)
 }
 
@@ -57,18 +60,22 @@ func statusText(r *result.Record) string {
 	case result.PlanOnly:
 		parts = append(parts, "plan only")
 	case result.Interim:
-		parts = append(parts, "interim, more results may come")
+		parts = append(parts, "interim, more may come")
 	case result.Complete:
-		parts = append(parts, "complete, no more results will come")
+		parts = append(parts, "complete")
 	}
 	return strings.Join(parts, "; ")
 }
 
 // kindOfComparison says what is compared with what, and which way is better.
-func (c *composer) kindOfComparison() string {
+// Where several claims share the page their axes say the latter.
+func (c *composer) kindOfComparison(dense bool) string {
 	var out []string
 	if s := c.rec.Plan.Comparison.V; s != "" {
 		out = append(out, fullStop(s))
+		if dense {
+			return out[0]
+		}
 	}
 	seen := map[string]bool{}
 	for _, h := range c.primary() {
@@ -112,17 +119,27 @@ func (c *composer) primary() []*result.Hypothesis {
 }
 
 // verdictBlock is the page-one block of one hypothesis.
-func (c *composer) verdictBlock(h *result.Hypothesis) page.Verdict {
+// Where several share the page they stand closer: the reading joins the
+// qualifiers, and the figure leaves out numbers that the text gives.
+func (c *composer) verdictBlock(h *result.Hypothesis, dense bool) page.Verdict {
 	v := voiceOf(c.res, h)
 	j := &h.Judged
 	b := page.Verdict{Name: h.Name, Word: VerdictWord(j.Verdict), Tone: tone(j.Verdict), Qualify: c.qualify(h)}
+	v.brief = dense
 	b.Claim = page.T(capital(v.claim()) + ".")
 	b.Answer = v.answer(j)
 	if name, words := reading(j.Reading, v.o.Better); name != "" && judged(j.Verdict) {
-		b.Reading = []page.Inline{page.Text("Reading: "), page.Strong(name), page.Text(" – " + words + ".")}
+		if dense {
+			if b.Qualify != "" {
+				b.Qualify += "; "
+			}
+			b.Qualify += "reading: " + name
+		} else {
+			b.Reading = []page.Inline{page.Text("Reading: "), page.Strong(name), page.Text(" – " + words + ".")}
+		}
 	}
 	b.Region = page.T(v.regionText())
-	b.Figure = c.beam(h)
+	b.Figure = c.beam(h, dense)
 	return b
 }
 
@@ -171,24 +188,26 @@ func (v voice) answer(j *result.Judged) []page.Inline {
 		return page.T("Not decided: " + fullStop(noteText(*j.Reason)))
 	}
 	s := v.shown(j)
-	var in []page.Inline
+	var parts []string
 	if s.Estimate != "" {
-		in = append(in, page.Text(capital(v.t.short)+" "), page.Strong(s.EstimateUnit()))
+		parts = append(parts, capital(v.t.short)+" "+s.EstimateUnit())
 	}
 	if r := s.Range(); r != "" {
-		if len(in) > 0 {
-			in = append(in, page.Text("; "))
-		}
-		in = append(in, page.Text(number.Level(j.Level)+" interval "), page.Strong(r))
+		level := number.Level(j.Level) + " interval"
 		if !j.IntervalDecides && judged(j.Verdict) {
-			in = append(in, page.Text(" (does not decide)"))
+			level += ", does not decide"
+		}
+		if j.Verdict == result.Open {
+			parts = append(parts, "still compatible: "+r+" ("+level+")")
+		} else {
+			parts = append(parts, number.Level(j.Level)+" interval "+r+strings.TrimPrefix(level, number.Level(j.Level)+" interval"))
 		}
 	}
-	if p := decidingP(&v.h.Judged); p.OK && judged(j.Verdict) && j == &v.h.Judged {
-		in = append(in, page.Text("; "+pName(j)+number.PEquals(p, v.h.Alpha)))
+	if p := decidingP(j); p.OK && judged(j.Verdict) && !v.brief {
+		parts = append(parts, pName(j)+number.PEquals(p, v.h.Alpha))
 	}
-	in = append(in, page.Text("."))
-	if a := v.aside(j); a != "" {
+	in := page.T(strings.Join(parts, "; ") + ".")
+	if a := v.aside(j); a != "" && (!v.brief || s.LowEqual+s.HighEqual != "") {
 		in = append(in, page.Text(" "+a))
 	}
 	return in
@@ -254,7 +273,7 @@ func (c *composer) otherClaims(shown int) string {
 		if h.Role == "primary" || h.Role == "" {
 			continue
 		}
-		parts = append(parts, h.Name+" ("+h.Role+", "+claimName(h.Claim)+"): "+string(h.Verdict))
+		parts = append(parts, h.Name+" ("+h.Role+", "+h.Claim+") "+string(h.Verdict))
 	}
 	return "Also in this record: " + strings.Join(parts, "; ") + "."
 }
@@ -268,7 +287,7 @@ func (c *composer) howToVerify() string {
 	if name == "" || name == "-" || name == "." {
 		name = "NAME"
 	}
-	return "To check this file: steelyard verify " + name + ".pdf takes the record out of it, compiles it again and compares every number. Engine " + c.res.Engine + "."
+	return "To check this file: steelyard verify " + name + ".pdf takes the record out of it, compiles it again and compares. Engine " + c.res.Engine + "."
 }
 
 // bodyOf finds the label of an outcome in the record, nil when it has none.

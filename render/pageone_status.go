@@ -10,14 +10,38 @@ import (
 
 // arrivalFacts are the numbers per group, the looks, the seal and what is not
 // in the analysis.
-func (c *composer) arrivalFacts(primary []*result.Hypothesis) {
+func (c *composer) arrivalFacts(primary []*result.Hypothesis, dense bool) {
 	var f facts
 	f.add("Numbers", c.numbers(primary))
-	f.add("Looks", c.looksTaken())
-	f.add("Seal", c.sealText())
-	f.add("Changes", c.changeCounts())
-	f.add("Not analysed", c.notAnalysed())
+	if dense && len(f.items) > 0 && len(c.res.Totals) > 0 {
+		f.items[0].Value = page.T(c.denseNumbers())
+	}
+	if !dense {
+		f.add("Looks", c.looksTaken())
+		f.add("Seal", c.sealText())
+		f.add("Changes", c.changeCounts())
+		f.add("Not analysed", c.notAnalysed())
+		f.to(c, 1)
+		c.supports(primary)
+		f = facts{}
+	} else {
+		f.add("Seal, looks", strings.TrimSpace(c.sealText()+" "+c.changeCounts()+" "+prefixed("Looks: ", c.looksTaken())))
+		f.add("Not analysed", c.notAnalysed())
+		yes, no := c.supported(primary, true)
+		f.add("Supported", yes.line())
+		f.add("Not supported", no.line())
+	}
+	f.add("Still needed", c.stillNeeded())
+	f.add("Decision", c.decision())
 	f.to(c, 1)
+}
+
+// prefixed puts a prefix before a text that is there.
+func prefixed(prefix, s string) string {
+	if s == "" {
+		return ""
+	}
+	return prefix + s
 }
 
 // numbers are planned, randomised, analysed and missing per group.
@@ -66,6 +90,46 @@ func (c *composer) numbers(primary []*result.Hypothesis) string {
 		return ""
 	}
 	return strings.Join(parts, "; ") + "."
+}
+
+// denseNumbers are the same in one line: "planned / analysed: new 24 / 23".
+func (c *composer) denseNumbers() string {
+	heads := []string{"planned", "randomised", "analysed", "missing"}
+	pick := func(t result.GroupTotal) []result.Opt {
+		return []result.Opt{t.Planned, t.Randomised, t.Analysed, t.Missing}
+	}
+	var used []int
+	many := false
+	for k := range heads {
+		for _, t := range c.res.Totals {
+			if pick(t)[k].OK {
+				used = append(used, k)
+				break
+			}
+		}
+	}
+	for _, t := range c.res.Totals {
+		many = many || t.Outcome != c.res.Totals[0].Outcome
+	}
+	var head []string
+	for _, k := range used {
+		head = append(head, heads[k])
+	}
+	s := capital(strings.Join(head, " / ")) + ":"
+	for i, t := range c.res.Totals {
+		if i > 0 {
+			s += ";"
+		}
+		if many && (i == 0 || t.Outcome != c.res.Totals[i-1].Outcome) {
+			s += " " + outcomeOf(c.res, t.Outcome).Label + ","
+		}
+		var n []string
+		for _, k := range used {
+			n = append(n, number.CountOpt(pick(t)[k]))
+		}
+		s += " " + t.Group + " " + strings.Join(n, " / ")
+	}
+	return s + "."
 }
 
 // totalParts are the counts of one group, those that are known.
@@ -169,9 +233,15 @@ func sealWhen(s *result.Seal) string {
 	case s.Entries == 0:
 		return "."
 	case s.Entries == 1 || s.FirstAt == s.LastAt:
-		return " (" + s.LastAt + ")."
+		return " (" + dayOf(s.LastAt) + ")."
 	}
-	return " (" + number.Int(s.Entries) + " seals, the first " + s.FirstAt + ", the last " + s.LastAt + ")."
+	return " (" + number.Int(s.Entries) + " seals, " + dayOf(s.FirstAt) + " to " + dayOf(s.LastAt) + ")."
+}
+
+// dayOf is the day of an instant in UTC; the timeline has the time.
+func dayOf(at string) string {
+	day, _, _ := strings.Cut(at, "T")
+	return day
 }
 
 // changeCounts counts changes since the seal.
@@ -194,13 +264,13 @@ func (c *composer) changeCounts() string {
 	parts := []string{
 		plural(undeclared, "undeclared change of the plan", "undeclared changes of the plan"),
 		number.Int(declared) + number.Hard + "declared",
-		plural(len(s.EditedResults), "sealed result changed later", "sealed results changed later"),
 	}
 	if words > 0 {
-		parts = append(parts, plural(words, "change of wording only", "changes of wording only"))
+		parts = append(parts, number.Int(words)+number.Hard+"of wording only")
 	}
+	parts = append(parts, plural(len(s.EditedResults), "sealed result changed later", "sealed results changed later"))
 	if n := len(c.rec.Deviations); n > 0 {
-		parts = append(parts, plural(n, "deviation declared", "deviations declared"))
+		parts = append(parts, plural(n, "deviation", "deviations"))
 	}
 	return strings.Join(parts, "; ") + "."
 }
@@ -230,27 +300,45 @@ func (c *composer) notAnalysed() string {
 	return strings.Join(parts, "; ") + "."
 }
 
-// supports says what the results support and what they do not.
-func (c *composer) supports(primary []*result.Hypothesis) {
-	var yes, no list
+// supported says what the results support and what they do not.
+func (c *composer) supported(primary []*result.Hypothesis, dense bool) (yes, no list) {
 	for _, h := range primary {
 		v := voiceOf(c.res, h)
+		v.brief = true
 		j := &h.Judged
 		switch j.Verdict {
-		case result.Established, result.Suggested, result.Contradicted:
-			yes.named(h.Name, v.verdict(j)+".")
-		case result.Open:
-			no.named(h.Name, v.verdict(j)+".")
-		case result.Described, result.Pending, result.Masked:
-			no.named(h.Name, v.verdict(j)+".")
+		case result.Established, result.Suggested:
+			if dense {
+				yes.named(h.Name, "as claimed above.")
+			} else {
+				yes.named(h.Name, v.verdict(j)+".")
+			}
+		case result.Contradicted:
+			yes.named(h.Name, "the opposite: "+v.opposite(j)+".")
+		case result.Open, result.Described, result.Pending, result.Masked:
+			if dense {
+				no.named(h.Name, "the claim is "+string(j.Verdict)+".")
+			} else {
+				no.named(h.Name, v.verdict(j)+".")
+			}
 		}
 		if j.Verdict != result.Open || j.Reason == nil {
 			no.named(h.Name, notShown(j.Reading, v.o.Better))
 		}
 	}
 	for _, f := range c.res.Families {
-		yes.named(f.Name, familyLine(&f))
+		if f.Verdict == result.Established {
+			yes.named("Family "+f.Name, familyLine(&f))
+		} else {
+			no.named("Family "+f.Name, familyLine(&f))
+		}
 	}
+	return yes, no
+}
+
+// supports prints the two lists under their headings.
+func (c *composer) supports(primary []*result.Hypothesis) {
+	yes, no := c.supported(primary, false)
 	if len(yes.items) > 0 {
 		c.heading(2, "What the results support", "")
 		yes.to(c)
@@ -261,17 +349,13 @@ func (c *composer) supports(primary []*result.Hypothesis) {
 	}
 }
 
-// closingFacts are what is still needed, the decision and its deciders.
-func (c *composer) closingFacts() {
-	var f facts
-	f.add("Still needed", c.stillNeeded())
-	f.add("Decision", c.decision())
-	f.to(c, 1)
-}
-
 // pageOneCaution adds the setting's caution.
-func (c *composer) pageOneCaution() {
+func (c *composer) pageOneCaution(dense bool) {
 	s, _ := caution(c.res.Record.Setting)
+	if dense {
+		c.add(page.Paragraph{Style: page.Small, Text: []page.Inline{page.Strong("Caution. "), page.Text(s)}})
+		return
+	}
 	if strictSetting(c.res.Record.Setting) {
 		c.add(page.Callout{Kind: page.Caution, Title: "Caution", Blocks: []page.Block{page.Paragraph{Text: page.T(s), Style: page.Small}}})
 		return

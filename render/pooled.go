@@ -92,21 +92,17 @@ func pooledShown(p *result.Pooled, o *result.Outcome) number.Shown {
 
 // modelTable shows both models.
 func (c *composer) modelTable(group []*result.Pooled, o *result.Outcome) {
-	t := newTable("Both models; the plan's decides", "Model", ">Studies", "#Estimate", "Interval", "#p at the null", "New setting like these")
+	t := newTable("Both models; the plan's decides"+inUnit(number.Of(o)), "Model", ">Studies", "#Estimate", "Interval", "#p at the null", "New setting like these")
 	for _, p := range group {
 		s := pooledShown(p, o)
-		interval := s.Range()
-		if interval != "" {
-			interval += " (" + number.Level(p.Level) + ")"
-		}
 		prediction := ""
 		if p.PredictionLow.OK || p.PredictionHigh.OK {
-			prediction = number.Of(o).Interval(result.Opt{}, p.PredictionLow, p.PredictionHigh, outcomePoints(o)...).Range()
+			prediction = number.Of(o).Interval(result.Opt{}, p.PredictionLow, p.PredictionHigh, outcomePoints(o)...).Bare()
 			if n := ReadingName(p.PredictionReading, o.Better); n != "" {
 				prediction += "; " + n
 			}
 		}
-		t.row(modelName(p), number.Int(p.K), s.EstimateUnit(), interval, pCell(p.P, 0), prediction).Strong = p.Decides
+		t.row(modelName(p), number.Int(p.K), s.Estimate, withLevel(s.Bare(), p.Level), pCell(p.P, 0), prediction).Strong = p.Decides
 	}
 	t.to(c)
 }
@@ -150,15 +146,12 @@ func (c *composer) weightTable(p *result.Pooled, o *result.Outcome) {
 	if len(p.Share) != len(p.Studies) {
 		return
 	}
-	t := newTable("Studies and their weights under the model that decides", "Study", "#Estimate", "Interval", ">Weight")
+	t := newTable("Studies and their weights under the model that decides"+inUnit(number.Of(o)), "Study", "#Estimate", "Interval", ">Weight")
 	for i, name := range p.Studies {
 		est, interval := "", ""
 		if s := c.studyEntry(name, p.Outcome, p.Set); s != nil {
 			sh := c.studyShown(s, o)
-			est, interval = sh.EstimateUnit(), sh.Range()
-			if interval != "" {
-				interval += " (" + number.Level(s.Analysis.Level) + ")"
-			}
+			est, interval = sh.Estimate, withLevel(sh.Bare(), s.Analysis.Level)
 		}
 		t.row(name, est, interval, number.Share(p.Share[i]))
 	}
@@ -185,7 +178,7 @@ func (c *composer) studyEntry(study, outcome, set string) *result.Study {
 
 // leaveOneOut prints the pooled result without each study.
 func (c *composer) leaveOneOut(p *result.Pooled, o *result.Outcome) {
-	t := newTable("Each study left out in turn", "Without", "#Estimate", "Interval", "Verdicts")
+	t := newTable("Each study left out in turn"+inUnit(number.Of(o)), "Without", "#Estimate", "Interval", "Verdicts")
 	f := number.Of(o)
 	for _, l := range p.LeaveOneOut {
 		s := f.Interval(result.Some(l.Estimate), result.Some(l.Low), result.Some(l.High), outcomePoints(o)...)
@@ -197,7 +190,7 @@ func (c *composer) leaveOneOut(p *result.Pooled, o *result.Outcome) {
 			}
 			v = append(v, text)
 		}
-		t.row(l.Study, s.EstimateUnit(), s.Range(), strings.Join(v, "; "))
+		t.row(l.Study, s.Estimate, s.Bare(), strings.Join(v, "; "))
 	}
 	t.to(c)
 }

@@ -27,7 +27,7 @@ func (v voice) groupClaim() string {
 		return v.sided(a+" is not worse than "+b+" in "+on+" by the margin or more", v.harm(), v.upward())
 	case "equivalent":
 		s := a + " and " + b + " differ in " + on + " by less than matters"
-		if r := v.region(); r != "" {
+		if r := v.region(); r != "" && !v.brief {
 			s += " (" + v.t.short + " strictly inside " + r + ")"
 		}
 		return s
@@ -54,7 +54,7 @@ func (v voice) sampleClaim() string {
 		return v.sided(the+" is not worse than "+v.null()+" by the margin or more", v.harm(), v.upward())
 	case "equivalent":
 		s := the + " differs from " + v.null() + " by less than matters"
-		if r := v.region(); r != "" {
+		if r := v.region(); r != "" && !v.brief {
 			s += " (strictly inside " + r + ")"
 		}
 		return s

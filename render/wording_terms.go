@@ -84,6 +84,8 @@ type voice struct {
 	h   *result.Hypothesis
 	f   number.Format
 	t   term
+
+	brief bool // without the inequality in brackets, which stands beside it
 }
 
 // voiceOf prepares the words for a hypothesis of the result.
@@ -192,6 +194,9 @@ func (v voice) side(p result.Opt, above bool) string {
 
 // sided wraps side in brackets after a text.
 func (v voice) sided(text string, p result.Opt, above bool) string {
+	if v.brief {
+		return text
+	}
 	if s := v.side(p, above); s != "" {
 		return text + " (" + s + ")"
 	}

@@ -47,16 +47,13 @@ func (v voice) verdict(j *result.Judged) string {
 	return "Whether " + v.claim() + " is not judged"
 }
 
-// open words an open claim: with the reason, or with what stays compatible.
+// open words an open claim, with the reason where it could not be decided.
+// What stays compatible follows as evidence.
 func (v voice) open(j *result.Judged) string {
 	if j.Reason != nil {
 		return "Whether " + v.claim() + " stays open: " + strings.TrimSuffix(noteText(*j.Reason), ".")
 	}
-	s := v.opening() + " leave open, " + v.atError() + ", whether " + v.atLeastOne() + v.claim()
-	if r := v.shown(j).Range(); r != "" && v.h.Evidence != "combined" {
-		s += "; still compatible: " + r
-	}
-	return s
+	return v.opening() + " leave open, " + v.atError() + ", whether " + v.atLeastOne() + v.claim()
 }
 
 // opening names the data that speak.
@@ -133,7 +130,13 @@ func (v voice) evidence(j *result.Judged) string {
 	}
 	if r := s.Range(); r != "" {
 		text := number.Level(j.Level) + " interval " + r
-		if !j.IntervalDecides && judged(j.Verdict) {
+		if j.Verdict == result.Open {
+			text = "still compatible: " + r + " (" + number.Level(j.Level) + " interval"
+			if !j.IntervalDecides {
+				text += ", shown beside the verdict; it does not decide it"
+			}
+			text += ")"
+		} else if !j.IntervalDecides && judged(j.Verdict) {
 			text += " (shown beside the verdict; it does not decide it)"
 		}
 		parts = append(parts, text)

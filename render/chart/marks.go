@@ -104,6 +104,10 @@ func ticksFor(a Axis, width float64) []Tick {
 // axisTitle writes the axis's name and its better direction under a plot.
 func (c *canvas) axisTitle(f frame, a Axis, y float64) {
 	mid := (f.x0 + f.x1) / 2
+	left, right := edge, c.w-edge // a narrow plot's title may use the whole width
+	if f.x1-f.x0 > 0.7*c.w {
+		left, right = f.x0, f.x1
+	}
 	better := ""
 	switch a.Better {
 	case "higher":
@@ -113,17 +117,15 @@ func (c *canvas) axisTitle(f frame, a Axis, y float64) {
 	}
 	size := labelSize
 	bw := textWidth(better, size)
-	room := f.x1 - f.x0
-	title := fitText(a.Title, size, room-bw-10)
 	switch a.Better {
 	case "higher":
 		c.label(f.x1, y, better, size, page.Slate, page.End, false)
-		c.label(f.x0, y, title, size, page.Black, page.Start, false)
+		c.label(left, y, fitText(a.Title, size, f.x1-left-bw-10), size, page.Black, page.Start, false)
 	case "lower":
 		c.label(f.x0, y, better, size, page.Slate, page.Start, false)
-		c.label(f.x1, y, title, size, page.Black, page.End, false)
+		c.label(right, y, fitText(a.Title, size, right-f.x0-bw-10), size, page.Black, page.End, false)
 	default:
-		c.label(mid, y, title, size, page.Black, page.Middle, false)
+		c.label(mid, y, fitText(a.Title, size, right-left), size, page.Black, page.Middle, false)
 	}
 }
 

@@ -175,6 +175,12 @@ func (s Shown) Range() string {
 	return s.Low + " to " + s.f.WithUnit(s.High)
 }
 
+// Bare is Range without the unit, for columns whose head or caption has it.
+func (s Shown) Bare() string {
+	s.f.Unit = ""
+	return s.Range()
+}
+
 // EstimateUnit is the estimate with its unit.
 func (s Shown) EstimateUnit() string {
 	if s.Estimate == "" {

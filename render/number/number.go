@@ -124,7 +124,7 @@ func (f Format) Value(v, about float64) string {
 }
 
 // Plain writes a number as it was stated: shortest, at most 9 significant
-// digits, else 5; grouped, with a true minus sign. Infinities are words.
+// digits, else 4; grouped, with a true minus sign. Infinities are words.
 func Plain(v float64) string {
 	switch {
 	case math.IsNaN(v):
@@ -139,7 +139,7 @@ func Plain(v float64) string {
 	r, _ := strconv.ParseFloat(strconv.FormatFloat(v, 'g', 12, 64), 64)
 	short := strconv.FormatFloat(r, 'e', -1, 64)
 	if significant(short) > 9 {
-		r, _ = strconv.ParseFloat(strconv.FormatFloat(v, 'g', 5, 64), 64)
+		r, _ = strconv.ParseFloat(strconv.FormatFloat(v, 'g', 4, 64), 64)
 	}
 	if a := math.Abs(r); a >= 1e15 || a < 1e-7 {
 		return scientific(r, -1)
