@@ -70,7 +70,7 @@ func analyseGiven(m *record.Measure, method string, in Input) (*Inference, *Prob
 		inf.N = e.N.V
 	}
 	inf.Notes = notes
-	if method != "" && method != word && method != m.Methods[0] {
+	if method != "" && method != word {
 		inf.Notes = append(inf.Notes, note("S206", givenTakesOwn, method, word))
 	}
 	return inf, nil

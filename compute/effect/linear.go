@@ -2,6 +2,7 @@ package effect
 
 import (
 	"math"
+	"slices"
 
 	"steelyard/compute/numeric"
 	"steelyard/compute/result"
@@ -123,7 +124,7 @@ func design(word string, scale record.Scale, in Input) (y []float64, cols []colu
 		}
 		cols = append(cols, column{name: c.Name, kind: numbers, values: c.Values, mean: cm.Mean, size: size})
 	}
-	if in.Strata != nil {
+	if in.Strata != nil && !amongCovariates(in.Strata, in.Covariates) {
 		cols = append(cols, dummies("strata", in.Strata, in.StrataCount)...)
 	}
 	for _, g := range in.Group {
@@ -133,6 +134,17 @@ func design(word string, scale record.Scale, in Input) (y []float64, cols []colu
 	}
 	cols = append(cols, column{name: "the group", kind: groups, group: in.Group, mean: n1 / float64(n)})
 	return centred, cols, n1, nil
+}
+
+// amongCovariates reports whether the strata are a factor that was also handed
+// over as a covariate, under its own name.
+func amongCovariates(strata []int32, covariates []Covariate) bool {
+	for _, c := range covariates {
+		if c.Levels != nil && slices.Equal(c.Code, strata) {
+			return true
+		}
+	}
+	return false
 }
 
 // dummies are the columns of a factor; levels that no row has are skipped,
