@@ -23,7 +23,11 @@ func (c *composer) analyses() {
 // analysis is all that was computed for one hypothesis.
 func (c *composer) analysis(h *result.Hypothesis) {
 	v := voiceOf(c.res, h)
-	c.heading(2, h.Name+": "+v.label()+" – "+claimName(h.Claim)+": "+string(h.Verdict), "hypothesis-"+h.Name)
+	title := h.Name + ": " + v.label() + " – " + claimName(h.Claim)
+	if h.Verdict != result.Described {
+		title += ": " + string(h.Verdict)
+	}
+	c.heading(2, title, "hypothesis-"+h.Name)
 	text := []page.Inline{page.Strong(capital(string(h.Verdict)))}
 	if q := c.qualify(h); q != "" {
 		text = append(text, page.Text(" ("+q+")"))
@@ -86,7 +90,9 @@ func (c *composer) numbersOf(v voice) {
 		f.add("Events", number.Count(h.Events.V))
 	}
 	f.add("Method", h.Method)
-	f.add("Error level", strings.TrimPrefix(v.atError(), "at "))
+	if h.Claim != "describe" {
+		f.add("Error level", strings.TrimPrefix(v.atError(), "at "))
+	}
 	if h.P.OK {
 		f.add("p of the claim", number.P(h.P, h.Alpha))
 	}

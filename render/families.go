@@ -41,7 +41,7 @@ func familyLine(f *result.Family) string {
 	for _, m := range f.Members {
 		names = append(names, m.Hypothesis)
 	}
-	return "family of " + join(names) + " (" + f.Procedure + "): " + string(f.Verdict) + "."
+	return join(names) + " together (" + f.Procedure + "): " + string(f.Verdict) + "."
 }
 
 // families prints every family with the path of its procedure.
@@ -62,7 +62,7 @@ func (c *composer) families() {
 			}
 			local := ""
 			if m.AlphaLocal.OK {
-				local = number.Significant(m.AlphaLocal.V, 3)
+				local = number.Short(m.AlphaLocal.V, 3)
 			}
 			t.row(m.Hypothesis, number.P(m.P, f.Alpha), number.P(m.PAdjusted, f.Alpha), local, word)
 		}
@@ -75,7 +75,7 @@ func (c *composer) families() {
 				if s.Rejected {
 					word = "shown, its level passes on"
 				}
-				p.row(number.Int(k+1), s.Hypothesis, number.P(result.P{P: s.P, OK: true}, s.Level), number.Significant(s.Level, 3), word)
+				p.row(number.Int(k+1), s.Hypothesis, number.P(result.P{P: s.P, OK: true}, s.Level), number.Short(s.Level, 3), word)
 			}
 			p.to(c)
 		}

@@ -21,11 +21,11 @@ func (c *composer) looks() {
 		}
 		spent := ""
 		if l.AlphaSpent.OK {
-			spent = number.Significant(l.AlphaSpent.V, 3)
+			spent = number.Short(l.AlphaSpent.V, 3)
 		}
 		info := ""
 		if l.Information.OK {
-			info = number.Significant(l.Information.V, 4)
+			info = number.Short(l.Information.V, 4)
 		}
 		fraction := ""
 		if l.Fraction.OK {

@@ -194,13 +194,16 @@ func (v voice) answer(j *result.Judged) []page.Inline {
 	}
 	if r := s.Range(); r != "" {
 		level := number.Level(j.Level) + " interval"
-		if !j.IntervalDecides && judged(j.Verdict) {
-			level += ", does not decide"
-		}
-		if j.Verdict == result.Open {
+		shown := judged(j.Verdict) && !j.IntervalDecides
+		switch {
+		case j.Verdict == result.Open && shown:
+			parts = append(parts, "still compatible: "+r+" ("+level+", which does not decide)")
+		case j.Verdict == result.Open:
 			parts = append(parts, "still compatible: "+r+" ("+level+")")
-		} else {
-			parts = append(parts, number.Level(j.Level)+" interval "+r+strings.TrimPrefix(level, number.Level(j.Level)+" interval"))
+		case shown:
+			parts = append(parts, level+" "+r+" (it does not decide)")
+		default:
+			parts = append(parts, level+" "+r)
 		}
 	}
 	if p := decidingP(j); p.OK && judged(j.Verdict) && !v.brief {

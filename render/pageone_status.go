@@ -300,31 +300,41 @@ func (c *composer) notAnalysed() string {
 	return strings.Join(parts, "; ") + "."
 }
 
-// supported says what the results support and what they do not.
+// supported says what the results support and what they do not. Where
+// several claims share the page they are named and not worded again.
 func (c *composer) supported(primary []*result.Hypothesis, dense bool) (yes, no list) {
+	var asClaimed []string
 	for _, h := range primary {
 		v := voiceOf(c.res, h)
 		v.brief = true
 		j := &h.Judged
+		var not []string
 		switch j.Verdict {
 		case result.Established, result.Suggested:
 			if dense {
-				yes.named(h.Name, "as claimed above.")
+				asClaimed = append(asClaimed, h.Name)
 			} else {
 				yes.named(h.Name, v.verdict(j)+".")
 			}
 		case result.Contradicted:
 			yes.named(h.Name, "the opposite: "+v.opposite(j)+".")
-		case result.Open, result.Described, result.Pending, result.Masked:
+			not = append(not, "its claim")
+		case result.Open, result.Pending, result.Masked:
 			if dense {
-				no.named(h.Name, "the claim is "+string(j.Verdict)+".")
+				not = append(not, "its claim ("+string(j.Verdict)+")")
 			} else {
 				no.named(h.Name, v.verdict(j)+".")
 			}
+		case result.Described:
+			not = append(not, "a claim, as it is only described")
 		}
-		if j.Verdict != result.Open || j.Reason == nil {
-			no.named(h.Name, notShown(j.Reading, v.o.Better))
+		if s := notShown(j.Reading, v.o.Better); s != "" && judged(j.Verdict) {
+			not = append(not, s)
 		}
+		no.named(h.Name, fullStop(strings.Join(not, "; ")))
+	}
+	if len(asClaimed) > 0 {
+		yes.add("As claimed above: " + join(asClaimed) + ".")
 	}
 	for _, f := range c.res.Families {
 		if f.Verdict == result.Established {

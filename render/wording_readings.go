@@ -74,8 +74,8 @@ func plainReading(good, bad int, up, down string) (name, words string) {
 	return "", ""
 }
 
-// notShown says what a reading leaves unsettled, as a sentence about the
-// effect; "" when it settles direction and size.
+// notShown names what a reading does not support, to stand after "not
+// supported:"; "" when it settles direction and size.
 func notShown(r result.Reading, better string) string {
 	if !r.OK {
 		return ""
@@ -91,23 +91,23 @@ func notShown(r result.Reading, better string) string {
 	}
 	if !r.HasRegion {
 		if good == 0 && bad == 0 {
-			return "The direction of the effect is not settled."
+			return "a direction of the effect"
 		}
-		return "Whether the effect is large enough to matter: no smallest effect was stated."
+		return "that the effect is large enough to matter, as no smallest effect was stated"
 	}
 	switch [2]int{good, bad} {
 	case [2]int{2, 0}, [2]int{0, 2}:
-		return "Whether the effect is large enough to matter."
+		return "that the effect is large enough to matter"
 	case [2]int{1, 0}:
-		return "Whether the effect is " + up + " than the null."
+		return "that the effect is " + up + " than the null"
 	case [2]int{0, 1}:
-		return "Whether the effect is " + down + " than the null."
+		return "that the effect is " + down + " than the null"
 	case [2]int{1, 1}:
-		return "The direction of the effect."
+		return "a direction of the effect"
 	case [2]int{0, 0}:
-		return "The direction of the effect, or that it is too small to matter."
+		return "a direction of the effect, or that it is too small to matter"
 	case [2]int{2, 1}, [2]int{1, 2}:
-		return "An effect large enough to matter: it is excluded in both directions."
+		return "an effect large enough to matter, which is excluded in both directions"
 	}
 	return ""
 }

@@ -176,11 +176,45 @@ func (b Beam) hang(c *canvas, f frame, r Row, top, height float64) {
 		c.end(f, a, low, y, ink, -1, top)
 		c.end(f, a, high, y, ink, 1, top)
 		if b.Names == 0 {
-			c.label(x0-6, y+3, r.LowText, labelSize, page.Black, page.End, false)
-			c.label(x1+6, y+3, r.HighText, labelSize, page.Black, page.Start, false)
+			b.cleared(c, f, x0-6-textWidth(r.LowText, labelSize), y, r.LowText)
+			b.cleared(c, f, x1+6, y, r.HighText)
 		}
 	}
 	b.estimate(c, f, r, y, ink)
+}
+
+// cleared writes a text from x on, over a ground that hides the lines of
+// null, band and marks behind it.
+func (b Beam) cleared(c *canvas, f frame, x, y float64, text string) {
+	if text == "" {
+		return
+	}
+	w := textWidth(text, labelSize)
+	x = math.Max(edge, math.Min(x, c.w-edge-w))
+	lines := []float64{}
+	if b.Null.OK {
+		lines = append(lines, f.x(b.Axis, b.Null.V))
+	}
+	for _, m := range b.Marks {
+		lines = append(lines, f.x(b.Axis, m.V))
+	}
+	inside := false
+	if b.Band.OK {
+		x0, x1 := f.x(b.Axis, b.Band.Low), f.x(b.Axis, b.Band.High)
+		lines = append(lines, x0, x1)
+		inside = x0 < x && x+w < x1
+	}
+	for _, l := range lines {
+		if l > x-1 && l < x+w+1 {
+			fill := page.Paper
+			if inside {
+				fill = page.Band
+			}
+			c.add(page.Rect{X: x - 1, Y: y - 4.5, W: w + 2, H: 9.5, Fill: fill})
+			break
+		}
+	}
+	c.label(x, y+3, text, labelSize, page.Black, page.Start, false)
 }
 
 // end draws the end of an interval: a hanger up toward the beam where the

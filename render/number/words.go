@@ -54,10 +54,7 @@ func Level(v float64) string {
 }
 
 // Error writes an error level as stated.
-func Error(v float64) string {
-	r, _ := strconv.ParseFloat(strconv.FormatFloat(v, 'g', 6, 64), 64)
-	return Plain(r)
-}
+func Error(v float64) string { return Plain(v) }
 
 // Count writes a number of things; one decimal where it is not whole.
 func Count(v float64) string {
@@ -158,6 +155,19 @@ func Significant(v float64, n int) string {
 		return fixed(v, 0)
 	}
 	return fixed(v, d)
+}
+
+// Short writes a number to at most n significant digits, without the zeros
+// that would follow; whole numbers below 1e15 in full.
+func Short(v float64, n int) string {
+	if math.IsNaN(v) || math.IsInf(v, 0) || v == math.Trunc(v) {
+		return Plain(v)
+	}
+	r, err := strconv.ParseFloat(strconv.FormatFloat(v, 'g', n, 64), 64)
+	if err != nil {
+		return Plain(v)
+	}
+	return Plain(r)
 }
 
 // SignificantOpt is Significant, or the sign for an absent number.
