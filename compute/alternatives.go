@@ -42,7 +42,7 @@ func (t *trial) judged(at attempt) result.Judged {
 
 func (r *run) leftOut(h *record.Hypothesis, o *record.Outcome) bool {
 	return slices.ContainsFunc(r.rec.Results, func(res *record.Result) bool {
-		return res.LeaveOut.Stated && res.Outcome.V == o.Name && wanted(h.Studies, res.Study.V)
+		return res.LeaveOut.Stated && res.Outcome.V == o.Name && h.Counts(res.Study.V)
 	})
 }
 
@@ -67,7 +67,7 @@ func (r *run) otherMethods(t *trial, o *record.Outcome) []result.Judged {
 			continue
 		}
 		at := attempt{set: decided.set, because: "method:" + word, spec: decided.spec, studies: decided.studies}
-		at.spec.method = word
+		at.spec.method, at.spec.stated = word, true
 		r.gather(&at, t.h, t.question, entries)
 		if at.problem == nil && at.inf != nil && at.inf.Word == word {
 			out = append(out, t.judged(at))
@@ -90,7 +90,7 @@ func (r *run) offers(word string, in effect.Input, decided attempt) bool {
 func (r *run) entriesOf(h *record.Hypothesis, o *record.Outcome, set string) []entry {
 	var found []entry
 	for _, e := range r.entries(o.Name, set, false) {
-		if wanted(h.Studies, e.res.Study.V) {
+		if h.Counts(e.res.Study.V) {
 			found = append(found, e)
 		}
 	}

@@ -82,7 +82,7 @@ func (r *run) growth(o *record.Outcome) []grown {
 	entries := r.entries(o.Name, r.sets()[0], false)
 	sort.SliceStable(entries, func(i, j int) bool { return entries[i].res.Day().Compare(entries[j].res.Day()) < 0 })
 	opt := pool.Options{}
-	plan := r.poolingOf(o.Name)
+	plan := r.rec.PoolingOf(o.Name)
 	if plan != nil {
 		opt = (&poolRun{plan: plan}).planned()
 	} else {

@@ -101,8 +101,10 @@ func (r *run) study(key data.Key, res *record.Result, use result.Use) {
 			low, high := inf.Method.Limits((1 - r.level) / 2)
 			s.Analysis = analysisOf(sp, inf, r.level, low, high)
 			t := inf.Method.Test(in.Null)
-			p := twoSided(t)
-			s.P = p
+			s.P = twoSided(t)
+			if in.Time != nil && in.Given == nil && len(o.Groups.V) == 2 {
+				s.Survival = r.curvesOf(in, [2]string{o.Groups.V[0].V, o.Groups.V[1].V})
+			}
 		}
 	}
 	r.res.Studies = append(r.res.Studies, s)
@@ -111,21 +113,19 @@ func (r *run) study(key data.Key, res *record.Result, use result.Use) {
 // studySpec is how an entry of an outcome is shown: by the method that the
 // first hypothesis on the outcome names, else by the default.
 func (r *run) studySpec(o *record.Outcome) spec {
-	s := spec{outcome: o, measure: record.MeasureOf(o.Measure.V), a: (1 - r.level) / 2}
+	a := (1 - r.level) / 2
 	for _, h := range r.rec.Plan.Hypotheses {
 		if h.Outcome.V == o.Name {
-			return r.specOf(h, o, s.a)
+			return r.specOf(h, o, a)
 		}
 	}
-	return s
+	return r.specOf(&record.Hypothesis{}, o, a)
 }
 
 func (r *run) specOf(h *record.Hypothesis, o *record.Outcome, a float64) spec {
-	s := spec{outcome: o, measure: record.MeasureOf(o.Measure.V), method: h.Method.V, strata: h.Strata.V, a: a}
-	for _, c := range h.Adjust.V {
-		s.adjust = append(s.adjust, c.V)
-	}
-	return s
+	word, _ := h.MethodWord(o)
+	return spec{outcome: o, measure: record.MeasureOf(o.Measure.V), method: word, stated: h.Method.Stated,
+		adjust: record.Texts(h.Adjust), strata: h.Strata.V, a: a}
 }
 
 func analysisOf(s spec, inf *effect.Inference, level, low, high float64) result.Analysis {

@@ -46,10 +46,7 @@ func (r *run) hypothesis(h *record.Hypothesis) {
 	t := &trial{h: h, question: q, deciding: -1, out: r.hypothesisHead(h, o, q)}
 	sets := []string{""}
 	if len(r.rec.Plan.Sets) > 0 {
-		sets = nil
-		for _, s := range h.Sets.V {
-			sets = append(sets, s.V)
-		}
+		sets = record.Texts(h.Sets)
 	}
 	for _, set := range sets {
 		at := r.attempt(h, o, q, set, false)
@@ -68,7 +65,7 @@ func (r *run) hypothesis(h *record.Hypothesis) {
 
 func (r *run) question(h *record.Hypothesis, o *record.Outcome) claim.Question {
 	m := record.MeasureOf(o.Measure.V)
-	null, low, high, has := h.Points(o)
+	null, low, high, has := pointsOf(h, o)
 	alpha, _ := h.ErrorLevel(&r.rec.Plan)
 	better := o.Better.V
 	if better == "" {
@@ -76,6 +73,33 @@ func (r *run) question(h *record.Hypothesis, o *record.Outcome) claim.Question {
 	}
 	return claim.Question{Claim: h.Claim.V, Better: better, Alpha: alpha, Null: null, Low: low, High: high, HasRegion: has,
 		Limit: h.Limit.V, Scale: m.Scale, RangeLow: m.Low, RangeHigh: m.High, Level: r.level}
+}
+
+// pointsOf are the points of a claim: the outcome's, with the margin in the
+// place of the one that the claim is tested against, or of both where the
+// outcome has no region or the claim reads both.
+func pointsOf(h *record.Hypothesis, o *record.Outcome) (null, low, high float64, has bool) {
+	null, low, high, has = h.Points(o)
+	_, outerLow, outerHigh, outer := o.Points()
+	if !h.Margin.Stated || !outer {
+		return null, low, high, has
+	}
+	higher := o.Better.V != "lower"
+	switch h.Claim.V {
+	case "noninferior":
+		if higher {
+			high = outerHigh
+		} else {
+			low = outerLow
+		}
+	case "minimum-effect", "benefit-too-small":
+		if higher {
+			low = outerLow
+		} else {
+			high = outerHigh
+		}
+	}
+	return null, low, high, has
 }
 
 func (r *run) hypothesisHead(h *record.Hypothesis, o *record.Outcome, q claim.Question) *result.Hypothesis {
@@ -97,25 +121,13 @@ func (r *run) attempt(h *record.Hypothesis, o *record.Outcome, q claim.Question,
 	at := attempt{set: set, spec: r.specOf(h, o, q.Error())}
 	var found []entry
 	for _, e := range r.entries(o.Name, set, withLeftOut) {
-		if wanted(h.Studies, e.res.Study.V) {
+		if h.Counts(e.res.Study.V) {
 			found = append(found, e)
 			at.studies = append(at.studies, e.res.Study.V)
 		}
 	}
 	r.gather(&at, h, q, found)
 	return at
-}
-
-func wanted(list record.Strings, study string) bool {
-	if !list.Stated {
-		return true
-	}
-	for _, s := range list.V {
-		if s.V == study {
-			return true
-		}
-	}
-	return false
 }
 
 // gather turns the entries into one inference by the stated evidence.

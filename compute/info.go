@@ -19,7 +19,7 @@ func (r *run) describe() {
 	h := r.rec.Head
 	sum := sha256.Sum256(r.in.Source.Text)
 	r.res.Record = result.Record{Title: h.Title.V, Number: h.Number.V, Version: h.Version.V, Status: h.Status.V,
-		Setting: h.Setting.V, Stage: r.stage(), Date: r.rec.BindingDate(), SourceSHA256: hex.EncodeToString(sum[:]), PlanSHA256: r.in.PlanSHA256}
+		Setting: h.Setting.V, Stage: r.stage(), Date: r.rec.Dated(), SourceSHA256: hex.EncodeToString(sum[:]), PlanSHA256: r.in.PlanSHA256}
 	if r.res.Record.Status == "" {
 		r.res.Record.Status = "draft"
 	}
@@ -145,17 +145,9 @@ func (r *run) choices() {
 		}
 		add(h.Name+": evidence", h.Evidence, t.h.Evidence.Stated, "")
 		if t.h.Studies.Stated {
-			add(h.Name+": studies", strings.Join(words(t.h.Studies), ", "), true, "")
+			add(h.Name+": studies", strings.Join(record.Texts(t.h.Studies), ", "), true, "")
 		}
 	}
-}
-
-func words(s record.Strings) []string {
-	var out []string
-	for _, w := range s.V {
-		out = append(out, w.V)
-	}
-	return out
 }
 
 // drawsRandom reports whether any analysis used the seed.

@@ -22,7 +22,8 @@ type entry struct {
 type spec struct {
 	outcome *record.Outcome
 	measure *record.Measure
-	method  string // "" is the default
+	method  string
+	stated  bool // the record names the method
 	adjust  []string
 	strata  string
 	a       float64 // one-sided error of the claim

@@ -37,13 +37,13 @@ const (
 // pooled pools the entries as the plan says and records both models.
 func (r *run) pooled(at *attempt, h *record.Hypothesis, found []entry) (*effect.Inference, *result.Note) {
 	o := at.spec.outcome
-	plan := r.poolingOf(o.Name)
+	plan := r.rec.PoolingOf(o.Name)
 	if plan == nil {
 		return nil, &result.Note{Code: "S111", Message: noPooling, Args: []any{o.Name}}
 	}
 	if plan.IncludeEarlier.V {
 		for i, res := range r.rec.Earlier {
-			if res.Outcome.V != o.Name || !wanted(h.Studies, res.Study.V) || res.P != nil {
+			if res.Outcome.V != o.Name || !h.Counts(res.Study.V) || res.P != nil {
 				continue
 			}
 			if e, ok := r.entry(keyOfEarlier(i, at.set), res, result.EarlierUse); ok {
@@ -60,15 +60,6 @@ func (r *run) pooled(at *attempt, h *record.Hypothesis, found []entry) (*effect.
 	inf := p.inference(decides)
 	r.recordPools(at, h, p)
 	return inf, nil
-}
-
-func (r *run) poolingOf(outcome string) *record.Pooling {
-	for _, p := range r.rec.Plan.Poolings {
-		if p.Name == outcome {
-			return p
-		}
-	}
-	return nil
 }
 
 // poolRun is one set of studies to be pooled.

@@ -46,7 +46,7 @@ func (r *run) vary(out *result.Sensitivity, s *record.Sensitivity, t *trial, h *
 		}
 	case "method":
 		alt := attempt{set: at.set, because: "sensitivity:" + s.Name, spec: at.spec, studies: at.studies}
-		alt.spec.method = s.Method.V
+		alt.spec.method, alt.spec.stated = s.Method.V, true
 		alt.spec.adjust, alt.spec.strata = nil, ""
 		o := r.rec.OutcomeNamed(t.h.Outcome.V)
 		r.gather(&alt, t.h, t.question, r.entriesOf(t.h, o, at.set))

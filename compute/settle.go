@@ -76,8 +76,8 @@ func (t *trial) fill(r *run, at attempt) {
 	t.out.Assumptions = at.inf.Checks
 }
 
-// postHoc reports whether the verdicts carry the words "post hoc": the plan
-// was sealed, but not before the results.
+// postHoc reports whether the verdicts carry the words "post hoc": anything
+// but a seal proved to be older than the results.
 func (r *run) postHoc() bool {
-	return r.res.Seal.Order == "same-day" || r.res.Seal.Order == "after-results"
+	return r.res.Seal.Order != "before-results" && len(r.rec.Results) > 0
 }

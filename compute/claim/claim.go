@@ -147,17 +147,7 @@ func (a *Assessment) differs(t effect.Test, q Question) {
 }
 
 // TwoSided is the doubled smaller tail of a test, capped at 1.
-func TwoSided(t effect.Test) dist.Tail {
-	s := t.Up
-	if t.Down.LnP < t.Up.LnP {
-		s = t.Down
-	}
-	if s.P >= 0.5 {
-		return dist.Tail{P: 1, Q: 0, LnP: 0, LnQ: math.Inf(-1)}
-	}
-	p := 2 * s.P
-	return dist.Tail{P: p, Q: 1 - p, LnP: s.LnP + math.Ln2, LnQ: math.Log1p(-p)}
-}
+func TwoSided(t effect.Test) dist.Tail { return dist.TwoSided(t.Up, t.Down) }
 
 func (a *Assessment) oneSided(inf *effect.Inference, q Question) {
 	s := sidesOf(q)

@@ -34,13 +34,10 @@ func HeterogeneityOf(studies []Study, tau2, a float64) Heterogeneity {
 	}
 	h := Heterogeneity{Q: q, DF: k - 1, P: dist.ChiSquareUpper(q, k-1), H2: q / (k - 1), I2: share(tau2)}
 	h.Tau2Low = qRoot(studies, dist.ChiSquareQuantile(a, k-1))
-	h.Tau2High = qRoot(studies, lowerChiSquare(a, k-1))
+	h.Tau2High = qRoot(studies, dist.ChiSquareLowerQuantile(a, k-1))
 	h.I2Low, h.I2High = share(h.Tau2Low), share(h.Tau2High)
 	return h
 }
-
-// lowerChiSquare is x with P(X <= x) = a.
-func lowerChiSquare(a, nu float64) float64 { return dist.ChiSquareQuantile(1-a, nu) }
 
 // LeaveOneOut refits the model without each study in turn; O(k^2), each fit
 // started from the full one.

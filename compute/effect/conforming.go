@@ -1,0 +1,266 @@
+package effect
+
+import (
+	"math"
+
+	"steelyard/compute/dist"
+	"steelyard/compute/numeric"
+	"steelyard/compute/result"
+	"steelyard/protocol/record"
+)
+
+// conformingOne is the kernel of the share of a normal population on the right
+// side of one limit: K = distance of the mean from the limit in standard
+// deviations, inward. It is exact: the dual of the one-sided tolerance limit.
+type conformingOne struct{ N, K float64 }
+
+// Test implements Method.
+func (m conformingOne) Test(c float64) Test {
+	root := math.Sqrt(m.N)
+	out := Test{Value: m.K, DF: m.N - 1, Kind: "t"}
+	switch {
+	case c <= 0:
+		out.Up = sureTail.Complement()
+	case c >= 1:
+		out.Up = sureTail
+	default:
+		out.Up = dist.NoncentralTUpper(root*m.K, m.N-1, -root*dist.NormalQuantile(c))
+	}
+	out.Down = out.Up.Complement()
+	return out
+}
+
+// Limits implements Method.
+func (m conformingOne) Limits(a float64) (low, high float64) {
+	switch {
+	case !(a > 0):
+		return 0, 1
+	case a >= 1:
+		return 1, 0
+	}
+	root, nu := math.Sqrt(m.N), m.N-1
+	return dist.NormalUpper(-dist.NoncentralTDelta(a, root*m.K, nu) / root).P,
+		dist.NormalUpper(dist.NoncentralTDelta(a, -root*m.K, nu) / root).P
+}
+
+// conformingBoth is the kernel of the share between two limits, in units of
+// the standard deviation: Half the width and the distance Off of the mean from
+// the middle. The lower side is a generalised pivot (Weerahandi 1993, from
+// memory), which is safe; the upper is bounded by the one-sided shares.
+type conformingBoth struct {
+	N, Half, Off float64
+	left, right  conformingOne
+}
+
+// Test implements Method.
+func (m conformingBoth) Test(c float64) Test {
+	out := Test{Value: m.Off, DF: m.N - 1, Kind: "exact"}
+	switch {
+	case c <= 0:
+		out.Up, out.Down = sureTail.Complement(), sureTail
+		return out
+	case c >= 1:
+		out.Up, out.Down = sureTail, sureTail.Complement()
+		return out
+	}
+	out.Up = dist.TailOf(math.Min(1, m.up(c)))
+	out.Down = dist.TwoSided(m.left.Test(c).Down, m.right.Test(c).Down)
+	return out
+}
+
+// up is the probability, over the pivots of mean and spread, that the share
+// is at most c: 1 where even a centred population falls short of it.
+func (m conformingBoth) up(c float64) float64 {
+	nu := m.N - 1
+	q := 1 - c
+	z := dist.NormalQuantile(q / 2)
+	v0 := z / m.Half // below this V = s/sigma the spread alone is too large
+	short := dist.ChiSquareUpper(nu*v0*v0, nu).Q
+	root := math.Sqrt(m.N)
+	ln0 := math.Log(nu)/2 - math.Log(math.Pi)/2 - stirlingRest(nu/2)
+	f := func(v float64) float64 {
+		d := spare(m.Half*v, q)
+		inside := dist.NormalUpper((m.left.K*v-d)*root).P + dist.NormalUpper((m.right.K*v-d)*root).P
+		h := v*v - 1
+		return inside * math.Exp(ln0-math.Log(v)+nu*(math.Log1p(h)-h)/2)
+	}
+	return short + numeric.Integrate(f, m.breaks(v0, nu), 1e-11)
+}
+
+// breaks are where panels of the integral begin: from where the spare room
+// vanishes, around the bulk of V, and through its tails.
+func (m conformingBoth) breaks(v0, nu float64) []float64 {
+	top := math.Max(v0, 1) + 45/math.Sqrt(nu)
+	out := []float64{v0}
+	add := func(v float64) {
+		if v > out[len(out)-1]*(1+1e-9) && v < top {
+			out = append(out, v)
+		}
+	}
+	for _, k := range []float64{1e-4, 1e-3, 1e-2, 0.1} {
+		add(v0 * (1 + k))
+	}
+	for _, k := range []float64{-8, -4, -2, -1, 0, 1, 2, 4, 8} {
+		add(1 + k/math.Sqrt(2*nu))
+	}
+	return append(out, top)
+}
+
+// spare is d <= a with P(Z > d) + P(Z > 2a-d) = q: how near to a limit, in
+// standard deviations, the mean may come when the limits are 2a apart.
+func spare(a, q float64) float64 {
+	d := dist.NormalQuantile(q)
+	if 2*a-d > 38 { // the far side weighs nothing
+		return d
+	}
+	lo, hi := d, a // the far side only asks for more distance
+	if d > a {
+		return a
+	}
+	for range 100 {
+		out := dist.NormalUpper(d).P + dist.NormalUpper(2*a-d).P - q
+		if out > 0 {
+			lo = d
+		} else {
+			hi = d
+		}
+		next := d + out/(density(d)-density(2*a-d))
+		if !(next > lo && next < hi) {
+			next = (lo + hi) / 2
+		}
+		if math.Abs(next-d) <= 1e-15*(1+math.Abs(d)) {
+			return next
+		}
+		d = next
+	}
+	return d
+}
+
+func density(z float64) float64 { return math.Exp(-z*z/2) / math.Sqrt(2*math.Pi) }
+
+// stirlingRest is ln Gamma(u) less Stirling's leading terms.
+func stirlingRest(u float64) float64 {
+	if u >= 10 {
+		r := 1 / (u * u)
+		return (1./12 - r*(1./360-r*(1./1260-r*(1./1680-r/1188)))) / u
+	}
+	g, _ := math.Lgamma(u)
+	return g - (u-0.5)*math.Log(u) + u - math.Log(2*math.Pi)/2
+}
+
+// Limits implements Method by inversion.
+func (m conformingBoth) Limits(a float64) (low, high float64) {
+	start := dist.NormalUpper(m.Off-m.Half).P - dist.NormalUpper(m.Off+m.Half).P
+	return Inversion{Test: m.Test, Scale: record.Logit, Low: 0, High: 1, Start: math.Min(math.Max(start, 1e-300), 1-1e-16), Step: 0.5, Monotone: true}.Limits(a)
+}
+
+func conformingNormal(in Input) (*Inference, *Problem) {
+	return conforming(in, sampleOf(in.Sample, 1), "the sample")
+}
+
+// conforming judges the share of a normal population inside the limits.
+func conforming(in Input, s sample, who string) (*Inference, *Problem) {
+	if bad := spreadOnly(in, s, who, "normal"); bad != nil {
+		return nil, bad
+	}
+	lo, hi := (s.mean-in.Spec[0])/s.sd, (in.Spec[1]-s.mean)/s.sd // room on each side
+	if math.IsInf(lo, 1) && math.IsInf(hi, 1) {
+		return nil, problem("S103", outsideRange, "spec", "infinite on both sides")
+	}
+	inf := &Inference{Word: "normal", N: s.n, DF: result.Some(s.n - 1), Notes: []result.Note{note("S221", needsNormal, "a share outside limits")}}
+	switch {
+	case math.IsInf(lo, 1):
+		inf.Method = conformingOne{s.n, hi}
+	case math.IsInf(hi, 1):
+		inf.Method = conformingOne{s.n, lo}
+	default:
+		inf.Method = conformingBoth{N: s.n, Half: (lo + hi) / 2, Off: (lo - hi) / 2, left: conformingOne{s.n, lo}, right: conformingOne{s.n, hi}}
+		inf.Costly = true
+	}
+	inf.Estimate = math.Max(0, dist.NormalUpper(-hi).P-dist.NormalUpper(lo).P)
+	shareVariance(inf)
+	inf.Checks = []result.Check{check("normal-values", s.shows(""))}
+	return inf, nil
+}
+
+// shareVariance takes estimate and variance on the logit scale from the 95 %
+// interval (methods.md 0).
+func shareVariance(inf *Inference) {
+	low, high := inf.Method.Limits(0.025)
+	l, u := To(record.Logit, low), To(record.Logit, high)
+	y := To(record.Logit, inf.Estimate)
+	if math.IsInf(l, 0) || math.IsInf(u, 0) || math.IsInf(y, 0) {
+		return
+	}
+	se := (u - l) / (2 * dist.NormalQuantile(0.025))
+	inf.Y, inf.V = result.Some(y), result.Some(se*se)
+}
+
+func conformingAny(in Input) (*Inference, *Problem) {
+	return conformingCount(in, in.Sample.Values)
+}
+
+// conformingCount judges the share by the count of values inside: no shape is
+// assumed.
+func conformingCount(in Input, values []float64) (*Inference, *Problem) {
+	if values == nil {
+		return nil, problem("S104", needsData, "any")
+	}
+	inside := 0.0
+	for _, x := range values {
+		if in.Spec[0] <= x && x <= in.Spec[1] {
+			inside++
+		}
+	}
+	in.Sample.N, in.Sample.Events = float64(len(values)), inside
+	inf, bad := counts["proportion"]["exact"](in)
+	if bad != nil {
+		return nil, bad
+	}
+	inf.Word = "any"
+	return inf, nil
+}
+
+// agreementNormal judges the share of paired differences inside the limits,
+// and shows the limits of agreement: mean ± 1.96 sd with exact limits of
+// their own.
+func agreementNormal(in Input) (*Inference, *Problem) {
+	s := summary(in.Pairs.N, in.Pairs.Mean, in.Pairs.SD, 1)
+	if d := differences(in.Pairs); d != nil {
+		s = sampleOfValues(d, 1)
+	}
+	inf, bad := conforming(in, s, "the differences")
+	if bad != nil {
+		return nil, bad
+	}
+	inf.Checks = append(inf.Checks, limitsOfAgreement(s))
+	return inf, nil
+}
+
+func agreementAny(in Input) (*Inference, *Problem) {
+	return conformingCount(in, differences(in.Pairs))
+}
+
+// agreementSpread is how many standard deviations the limits of agreement lie
+// from the mean difference.
+const agreementSpread = 1.96
+
+// limitsOfAgreement are mean ± 1.96 sd, each with exact 95 % limits from the
+// noncentral t distribution.
+func limitsOfAgreement(s sample) result.Check {
+	root := math.Sqrt(s.n)
+	near, far := s.sd*noncentralT(0.975, s.n-1, agreementSpread*root)/root, s.sd*noncentralT(0.025, s.n-1, agreementSpread*root)/root
+	show := func(what string, v float64) result.Shown { return result.Shown{What: what, Value: v} }
+	return result.Check{Assumption: "limits-of-agreement", Shows: []result.Shown{
+		show("lower limit of agreement", s.mean-agreementSpread*s.sd), show("its 95 % interval, low", s.mean-far), show("its 95 % interval, high", s.mean-near),
+		show("upper limit of agreement", s.mean+agreementSpread*s.sd), show("its 95 % interval, low", s.mean+near), show("its 95 % interval, high", s.mean+far)}}
+}
+
+// noncentralT is t with P(T > t) = p for noncentrality delta >= 0.
+func noncentralT(p, nu, delta float64) float64 {
+	h := func(t float64) float64 {
+		return deviate(dist.NoncentralTUpper(t, nu, delta)) - dist.NormalQuantile(p)
+	}
+	t, _ := numeric.Invert(h, delta, 1+delta/math.Sqrt(2*nu), math.Inf(-1), math.Inf(1))
+	return t
+}

@@ -1,0 +1,62 @@
+package effect
+
+import (
+	"bytes"
+	"slices"
+	"testing"
+	"testing/fstest"
+
+	"steelyard/protocol"
+	"steelyard/protocol/card"
+	"steelyard/protocol/diag"
+	"steelyard/protocol/record"
+)
+
+// TestMeansCards: every method of means has one card, whose example is a
+// record without errors that names the method.
+func TestMeansCards(t *testing.T) {
+	files := fstest.MapFS{}
+	for name, text := range ExampleFiles() {
+		files[name] = &fstest.MapFile{Data: []byte(text)}
+	}
+	for _, c := range meansCards {
+		if c.Kind != card.Method || c.Title == "" || c.Meaning == "" || c.Formula == "" || c.Assumptions == "" || c.Source == "" {
+			t.Errorf("card %q is incomplete", c.Word)
+		}
+		for _, m := range c.Of {
+			if measure := record.MeasureOf(m); measure == nil || !measure.HasMethod(c.Word) {
+				t.Errorf("card %q is of %q, which has no such method", c.Word, m)
+			}
+		}
+		in := protocol.Load("example.toml", []byte(c.Example), nil, files)
+		// R208 says that the language has not switched the measure on yet.
+		faults := slices.DeleteFunc(slices.Clone(in.Diagnostics), func(d diag.Diagnostic) bool { return d.Code == "R208" })
+		if faults.HasErrors() {
+			var b bytes.Buffer
+			_ = in.Diagnostics.Write(&b, diag.NewSource("example.toml", []byte(c.Example)))
+			t.Errorf("example of %q:\n%s", c.Word, &b)
+			continue
+		}
+		if h := in.Record.Plan.Hypotheses; len(h) != 1 || h[0].Method.V != c.Word {
+			t.Errorf("example of %q does not name it", c.Word)
+		}
+	}
+	for measure, methods := range means {
+		for method := range methods {
+			n := 0
+			for _, c := range meansCards {
+				if c.Word == method && slices.Contains(c.Of, measure) {
+					n++
+				}
+			}
+			if n != 1 {
+				t.Errorf("%s %s has %d cards", measure, method, n)
+			}
+		}
+	}
+	for _, c := range effectCards {
+		if c.Kind != card.Diagnostic || c.Title == "" || c.Meaning == "" || c.Source == "" {
+			t.Errorf("card %s is incomplete", c.Word)
+		}
+	}
+}
