@@ -145,7 +145,17 @@ func faultsSARIF(reports []report) ([]byte, error) {
 	})
 }
 
-func sarifRuleOf(code string) sarifRule { return sarifRule{ID: code} }
+// sarifRuleOf describes a code from its card.
+func sarifRuleOf(code string) sarifRule {
+	rule := sarifRule{ID: code}
+	for _, c := range cardsOf(code) {
+		rule.Short, rule.Full = &sarifText{c.Title}, &sarifText{c.Meaning}
+		if c.Repair != "" {
+			rule.Help = &sarifText{c.Repair}
+		}
+	}
+	return rule
+}
 
 // uri is a path as a relative or file reference.
 func uri(path string) string {

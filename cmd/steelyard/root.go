@@ -39,7 +39,7 @@ cannot be read, or an output that cannot be written.`,
 	}
 	root.SetVersionTemplate("steelyard {{.Version}}\n")
 	root.AddCommand(
-		a.newCommand(), a.checkCommand(), a.compileCommand(), a.watchCommand(),
+		a.newCommand(), a.checkCommand(), a.compileCommand(), a.watchCommand(), a.schemaCommand(), a.explainCommand(),
 		a.versionCommand(),
 	)
 	return root
