@@ -79,7 +79,10 @@ func betaQuantileLn(lnp, a, b float64) (x, y float64) {
 			break
 		}
 	}
-	return x, y
+	if x < y { // let the rounding of many steps fall on the larger one
+		return x, 1 - x
+	}
+	return 1 - y, y
 }
 
 // logistic returns x = 1/(1+e^-u) and 1-x.

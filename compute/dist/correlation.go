@@ -34,9 +34,7 @@ func CorrelationUpper(r, rho float64, n float64) Tail {
 	first := k.side(z, upper)
 	var t Tail
 	if first > -0.4 {
-		second := min(k.side(z, !upper), 0)
-		first = min(first, 0)
-		t = Tail{P: math.Exp(first), Q: math.Exp(second), LnP: first, LnQ: second}
+		t = tailOfLogs(first, k.side(z, !upper))
 	} else {
 		t = tailLn(first)
 	}

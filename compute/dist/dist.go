@@ -59,6 +59,15 @@ func tailLn(lnp float64) Tail {
 	return Tail{P: p, Q: -math.Expm1(lnp), LnP: lnp, LnQ: math.Log1p(-p)}
 }
 
+// tailOfLogs is the Tail of two probabilities that add to 1 up to rounding,
+// given as logarithms; the smaller one decides both.
+func tailOfLogs(lnp, lnq float64) Tail {
+	if lnp <= lnq {
+		return tailLn(lnp)
+	}
+	return tailLn(lnq).Complement()
+}
+
 // TailOf makes a Tail from a probability in [0, 1] of which only p is known.
 func TailOf(p float64) Tail {
 	needProbability(p)

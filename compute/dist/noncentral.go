@@ -34,9 +34,7 @@ func NoncentralTUpper(t, nu, delta float64) Tail {
 	upper := t >= delta
 	first := k.side(upper)
 	if first > -0.4 { // the smaller side is the other one
-		second := k.side(!upper)
-		first, second = min(first, 0), min(second, 0)
-		tail := Tail{P: math.Exp(first), Q: math.Exp(second), LnP: first, LnQ: second}
+		tail := tailOfLogs(first, k.side(!upper))
 		if !upper {
 			return tail.Complement()
 		}
@@ -163,9 +161,7 @@ func NoncentralChiSquareUpper(x, nu, lambda float64) Tail {
 	case lambda == 0:
 		return ChiSquareUpper(x, nu)
 	}
-	lnp := ncxSum(x, nu, lambda, true)
-	lnq := ncxSum(x, nu, lambda, false)
-	return Tail{P: math.Exp(lnp), Q: math.Exp(lnq), LnP: min(lnp, 0), LnQ: min(lnq, 0)}
+	return tailOfLogs(ncxSum(x, nu, lambda, true), ncxSum(x, nu, lambda, false))
 }
 
 // ncxSum is the logarithm of Σ Pois(j; λ/2)·tail of χ² with nu+2j degrees of
