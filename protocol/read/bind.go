@@ -106,6 +106,9 @@ func (b *binder) table(n *record.Node, v reflect.Value, path, shown string, at d
 	index := fields[v.Type()]
 	var meant []string // keys that were probably meant by unknown ones
 	for _, e := range n.Entries {
+		if len(b.list) > 2*maxDiagnostics {
+			return // the list is cut long before
+		}
 		row := record.KeyOf(join(path, e.Key))
 		if row == nil || row.Parent() != path {
 			meant = append(meant, b.unknown(e, rows, path, shown))
@@ -205,22 +208,33 @@ func (b *binder) unknown(e record.Entry, rows []*record.Key, path, shown string)
 	return near
 }
 
-// elsewhere finds the one table that has a key of this name.
+// tablesOf lists, by the name of a key, the tables that have it. It is made
+// once and never changed.
+var tablesOf = indexTables()
+
+func indexTables() map[string][]string {
+	m := map[string][]string{}
+	for _, k := range record.Keys {
+		if !strings.HasPrefix(k.Path, "earlier_result.") {
+			m[k.Name()] = append(m[k.Name()], k.Parent())
+		}
+	}
+	return m
+}
+
+// elsewhere finds the one other table that has a key of this name.
 func elsewhere(key, path string) string {
 	found := ""
-	for _, k := range record.Keys {
-		if k.Name() != key || k.Parent() == path || strings.HasPrefix(k.Path, "earlier_result.") {
-			continue
-		}
-		if found != "" {
+	for _, table := range tablesOf[key] {
+		switch {
+		case table == path:
+		case found != "":
 			return ""
+		default:
+			found = "[" + table + "]"
 		}
-		found = k.Parent()
 	}
-	if found == "" {
-		return ""
-	}
-	return "[" + found + "]"
+	return found
 }
 
 // entry checks one key and binds its value.

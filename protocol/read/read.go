@@ -56,9 +56,8 @@ func limit(list diag.List) diag.List {
 	if len(list) <= maxDiagnostics {
 		return list
 	}
-	rest := len(list) - maxDiagnostics
 	list = list[:maxDiagnostics]
-	list.Add(diag.Error("R108", list[maxDiagnostics-1].Span, "%d more faults follow and are not listed", rest))
+	list.Add(diag.Error("R108", list[maxDiagnostics-1].Span, "more faults follow and are not listed"))
 	return list
 }
 
@@ -152,6 +151,9 @@ func Tree(text []byte) (root *record.Node, faults diag.List, whole bool) {
 		d := diag.Error(f.code, f.span, "%s", f.message)
 		d.Help = f.help
 		faults.Add(d)
+	}
+	if p.more {
+		faults.Add(diag.Error("R108", p.faults[len(p.faults)-1].span, "more faults follow and are not listed"))
 	}
 	if p.stopped {
 		at := diag.Span{Start: p.pos, End: p.pos}

@@ -63,7 +63,9 @@ type parser struct {
 	fault      *fault
 	statements []statement
 	faults     []fault
-	stopped    bool // the rest was left unread
+	stopped    bool  // the rest was left unread
+	more       bool  // faults beyond those listed
+	newlines   []int // their offsets, once asked for
 }
 
 // parse reads all statements. Text must be valid UTF-8 without control

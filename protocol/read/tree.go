@@ -52,7 +52,11 @@ func build(p *parser, report bool) *tree {
 		}
 		if f != nil && report {
 			s.bad = true
-			p.faults = append(p.faults, *f)
+			if len(p.faults) < maxFaults {
+				p.faults = append(p.faults, *f)
+			} else {
+				p.more = true
+			}
 		}
 	}
 	return t

@@ -2,6 +2,7 @@ package read
 
 import (
 	"bytes"
+	"sort"
 	"strings"
 	"unicode/utf8"
 
@@ -155,9 +156,16 @@ func (p *parser) inline() *record.Node {
 	}
 }
 
-// lineOf counts the line of an offset, for messages that name an earlier one.
+// lineOf is the line of an offset, for messages that name an earlier one.
 func (p *parser) lineOf(offset int) int {
-	return 1 + bytes.Count(p.text[:offset], []byte("\n"))
+	if p.newlines == nil {
+		for i, c := range p.text {
+			if c == '\n' {
+				p.newlines = append(p.newlines, i)
+			}
+		}
+	}
+	return 1 + sort.SearchInts(p.newlines, offset)
 }
 
 // quoted moves over a text in quotes; multi allows the forms of three quotes.
