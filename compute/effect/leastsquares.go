@@ -1,6 +1,10 @@
 package effect
 
-import "math"
+import (
+	"math"
+
+	"gonum.org/v1/gonum/floats"
+)
 
 // columnKind says how a column of the design makes its numbers.
 type columnKind uint8
@@ -100,15 +104,9 @@ func leastSquares(y []float64, cols []column) triangle {
 				if j < p {
 					top = &t.r[k][j]
 				}
-				dot := v0 * *top
-				for i, x := range v {
-					dot += x * b[i]
-				}
-				f := dot * scale
+				f := (v0**top + floats.Dot(v, b)) * scale
 				*top -= f * v0
-				for i, x := range v {
-					b[i] -= f * x
-				}
+				floats.AddScaled(b, -f, v)
 			}
 		}
 	}
@@ -118,11 +116,7 @@ func leastSquares(y []float64, cols []column) triangle {
 // hypotOf is the length of (a, v). The columns are of size about 1, so that
 // squares neither overflow nor vanish.
 func hypotOf(a float64, v []float64) float64 {
-	s := a * a
-	for _, x := range v {
-		s += x * x
-	}
-	return math.Sqrt(s)
+	return math.Sqrt(a*a + floats.Dot(v, v))
 }
 
 // singular is the first column whose own part is below 1e-10 of the largest,

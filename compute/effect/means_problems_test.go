@@ -26,6 +26,7 @@ func TestProblems(t *testing.T) {
 	}{
 		{"S104", "no-such-measure", "", Input{}},
 		{"S104", "mean", "welch", Input{Sample: ok}},
+		{"S104", "hazard-ratio", "", Input{}},
 		{"S101", "mean", "t", Input{Sample: one}},
 		{"S101", "mean", "t", Input{Sample: none}},
 		{"S102", "mean", "t", Input{Sample: flat}},

@@ -434,6 +434,13 @@ func TestRandomInputs(t *testing.T) {
 		if r.IntN(4) == 0 {
 			in.Given = &Given{Estimate: pick(), SE: some(), DF: some(), Low: some(), High: some(), Level: result.Some(0.95)}
 		}
+		if in.Given != nil {
+			for _, m := range record.Measures {
+				if inf, bad := Analyse(m.Word, "", in); bad == nil {
+					neverNaN(t, "given "+m.Word, inf, odd)
+				}
+			}
+		}
 		for measure, methods := range means {
 			for method := range methods {
 				inf, bad := Analyse(measure, method, in)

@@ -52,6 +52,9 @@ func Analyse(measure, method string, in Input) (*Inference, *Problem) {
 			known = append(known, w)
 		}
 	}
+	if known == nil { // computed elsewhere, from columns that are not here
+		return nil, problem("S104", needsData, word)
+	}
 	slices.SortFunc(known, func(a, b string) int {
 		return slices.Index(m.Methods, a) - slices.Index(m.Methods, b)
 	})

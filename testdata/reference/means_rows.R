@@ -81,6 +81,12 @@ add("difference-welch-clusters", "Welch's formulas with n/D, pt, qt",
   list(measure = str("mean-difference"), method = str("welch"), groups = arr(c(n1, m1, s1, n2, m2, s2)), design = D, nulls = arr(cs), errors = arr(as)),
   limits(nulls(list(se = sqrt(c1 + c2), df = df), cs, m1 - m2, sqrt(c1 + c2), df), as, m1 - m2, sqrt(c1 + c2), df), 11)
 
+# Far tails: ln p down to -2000.
+f1 <- c(400, 1, 0.2); f2 <- c(350, 0, 0.3); cf <- c(-4, 0, 0.3, 2, 6)
+c1 <- f1[3]^2 / f1[1]; c2 <- f2[3]^2 / f2[1]; df <- (c1 + c2)^2 / (c1^2 / 399 + c2^2 / 349)
+add("difference-welch-far", "pt(log.p = TRUE) far out", list(measure = str("mean-difference"), method = str("welch"), groups = arr(c(f1, f2)), nulls = arr(cf), errors = arr(c(1e-200, 1e-12))),
+  limits(nulls(list(se = sqrt(c1 + c2), df = df), cf, 1, sqrt(c1 + c2), df), c(1e-200, 1e-12), 1, sqrt(c1 + c2), df), 10)
+
 # Ratio of means.
 pos1 <- round(rnorm(12, 9, 2), 2); pos2 <- round(rnorm(15, 6, 2.5), 2)
 M1 <- mean(pos1); M2 <- mean(pos2); C1 <- var(pos1) / 12; C2 <- var(pos2) / 15
