@@ -26,7 +26,7 @@ type Loaded struct {
 	Diagnostics diag.List      // sorted
 
 	// Seal is how the record stands to its chain; nil when the record has
-	// errors. Sealed is the same record under the plan that binds it, with its
+	// errors and its chain has none. Sealed is the same record under the plan that binds it, with its
 	// own tables and PlanSHA256: nil where the plan now differs from that one in
 	// wording at most, or where Seal.Unreadable says why it cannot be had.
 	Seal   *seal.State
@@ -49,6 +49,9 @@ func Load(name string, text, sealText []byte, files fs.FS) *Loaded {
 	}
 	in := &Loaded{Source: src, Record: rec, Diagnostics: list}
 	defer func() { in.Diagnostics.Sort() }()
+	if chain.Broken != "" {
+		in.Seal, _ = seal.Compare(rec, nil, chain)
+	}
 	if list.HasErrors() {
 		return in
 	}

@@ -59,6 +59,9 @@ func TestLoadSealed(t *testing.T) {
 	if !in.Diagnostics.HasErrors() || in.Diagnostics[0].Code != "L103" || in.Diagnostics[0].File != "a.seal" || in.Diagnostics[0].Line != 3 {
 		t.Errorf("broken: %v", in.Diagnostics)
 	}
+	if in.Seal == nil || in.Seal.State != seal.Broken || in.Seal.Broken == "" {
+		t.Errorf("broken: %+v", in.Seal)
+	}
 	// Faults of the chain and of the record come in one run.
 	both := strings.Replace(smallest, "equivalent", "equivalnt", 1)
 	if in = Load("a.toml", []byte(both), []byte(torn), nil); len(in.Diagnostics) < 2 {

@@ -182,28 +182,9 @@ func readFile(name string, entries []*entry, files fs.FS, f *faults, list *diag.
 		}
 		return 0, "", false
 	}
-	more, broken := c.next()
-	if broken != nil || c.err != nil {
+	header, broken := columns(c, name, entries, f, list)
+	if header == 0 {
 		return stop(broken)
-	}
-	if !more {
-		list.Add(diag.Error("D104", f.at, "%s is empty", name).WithHelp("a data file starts with a line of column names"))
-		return 0, "", false
-	}
-	header := make([]string, len(c.fields))
-	for i := range header {
-		header[i] = string(c.cell(i))
-	}
-	if d, bad := separated(name, header, f.at); bad {
-		list.Add(d)
-		return 0, "", false
-	}
-	found := true
-	for _, e := range entries {
-		found = e.find(header, list) && found
-	}
-	if !found {
-		return 0, "", false
 	}
 	for {
 		more, broken := c.next()
@@ -213,13 +194,13 @@ func readFile(name string, entries []*entry, files fs.FS, f *faults, list *diag.
 		if !more {
 			break
 		}
-		if len(header) == 1 && c.blank > 0 {
+		if header == 1 && c.blank > 0 {
 			read += c.emptyRows(entries)
 		}
-		if len(c.fields) != len(header) {
-			line, column, excerpt := c.place(min(len(c.fields)-1, len(header)))
+		if len(c.fields) != header {
+			line, column, excerpt := c.place(min(len(c.fields)-1, header))
 			f.cell("D112", f.at, line, column, excerpt, "",
-				fmt.Sprintf("this row has %s, the header %d", plural(len(c.fields), "field", "fields"), len(header)))
+				fmt.Sprintf("this row has %s, the header %d", plural(len(c.fields), "field", "fields"), header))
 			continue
 		}
 		read++
@@ -228,6 +209,35 @@ func readFile(name string, entries []*entry, files fs.FS, f *faults, list *diag.
 		}
 	}
 	return read, hex.EncodeToString(hash.Sum(nil)), true
+}
+
+// columns reads the header and finds the columns of every entry in it. It
+// returns how many columns there are, 0 where the file cannot be used.
+func columns(c *reader, name string, entries []*entry, f *faults, list *diag.List) (int, *fault) {
+	more, broken := c.next()
+	if broken != nil || c.err != nil {
+		return 0, broken
+	}
+	if !more {
+		list.Add(diag.Error("D104", f.at, "%s is empty", name).WithHelp("a data file starts with a line of column names"))
+		return 0, nil
+	}
+	header := make([]string, len(c.fields))
+	for i := range header {
+		header[i] = string(c.cell(i))
+	}
+	if d, bad := separated(name, header, f.at); bad {
+		list.Add(d)
+		return 0, nil
+	}
+	found := true
+	for _, e := range entries {
+		found = e.find(header, list) && found
+	}
+	if !found {
+		return 0, nil
+	}
+	return len(header), nil
 }
 
 // separated finds a file whose columns are separated by something else.
