@@ -13,6 +13,40 @@ func (v voice) claim() string {
 	return v.sampleClaim()
 }
 
+// the is the effect of the outcome, to stand as a subject.
+func (v voice) the() string {
+	if v.grouped() {
+		return "the " + v.effect() + " in " + v.label()
+	}
+	return "the " + v.effect() + " of " + v.label()
+}
+
+// question asks what the claim decides, to stand after "whether". Claims that
+// deny something are asked without the denial.
+func (v voice) question() string {
+	who := v.the()
+	than, on := v.null(), ""
+	if v.grouped() {
+		who, than, on = v.a(), v.b(), " in "+v.label()
+	}
+	named := func(text, what string, p result.Opt) string {
+		if !p.OK || v.brief {
+			return text
+		}
+		return text + " (" + what + " " + v.f.PointUnit(p.V) + ")"
+	}
+	switch v.h.Claim {
+	case "noninferior":
+		return named(who+" is worse than "+than+on+" by the margin or more", "margin", v.harm())
+	case "benefit-too-small":
+		if v.grouped() {
+			return named("a benefit of "+who+" over "+than+on+" is large enough to matter", "from", v.benefit())
+		}
+		return named("a benefit in "+v.label()+" over "+than+" is large enough to matter", "from", v.benefit())
+	}
+	return v.claim()
+}
+
 // groupClaim words a claim between two named groups.
 func (v voice) groupClaim() string {
 	a, b, on := v.a(), v.b(), v.label()
@@ -39,10 +73,7 @@ func (v voice) groupClaim() string {
 
 // sampleClaim words a claim about one sample or an effect given as a number.
 func (v voice) sampleClaim() string {
-	the := "the " + v.effect() + " of " + v.label()
-	if v.grouped() {
-		the = "the " + v.effect() + " in " + v.label()
-	}
+	the := v.the()
 	switch v.h.Claim {
 	case "differs":
 		return the + " differs from " + v.null()
@@ -76,7 +107,7 @@ func (v voice) limit() string {
 
 // opposite says what the data show when a claim is contradicted.
 func (v voice) opposite(j *result.Judged) string {
-	pair, one := v.a()+" is %s than "+v.b()+" in "+v.label(), "the "+v.effect()+" of "+v.label()+" is %s than "+v.null()
+	pair, one := v.a()+" is %s than "+v.b()+" in "+v.label(), v.the()+" is %s than "+v.null()
 	than := func(word string) string {
 		if v.grouped() {
 			return sprintf(pair, word)
@@ -96,16 +127,16 @@ func (v voice) opposite(j *result.Judged) string {
 	case "benefit-too-small":
 		return v.sided(than("better")+" by more than the smallest effect that matters", v.benefit(), !up)
 	case "below":
-		return v.sided("the "+v.effect()+" of "+v.label()+" is above the limit", v.h.Limit, true)
+		return v.sided(v.the()+" is above the limit", v.h.Limit, true)
 	case "above":
-		return v.sided("the "+v.effect()+" of "+v.label()+" is below the limit", v.h.Limit, false)
+		return v.sided(v.the()+" is below the limit", v.h.Limit, false)
 	}
-	return "the " + v.effect() + " of " + v.label() + " lies on the other side"
+	return v.the() + " lies on the other side"
 }
 
 // outside says on which side of the region the interval lies.
 func (v voice) outside(j *result.Judged) string {
-	what := "the " + v.effect() + " in " + v.label() + " is larger than too small to matter"
+	what := v.the() + " lies wholly outside the region too small to matter"
 	switch {
 	case j.Reading.OK && j.Reading.HasRegion && j.Reading.Above == 3:
 		return v.sided(what, v.h.MarginHigh, true)
@@ -116,7 +147,7 @@ func (v voice) outside(j *result.Judged) string {
 	case j.High.OK && v.h.MarginLow.OK && j.High.V <= v.h.MarginLow.V:
 		return v.sided(what, v.h.MarginLow, false)
 	}
-	return what + ", wholly on one side of the region"
+	return what
 }
 
 // claimName is the claim as a heading.

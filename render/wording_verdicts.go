@@ -32,28 +32,34 @@ func (v voice) verdict(j *result.Judged) string {
 	case result.Established:
 		return v.opening() + " show, " + v.atError() + ", that " + v.atLeastOne() + v.claim()
 	case result.Suggested:
-		return v.opening() + " suggest, " + v.atError() + " and without adjustment for other looks at the data (exploratory), that " + v.atLeastOne() + v.claim()
+		return v.opening() + " suggest, " + v.atError() + " and without adjustment for multiplicity (exploratory), that " + v.atLeastOne() + v.claim()
 	case result.Contradicted:
 		return v.opening() + " show the opposite, " + v.atError() + ": " + v.atLeastOne() + v.opposite(j)
 	case result.Open:
 		return v.open(j)
 	case result.Pending:
-		return "No result has arrived yet; whether " + v.claim() + " is not judged"
+		if v.h.Claim == "describe" {
+			return "No result has arrived yet; " + v.the() + " is to be described"
+		}
+		return "No result has arrived yet; whether " + v.question() + " is not judged"
 	case result.Masked:
-		return "The results are masked until a planned look; whether " + v.claim() + " is not judged, and only totals are shown"
+		if v.h.Claim == "describe" {
+			return "The results are masked until a planned look; " + v.the() + " is to be described, and only totals are shown"
+		}
+		return "The results are masked until a planned look; whether " + v.question() + " is not judged, and only totals are shown"
 	case result.Described:
-		return v.opening() + " describe the " + v.effect() + " of " + v.label() + " without judging a claim"
+		return v.opening() + " describe " + v.the() + " without judging a claim"
 	}
-	return "Whether " + v.claim() + " is not judged"
+	return "Whether " + v.question() + " is not judged"
 }
 
 // open words an open claim, with the reason where it could not be decided.
 // What stays compatible follows as evidence.
 func (v voice) open(j *result.Judged) string {
 	if j.Reason != nil {
-		return "Whether " + v.claim() + " stays open: " + strings.TrimSuffix(noteText(*j.Reason), ".")
+		return "Whether " + v.question() + " stays open: " + strings.TrimSuffix(noteText(*j.Reason), ".")
 	}
-	return v.opening() + " leave open, " + v.atError() + ", whether " + v.atLeastOne() + v.claim()
+	return v.opening() + " leave open, " + v.atError() + ", whether " + v.atLeastOne() + v.question()
 }
 
 // opening names the data that speak.
@@ -179,7 +185,7 @@ func (v voice) aboutEstablished(j *result.Judged) []string {
 		good, bad = bad, good
 	}
 	switch {
-	case !j.Reading.OK:
+	case !j.Reading.OK || !j.Low.OK && !j.High.OK:
 	case v.h.Claim == "noninferior" && bad >= 1 && (bad >= 2 || !j.Reading.HasRegion) && good < 2:
 		return []string{"The interval lies wholly on the harmful side: worse than the null, though by less than the margin."}
 	case v.h.Claim == "benefit-too-small" && bad >= 2:

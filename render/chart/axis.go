@@ -57,6 +57,12 @@ func NewAxis(log bool, values ...float64) Axis {
 	}
 	if !(a.Lo < a.Hi) { // the values differ by less than a float can widen
 		a.Lo, a.Hi = math.Nextafter(lo, math.Inf(-1)), math.Nextafter(hi, math.Inf(1))
+		if math.IsInf(a.Hi, 1) {
+			a.Hi = hi
+		}
+		if log && a.Lo <= 0 || math.IsInf(a.Lo, -1) {
+			a.Lo = lo
+		}
 	}
 	return a
 }
