@@ -179,6 +179,15 @@ func first(ps ...*Problem) *Problem {
 	return nil
 }
 
+// independent is the assumption that every individual counts by itself, with
+// the design effect where clusters were allowed for.
+func independent(in Input) result.Check {
+	if in.DesignEffect == 1 {
+		return result.Check{Assumption: "independent-individuals"}
+	}
+	return shows("independent-individuals", "design effect", in.DesignEffect)
+}
+
 // shows is an assumption with one number that bears on it.
 func shows(assumption, what string, value float64) result.Check {
 	return result.Check{Assumption: assumption, Shows: []result.Shown{{What: what, Value: value}}}

@@ -83,6 +83,34 @@ func TestStrataDoNotDependOnOrder(t *testing.T) {
 	}
 }
 
+// TestWeightsAverage: the common effect is the weighted mean of the strata's
+// own effects.
+func TestWeightsAverage(t *testing.T) {
+	strata := []Stratum{{12, 42, 6, 39}, {1, 1, 0, 0}, {5, 19, 3, 18}, {9, 34, 10, 32}}
+	own := map[string]func(s Stratum) float64{
+		"risk-difference": func(s Stratum) float64 { return s.X1/s.N1 - s.X2/s.N2 },
+		"rate-difference": func(s Stratum) float64 { return s.X1/s.N1 - s.X2/s.N2 },
+		"risk-ratio":      func(s Stratum) float64 { return s.X1 / s.N1 / (s.X2 / s.N2) },
+		"rate-ratio":      func(s Stratum) float64 { return s.X1 / s.N1 / (s.X2 / s.N2) },
+		"odds-ratio":      func(s Stratum) float64 { return s.X1 * (s.N2 - s.X2) / (s.X2 * (s.N1 - s.X1)) },
+	}
+	for _, measure := range stratifiedMeasures {
+		got, _ := MantelHaenszel(measure, strata)
+		mean, sum := 0.0, 0.0
+		for i, s := range strata {
+			if w := got.Weights[i]; w > 0 {
+				mean += w * own[measure](s)
+				sum += w
+			}
+		}
+		near(t, measure+" weights", sum, 1, 1e-14)
+		near(t, measure, got.Estimate, mean, 1e-12)
+		if got.Weights[1] != 0 {
+			t.Errorf("%s: an empty stratum has weight %v", measure, got.Weights[1])
+		}
+	}
+}
+
 func TestSparseStrata(t *testing.T) {
 	for _, tc := range []struct {
 		name       string

@@ -150,7 +150,7 @@ func proportionInference(in Input, word string, x, n float64, m Method) *Inferen
 		inf.Y = result.Some(math.Log(x / (n - x)))
 		inf.V = result.Some(1/x + 1/(n-x))
 	}
-	inf.Checks = append(inf.Checks, shows("independent-individuals", "design effect", in.DesignEffect))
+	inf.Checks = append(inf.Checks, independent(in))
 	return inf
 }
 

@@ -27,6 +27,9 @@ type Stratified struct {
 	// 1959; from memory), without a continuity correction; 0 when nothing
 	// varies.
 	Z float64
+	// Weights are the shares of the strata in the estimate, in the order given;
+	// nil when they do not exist.
+	Weights []float64
 }
 
 // MantelHaenszel combines strata for "risk-difference" (variance of Sato
@@ -42,6 +45,7 @@ func MantelHaenszel(measure string, strata []Stratum) (out Stratified, ok bool) 
 	}
 	out.Used, out.Empty = len(full), len(strata)-len(full)
 	out.Z = association(measure, full)
+	out.Weights = shares(measure, strata)
 	switch measure {
 	case "risk-difference":
 		return out.difference(commonRiskDifference(full)), true
@@ -55,6 +59,34 @@ func MantelHaenszel(measure string, strata []Stratum) (out Stratified, ok bool) 
 		return out.ratio(commonRateRatio(full)), true
 	}
 	return Stratified{}, false
+}
+
+// shares are the weights with which the strata's own effects average to the
+// common one.
+func shares(measure string, strata []Stratum) []float64 {
+	w := make([]float64, len(strata))
+	sum := 0.0
+	for i, s := range strata {
+		if !(s.N1 > 0 && s.N2 > 0) {
+			continue
+		}
+		switch n := s.N1 + s.N2; measure {
+		case "risk-difference", "rate-difference":
+			w[i] = s.N1 * s.N2 / n
+		case "odds-ratio":
+			w[i] = s.X2 * (s.N1 - s.X1) / n
+		default:
+			w[i] = s.X2 * s.N1 / n
+		}
+		sum += w[i]
+	}
+	if !(sum > 0) {
+		return nil
+	}
+	for i := range w {
+		w[i] /= sum
+	}
+	return w
 }
 
 // difference completes a common difference.

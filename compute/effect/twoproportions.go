@@ -134,7 +134,7 @@ func twoProportionsInference(in Input, k contrast, word string, t table, m Metho
 	if k != riskDifference && (!defined || math.IsInf(est, 1)) {
 		inf.Notes = append(inf.Notes, note("S201", infiniteLimit, "upper"))
 	}
-	inf.Checks = append(inf.Checks, shows("independent-individuals", "design effect", in.DesignEffect))
+	inf.Checks = append(inf.Checks, independent(in))
 	return inf
 }
 
