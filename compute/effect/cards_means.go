@@ -2,6 +2,7 @@ package effect
 
 import (
 	"fmt"
+	"slices"
 	"strings"
 
 	"steelyard/protocol/card"
@@ -63,6 +64,9 @@ groups.current = { n = 20, log_mean = 2.12, log_sd = 0.41 }`
 	exampleData   = `data    = { file = "example.csv", value = "recovery", group = "filter" }`
 )
 
+// meansCards explains the measures of means, their methods and given effects.
+var meansCards = slices.Concat(meansMeasureCards, meansMethodCards)
+
 // ExampleFiles are the data files that the examples of this package's cards
 // name: invented numbers.
 func ExampleFiles() map[string]string {
@@ -80,8 +84,52 @@ current,11.1,7.4
 `, "values.csv": "recovery\n50.9\n49.8\n51.7\n50.2\n52.4\n48.9\n51.1\n50.6\n"}
 }
 
-// meansCards explains the methods for means and for given effects.
-var meansCards = []card.Card{
+// meansMeasureCards explains the measures of means and the given effects.
+var meansMeasureCards = []card.Card{
+	{Kind: card.Measure, Word: "mean", Title: "a mean", Source: practice,
+		Meaning:     "The mean of one sample, held against a reference value.",
+		Formula:     "x̄ = Σx/n; se = sd/√n.",
+		Assumptions: "Independent values from one population.",
+		Example:     meansExample("mean", "reference = 50", "", exampleSample)},
+	{Kind: card.Measure, Word: "mean-difference", Title: "difference of two means", Source: practice,
+		Meaning:     "The mean of the first group minus that of the second, in the unit of the values.",
+		Formula:     "x̄₁ - x̄₂; with `adjust` or `strata` the coefficient of the group in a linear model; in a crossover half the difference of the mean period differences.",
+		Assumptions: "Two independent groups of independent values.",
+		Example:     meansExample("mean-difference", "", "", exampleGroups)},
+	{Kind: card.Measure, Word: "paired-mean-difference", Title: "mean difference within pairs", Source: practice,
+		Meaning:     "The mean of the differences, first minus second, of readings that belong together.",
+		Formula:     "Σd/n with d = first - second; se = sd(d)/√n.",
+		Assumptions: "Independent pairs.",
+		Example:     meansExample("paired-mean-difference", "", "", examplePairs)},
+	{Kind: card.Measure, Word: "standardized-mean-difference", Title: "standardized difference of means", Source: "Hedges 1981, Journal of Educational Statistics 6",
+		Meaning:     "The difference of two means in units of their common spread, so that results on different scales can be set side by side.",
+		Formula:     "g = J·(x̄₁ - x̄₂)/s with the pooled spread s and J = Γ(ν/2)/(√(ν/2) Γ((ν-1)/2)).",
+		Assumptions: "Normal values, equal spreads that mean the same in every study.",
+		Example:     meansExample("standardized-mean-difference", "", "", exampleGroups)},
+	{Kind: card.Measure, Word: "ratio-of-means", Title: "ratio of two means", Source: practice,
+		Meaning:     "The mean of the first group over that of the second.",
+		Formula:     "x̄₁/x̄₂; on the natural logarithm the variance is s₁²/(n₁x̄₁²) + s₂²/(n₂x̄₂²).",
+		Assumptions: "Both means positive, on a scale with a true zero.",
+		Example:     meansExample("ratio-of-means", "", "", exampleGroups)},
+	{Kind: card.Measure, Word: "geometric-mean-ratio", Title: "ratio of two geometric means", Source: practice,
+		Meaning:     "How many times the typical value of the first group is that of the second, where values spread by factors.",
+		Formula:     "exp of the difference of the means of natural logarithms.",
+		Assumptions: "All values positive; their logarithms close to normal.",
+		Example:     meansExample("geometric-mean-ratio", "", "", exampleLogs)},
+	{Kind: card.Measure, Word: "estimate", Title: "an effect estimated elsewhere", Source: practice,
+		Meaning:     "Any additive effect with its standard error or interval, as another analysis gave it.",
+		Formula:     "The estimate is taken as it is; the error is the one given, or half the interval over its critical value.",
+		Assumptions: "The estimate is close to normal, and its error is right.",
+		Example:     meansExample("estimate", "reference = 0", "", `effect  = { estimate = 1.3, se = 0.45 }`)},
+	{Kind: card.Measure, Word: "ratio-estimate", Title: "a ratio estimated elsewhere", Source: practice,
+		Meaning:     "Any ratio with its interval, or with the standard error of its logarithm, as another analysis gave it.",
+		Formula:     "As `estimate`, on the natural logarithm.",
+		Assumptions: "The logarithm of the estimate is close to normal, and its error is right.",
+		Example:     meansExample("ratio-estimate", "", "", `effect  = { estimate = 0.74, low = 0.60, high = 0.92, level = 0.95 }`)},
+}
+
+// meansMethodCards explains the methods for means and for given effects.
+var meansMethodCards = []card.Card{
 	{Kind: card.Method, Word: "t", Of: []string{"mean", "paired-mean-difference"}, Title: "t test",
 		Meaning:     "How far the mean lies from a value, in units of its own standard error.",
 		Formula:     "T(c) = (mean - c)/(sd/√n) with n - 1 degrees of freedom; limits mean ± t·sd/√n. Pairs by parts: sd² = s₁² + s₂² - 2 r s₁ s₂.",

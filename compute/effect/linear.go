@@ -104,25 +104,11 @@ func design(word string, scale record.Scale, in Input) (y []float64, cols []colu
 	}
 	cols = append(cols, column{name: "the intercept", kind: intercept})
 	for _, c := range in.Covariates {
-		if c.Levels != nil {
-			if len(c.Code) != n {
-				return nil, nil, 0, problem("S104", linearNeeds, word)
-			}
-			cols = append(cols, dummies(c.Name, c.Code, len(c.Levels))...)
-			continue
+		more, bad := covariateColumns(word, c, n)
+		if bad != nil {
+			return nil, nil, 0, bad
 		}
-		if len(c.Values) != n {
-			return nil, nil, 0, problem("S104", linearNeeds, word)
-		}
-		cm := numeric.MomentsOf(c.Values)
-		size := math.Sqrt(cm.M2 / float64(n))
-		if !isFinite(cm.Mean) || !isFinite(size) {
-			return nil, nil, 0, problem("S103", outsideRange, "the mean of "+c.Name, cm.Mean)
-		}
-		if size <= 16*0x1p-52*math.Abs(cm.Mean) {
-			return nil, nil, 0, problem("S107", combination, c.Name)
-		}
-		cols = append(cols, column{name: c.Name, kind: numbers, values: c.Values, mean: cm.Mean, size: size})
+		cols = append(cols, more...)
 	}
 	if in.Strata != nil && !amongCovariates(in.Strata, in.Covariates) {
 		cols = append(cols, dummies("strata", in.Strata, in.StrataCount)...)
@@ -134,6 +120,28 @@ func design(word string, scale record.Scale, in Input) (y []float64, cols []colu
 	}
 	cols = append(cols, column{name: "the group", kind: groups, group: in.Group, mean: n1 / float64(n)})
 	return centred, cols, n1, nil
+}
+
+// covariateColumns are the columns of one covariate of n rows.
+func covariateColumns(word string, c Covariate, n int) ([]column, *Problem) {
+	if c.Levels != nil {
+		if len(c.Code) != n {
+			return nil, problem("S104", linearNeeds, word)
+		}
+		return dummies(c.Name, c.Code, len(c.Levels)), nil
+	}
+	if len(c.Values) != n {
+		return nil, problem("S104", linearNeeds, word)
+	}
+	m := numeric.MomentsOf(c.Values)
+	size := math.Sqrt(m.M2 / float64(n))
+	switch {
+	case !isFinite(m.Mean) || !isFinite(size):
+		return nil, problem("S103", outsideRange, "the mean of "+c.Name, m.Mean)
+	case size <= 16*0x1p-52*math.Abs(m.Mean):
+		return nil, problem("S107", combination, c.Name)
+	}
+	return []column{{name: c.Name, kind: numbers, values: c.Values, mean: m.Mean, size: size}}, nil
 }
 
 // amongCovariates reports whether the strata are a factor that was also handed

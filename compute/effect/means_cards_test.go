@@ -20,7 +20,7 @@ func TestMeansCards(t *testing.T) {
 		files[name] = &fstest.MapFile{Data: []byte(text)}
 	}
 	for _, c := range meansCards {
-		if c.Kind != card.Method || c.Title == "" || c.Meaning == "" || c.Formula == "" || c.Assumptions == "" || c.Source == "" {
+		if c.Kind != card.Method && c.Kind != card.Measure || c.Title == "" || c.Meaning == "" || c.Formula == "" || c.Assumptions == "" || c.Source == "" {
 			t.Errorf("card %q is incomplete", c.Word)
 		}
 		for _, m := range c.Of {
@@ -37,11 +37,18 @@ func TestMeansCards(t *testing.T) {
 			t.Errorf("example of %q:\n%s", c.Word, &b)
 			continue
 		}
-		if h := in.Record.Plan.Hypotheses; len(h) != 1 || h[0].Method.V != c.Word {
+		word := in.Record.Plan.Outcomes[0].Measure.V
+		if c.Kind == card.Method {
+			word = in.Record.Plan.Hypotheses[0].Method.V
+		}
+		if word != c.Word {
 			t.Errorf("example of %q does not name it", c.Word)
 		}
 	}
 	for measure, methods := range means {
+		if !slices.ContainsFunc(meansCards, func(c card.Card) bool { return c.Kind == card.Measure && c.Word == measure }) {
+			t.Errorf("measure %q has no card", measure)
+		}
 		for method := range methods {
 			n := 0
 			for _, c := range meansCards {
