@@ -126,7 +126,7 @@ func FormatNumber(v float64) string {
 		return "-inf"
 	case math.IsNaN(v):
 		return "nan"
-	case v == math.Trunc(v) && math.Abs(v) < 1e15:
+	case v == math.Trunc(v) && math.Abs(v) <= 1<<53:
 		return strconv.FormatFloat(v, 'f', -1, 64)
 	}
 	return strconv.FormatFloat(v, 'g', -1, 64)
