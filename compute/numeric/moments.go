@@ -34,8 +34,8 @@ func MomentsOf(x []float64) Moments {
 		m.Mean = x[0]
 		return m
 	}
-	half := m.Max/2 - m.Min/2
-	_, exp := math.Frexp(half)
+	spread := min(m.Max-m.Min, math.MaxFloat64)
+	_, exp := math.Frexp(spread)
 	exp = max(exp, -1000)
 	scale := math.Ldexp(1, -exp)
 	if exp > 1022 {
