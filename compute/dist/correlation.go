@@ -54,7 +54,7 @@ func newCorrelation(rho, n float64) correlation {
 	k := correlation{n: n, rho: rho, zeta: math.Atanh(rho)}
 	// ln[(n−2)Γ(n−1)/(√(2π)Γ(n−½))] − ½ ln cosh ζ
 	k.lead = math.Log(n-2) + lnGammaStep(n-1) - halfLn2Pi - 0.5*lnCosh(k.zeta)
-	if n == math.Floor(n) && n < 60 {
+	if n == math.Floor(n) && n < 16 {
 		k.near = true
 		// Γ(c)Γ(c−1)/Γ(c−½)² and Γ(c)Γ(1−c)/Γ(½)², c = n−½ (reflection).
 		k.g1 = math.Exp(-lnGammaStep(n-1) + lnGammaStep(n-1.5))

@@ -83,6 +83,9 @@ func (k nctKernel) side(upper bool) float64 {
 		}
 	}
 	width := 1 / math.Sqrt(max(curve, 0.5*k.nu*u*u, 1e-4))
+	if ln, ok := lnTrapezoid(g, v, width); ok {
+		return ln
+	}
 	return lnIntegral(g, math.Inf(-1), math.Inf(1), v, 2*width)
 }
 
