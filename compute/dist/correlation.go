@@ -82,6 +82,14 @@ func (k correlation) side(z float64, upper bool) float64 {
 	g := func(v float64) float64 {
 		return k.lead - (k.n-1.5)*lnCosh(v-k.zeta) + 0.5*lnCosh(v) + math.Log(k.series(math.Tanh(v)))
 	}
+	// The density falls from z on at about this rate.
+	scale := 1 / (math.Sqrt(k.n) + (k.n-1.5)*math.Tanh(math.Abs(z-k.zeta)))
+	if !upper {
+		scale = -scale
+	}
+	if ln, ok := lnHalfLine(g, z, scale); ok {
+		return ln
+	}
 	return lnIntegral(g, lo, hi, k.zeta, 1/math.Sqrt(k.n))
 }
 

@@ -30,23 +30,23 @@ func gaussian(m, n int) []float64 {
 	for i := 1; i <= m; i++ {
 		f, old = old, f
 		span, last := i*n, (i-1)*n // largest U before and after
-		c := float64(i) / float64(n+i)
-		at := func(u int) float64 {
-			if u > last {
-				return 0
+		// The former table is symmetric: reach past its middle.
+		for u := last/2 + 1; u <= span/2; u++ {
+			if u <= last {
+				old[u] = old[last-u]
+			} else {
+				old[u] = 0
 			}
-			return old[min(u, last-u)]
 		}
+		c := float64(i) / float64(n+i)
 		for u := 0; u <= span/2; u++ {
-			v := at(u)
-			if j := u - n - i; j >= 0 {
-				v -= at(j)
-			}
-			v *= c
-			if u >= i {
-				v += f[u-i]
-			}
-			f[u] = v
+			f[u] = old[u] * c
+		}
+		for u := n + i; u <= span/2; u++ {
+			f[u] = (old[u] - old[u-n-i]) * c
+		}
+		for u := i; u <= span/2; u++ {
+			f[u] += f[u-i]
 		}
 	}
 	return f
