@@ -29,7 +29,7 @@ func document(in *protocol.Loaded, res *result.Result) *object {
 	o := &object{}
 	o.integer("steelyard", Version)
 	o.str("engine", res.Engine)
-	o.put("record", recordObject(res))
+	o.put("record", recordObject(in, res))
 	o.put("seal", sealObject(res))
 	o.flag("masked", res.Masked)
 	o.put("outcomes", outcomesObject(res))
@@ -77,18 +77,40 @@ func date(d record.Date) string {
 	return d.String()
 }
 
-func recordObject(res *result.Result) *object {
-	r, o := &res.Record, &object{}
-	o.str("title", r.Title)
-	o.text("number", r.Number)
-	o.text("version", r.Version)
-	o.text("status", r.Status)
+// recordObject identifies the record; of a record with errors, which has no
+// result, what could be read.
+func recordObject(in *protocol.Loaded, res *result.Result) *object {
+	r, head, o := &res.Record, &in.Record.Head, &object{}
+	o.str("title", first(r.Title, head.Title.V))
+	o.text("number", first(r.Number, head.Number.V))
+	o.text("version", first(r.Version, head.Version.V))
+	if s := first(r.Status, head.Status.V); documentStatus(s) {
+		o.str("status", s)
+	}
 	o.text("stage", string(r.Stage))
 	o.text("date", date(r.Date))
-	o.text("setting", r.Setting)
+	o.text("setting", first(r.Setting, head.Setting.V))
 	o.text("source_sha256", r.SourceSHA256)
 	o.text("plan_sha256", r.PlanSHA256)
 	return o
+}
+
+// first is the first text that is not empty.
+func first(a, b string) string {
+	if a != "" {
+		return a
+	}
+	return b
+}
+
+// documentStatus reports whether a word is a status of the language: an
+// erroneous record can hold any.
+func documentStatus(s string) bool {
+	switch s {
+	case "draft", "review", "effective", "superseded":
+		return true
+	}
+	return false
 }
 
 func sealObject(res *result.Result) *object {

@@ -9,7 +9,7 @@ import (
 // table prints a table in columns, wrapping cells where it is too wide; rows
 // become labelled blocks where even that does not fit.
 func (p *printer) table(t page.Table, indent int) {
-	if c := page.Plain(t.Caption); c != "" {
+	if c := plain(t.Caption); c != "" {
 		p.hanging("", c, indent)
 	}
 	room := p.width - indent
@@ -20,7 +20,7 @@ func (p *printer) table(t page.Table, indent int) {
 	} else {
 		p.stacked(t, cells, indent)
 	}
-	if n := page.Plain(t.Notes); n != "" {
+	if n := plain(t.Notes); n != "" {
 		p.hanging("", n, indent)
 	}
 }
@@ -34,7 +34,7 @@ func cellTexts(t page.Table) [][]string {
 	row := func(cells [][]page.Inline) []string {
 		out := make([]string, n)
 		for i, c := range cells {
-			out[i] = page.Plain(c)
+			out[i] = plain(c)
 		}
 		return out
 	}

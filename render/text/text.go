@@ -110,7 +110,7 @@ func (p *printer) block(b page.Block, indent int) {
 		p.callout(b, indent)
 	case page.Verbatim:
 		for _, l := range b.Lines {
-			p.line(clean(l), indent+2)
+			p.hanging("  ", l, indent)
 		}
 	case page.Signatures:
 		p.signatures(b, indent)
@@ -122,7 +122,7 @@ func (p *printer) block(b page.Block, indent int) {
 
 // heading prints a heading with its rule.
 func (p *printer) heading(h page.Heading, indent int) {
-	for _, l := range wrap(page.Plain(h.Text), p.width-indent) {
+	for _, l := range wrap(plain(h.Text), p.width-indent) {
 		p.line(p.bold(l), indent)
 	}
 	if h.Level <= 1 {
@@ -131,7 +131,7 @@ func (p *printer) heading(h page.Heading, indent int) {
 			sign = "="
 		}
 		n := 0
-		for _, l := range wrap(page.Plain(h.Text), p.width-indent) {
+		for _, l := range wrap(plain(h.Text), p.width-indent) {
 			n = max(n, width(l))
 		}
 		p.line(strings.Repeat(sign, n), indent)
@@ -141,12 +141,12 @@ func (p *printer) heading(h page.Heading, indent int) {
 // paragraph prints running text; quotes are set in.
 func (p *printer) paragraph(b page.Paragraph, indent int) {
 	if b.Style == page.Quote {
-		for _, l := range wrap(page.Plain(b.Text), p.width-indent-2) {
+		for _, l := range wrap(plain(b.Text), p.width-indent-2) {
 			p.line("| "+l, indent)
 		}
 		return
 	}
-	for _, l := range wrap(page.Plain(b.Text), p.width-indent) {
+	for _, l := range wrap(plain(b.Text), p.width-indent) {
 		p.line(l, indent)
 	}
 }
@@ -158,7 +158,7 @@ func (p *printer) list(b page.List, indent int) {
 		if b.Ordered {
 			mark = itoa(i+1) + ". "
 		}
-		p.hanging(mark, page.Plain(it), indent)
+		p.hanging(mark, plain(it), indent)
 	}
 }
 
@@ -183,10 +183,12 @@ func (p *printer) facts(b page.Facts, indent int) {
 		}
 	}
 	for _, f := range b.Items {
-		value := page.Plain(f.Value)
+		value := plain(f.Value)
 		label := clean(f.Label)
 		if width(label) > n {
-			p.line(label, indent)
+			for _, l := range wrap(label, p.width-indent) {
+				p.line(l, indent)
+			}
 			label = ""
 		}
 		p.hanging(pad(label, n)+"  ", value, indent)
@@ -196,13 +198,13 @@ func (p *printer) facts(b page.Facts, indent int) {
 // figure prints a figure in characters, or what it shows in words.
 func (p *printer) figure(b page.Figure, indent int) {
 	if len(b.Plain) == 0 {
-		if c := page.Plain(b.Caption); c != "" {
+		if c := plain(b.Caption); c != "" {
 			p.hanging("Figure: ", c, indent)
 		}
 		p.paragraph(page.Paragraph{Text: page.T(b.Alt)}, indent+2)
 		return
 	}
-	if c := page.Plain(b.Caption); c != "" {
+	if c := plain(b.Caption); c != "" {
 		p.hanging("Figure: ", c, indent)
 	}
 	for _, l := range b.Plain {
@@ -212,13 +214,18 @@ func (p *printer) figure(b page.Figure, indent int) {
 
 // verdict prints the block of one hypothesis.
 func (p *printer) verdict(b page.Verdict, indent int) {
-	head := b.Name + "  " + p.tone(b.Word, b.Tone)
+	head := b.Name + "  " + b.Word
 	if b.Qualify != "" {
 		head += "  (" + clean(b.Qualify) + ")"
 	}
-	p.line(head, indent)
+	if width(head) <= p.width-indent {
+		p.line(strings.Replace(head, "  "+b.Word, "  "+p.tone(b.Word, b.Tone), 1), indent)
+	} else {
+		p.line(b.Name+"  "+p.tone(b.Word, b.Tone), indent)
+		p.hanging("  ", "("+b.Qualify+")", indent)
+	}
 	for _, in := range [][]page.Inline{b.Claim, b.Answer, b.Reading, b.Region} {
-		if s := page.Plain(in); s != "" {
+		if s := plain(in); s != "" {
 			for _, l := range wrap(s, p.width-indent-2) {
 				p.line(l, indent+2)
 			}
@@ -240,6 +247,36 @@ func (p *printer) callout(b page.Callout, indent int) {
 	p.started = false
 	p.blocks(b.Blocks, indent+2)
 	p.started = started
+}
+
+// plain is the characters of inlines; raised and lowered digits keep their
+// place.
+func plain(in []page.Inline) string {
+	var b strings.Builder
+	for _, i := range in {
+		switch i := i.(type) {
+		case page.Sup:
+			b.WriteString(shifted(string(i), "⁰¹²³⁴⁵⁶⁷⁸⁹", "^"))
+		case page.Sub:
+			b.WriteString(shifted(string(i), "₀₁₂₃₄₅₆₇₈₉", "_"))
+		default:
+			b.WriteString(page.Plain([]page.Inline{i}))
+		}
+	}
+	return b.String()
+}
+
+// shifted writes digits by their small forms, anything else behind a sign.
+func shifted(s, digits, sign string) string {
+	small := []rune(digits)
+	var b strings.Builder
+	for _, r := range s {
+		if r < '0' || r > '9' {
+			return sign + s
+		}
+		b.WriteRune(small[r-'0'])
+	}
+	return b.String()
 }
 
 // calloutWord is the title of a box that has none.
@@ -266,9 +303,11 @@ func (p *printer) signatures(b page.Signatures, indent int) {
 			text += " (" + s.Meaning + ")"
 		}
 		p.hanging("", text, indent)
-		p.line("  signature ____________________  date and time ____________________", indent)
+		for _, what := range []string{"signature", "date and time"} {
+			p.line("  "+pad(what, 15)+strings.Repeat("_", min(40, p.width-indent-18)), indent)
+		}
 	}
-	if s := page.Plain(b.Note); s != "" {
+	if s := plain(b.Note); s != "" {
 		p.paragraph(page.Paragraph{Text: b.Note}, indent)
 	}
 }
