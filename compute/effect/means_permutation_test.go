@@ -119,3 +119,25 @@ func TestTooFewSelections(t *testing.T) {
 	hasNote(t, inf, "S205", true)
 	near(t, "smallest p", inf.Method.Test(100).Down.P, 1./6, 1e-15)
 }
+
+// TestDrawnSelections: on data small enough for every selection, the drawn
+// ones give the same p-values within five Monte Carlo errors, whichever group
+// is smaller.
+func TestDrawnSelections(t *testing.T) {
+	x, y := []float64{4.1, 5.3, 6.2, 5.9}, []float64{3.0, 4.4, 2.7, 4.9, 3.8, 5.1}
+	agree := func(what string, exact, drawn *Permutation) {
+		if m := drawn.selections(); m != randomSelections+1 {
+			t.Errorf("%s: %v selections", what, m)
+		}
+		for c := -1.0; c < 8; c += 0.37 {
+			e, d := exact.Test(c), drawn.Test(c)
+			sane(t, what, d)
+			within(t, what+" p-up", d.Up.P, e.Up.P, 5*math.Sqrt(e.Up.P*e.Up.Q/1e5)+1e-5)
+			within(t, what+" p-down", d.Down.P, e.Down.P, 5*math.Sqrt(e.Down.P*e.Down.Q/1e5)+1e-5)
+		}
+	}
+	perm := func(nulls []float64, centre float64) *Permutation { return newPermutation(nulls, centre, 5, 7, 0) }
+	agree("first smaller", perm(exchangeNulls(x, y, 4), 0), perm(randomExchangeNulls(x, y, 4, 3), 0))
+	agree("second smaller", perm(exchangeNulls(y, x, 4), 0), perm(randomExchangeNulls(y, x, 4, 3), 0))
+	agree("signs", perm(subsetMeans(y, 3), 3), perm(randomSubsetMeans(y, 3, 3), 3))
+}
