@@ -111,3 +111,11 @@ func BenchmarkMantelHaenszel(b *testing.B) {
 		MantelHaenszel("odds-ratio", strata)
 	}
 }
+
+func BenchmarkUnconditionalLimitsUnbalanced(b *testing.B) {
+	benchLimits(b, "risk-difference", "unconditional", two(30000, 400000, 4, 10))
+}
+
+func BenchmarkBoschlooLimitsLargest(b *testing.B) {
+	benchLimits(b, "odds-ratio", "boschloo", two(560, 2000, 480, 2000))
+}

@@ -147,19 +147,28 @@ func TestStaircaseHolds(t *testing.T) {
 	}
 }
 
-// TestStaircaseWalk compares the walk with looking at every table, and sees
-// that it asks for few.
+// TestStaircaseWalk compares the boundary with looking at every table, and sees
+// that it asks for few, also where one group is much the smaller.
 func TestStaircaseWalk(t *testing.T) {
-	asked := 0
-	in := func(x1, x2 float64) bool { asked++; return x2 <= 1.7*x1-3 }
-	last := Staircase(40, 25, in)
-	if asked > 40+25+2 {
-		t.Errorf("asked for %d tables", asked)
-	}
-	for x1, b := range last {
-		for x2 := range 26 {
-			if in(float64(x1), float64(x2)) != (x2 <= b) {
-				t.Fatalf("x1 = %d: last is %d", x1, b)
+	for _, tc := range []struct {
+		n1, n2, most int
+		slope, shift float64
+	}{
+		{40, 25, 67, 1.7, -3}, {40, 25, 67, 0.2, 9}, {40, 25, 67, 5, -400}, {40, 25, 67, 0, 100},
+		{4000, 3, 60, 0.001, -0.5}, {4000, 3, 60, 0, 2}, {4000, 3, 60, 1, -5000}, {3, 4000, 60, 900, 20}, {3, 4000, 60, 0, -1},
+		{1, 1, 4, 1, -1}, {0, 5, 7, 1, 2}, {5, 0, 7, 1, -2},
+	} {
+		asked := 0
+		in := func(x1, x2 float64) bool { asked++; return x2 <= tc.slope*x1+tc.shift }
+		last := Staircase(tc.n1, tc.n2, in)
+		if asked > tc.most {
+			t.Errorf("%+v: asked for %d tables", tc, asked)
+		}
+		for x1, b := range last {
+			for x2 := range tc.n2 + 1 {
+				if in(float64(x1), float64(x2)) != (x2 <= b) {
+					t.Fatalf("%+v: last at x1 = %d is %d", tc, x1, b)
+				}
 			}
 		}
 	}

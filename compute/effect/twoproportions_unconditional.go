@@ -2,6 +2,8 @@ package effect
 
 import (
 	"math"
+	"math/bits"
+	"sort"
 
 	"steelyard/compute/dist"
 	"steelyard/compute/numeric"
@@ -84,19 +86,42 @@ func (s *staircase) extreme(x1, x2, c float64) float64 {
 	return s.kind.score(t, c, 1)
 }
 
-// Staircase walks the boundary of a region of tables: last[x1] is the largest
+// Staircase finds the boundary of a region of tables: last[x1] is the largest
 // x2 with in(x1, x2), -1 for none. The region must contain, with a table,
 // those with more events in the first group or fewer in the second, which
 // Barnard (1947, from memory) demanded and the score and conditional orders
-// satisfy. It asks for n1 + n2 + 1 tables at most.
+// satisfy. It walks along the boundary, asking for n1 + n2 + 1 tables at most,
+// or bisects along the longer group where that takes fewer.
 func Staircase(n1, n2 int, in func(x1, x2 float64) bool) (last []int) {
 	last = make([]int, n1+1)
-	b := -1
-	for x1 := range last {
-		for b < n2 && in(float64(x1), float64(b+1)) {
-			b++
+	switch walk := n1 + n2; {
+	case (n1+1)*bits.Len(uint(n2+1)) < walk:
+		b := -1
+		for x1 := range last {
+			// the first x2 beyond b that is not in the region
+			b += sort.Search(n2-b, func(k int) bool { return !in(float64(x1), float64(b+1+k)) })
+			last[x1] = b
 		}
-		last[x1] = b
+	case (n2+1)*bits.Len(uint(n1+1)) < walk:
+		x1 := 0
+		for x2 := range n2 + 1 {
+			from := x1
+			x1 += sort.Search(n1+1-from, func(k int) bool { return in(float64(from+k), float64(x2)) })
+			for i := from; i < x1; i++ {
+				last[i] = x2 - 1
+			}
+		}
+		for i := x1; i <= n1; i++ {
+			last[i] = n2
+		}
+	default:
+		b := -1
+		for x1 := range last {
+			for b < n2 && in(float64(x1), float64(b+1)) {
+				b++
+			}
+			last[x1] = b
+		}
 	}
 	return last
 }
