@@ -110,8 +110,8 @@ func (m conformingBoth) breaks(v0, nu float64) []float64 {
 // standard deviations, the mean may come when the limits are 2a apart.
 func spare(a, q float64) float64 {
 	d := dist.NormalQuantile(q)
-	if 2*a-d > 38 { // the far side weighs nothing
-		return d
+	if far := 2*a - d; far > 0 && dist.NormalUpper(far).P < 1e-17*q {
+		return d // the far side weighs nothing
 	}
 	lo, hi := d, a // the far side only asks for more distance
 	if d > a {
