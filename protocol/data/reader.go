@@ -322,6 +322,15 @@ func (q *quotedRecord) inQuotes() *fault {
 	}
 }
 
+// guessRows is about how many rows the whole text has, by the lines of the
+// part that is in memory.
+func (c *reader) guessRows() int {
+	ahead := c.buf[c.start:c.end]
+	lines := bytes.Count(ahead, []byte("\n")) + 1
+	each := (len(ahead) + len(c.raw)) / lines
+	return int(min(c.size, 1<<30))/max(1, each)*33/32 + 8
+}
+
 // cell is field i of the record without the blanks around it.
 func (c *reader) cell(i int) []byte {
 	f := c.fields[i]

@@ -107,7 +107,7 @@ func (e *entry) size(s *rows, c *reader) {
 	if e.form == halfARow {
 		return
 	}
-	n := int(min(c.size, 1<<30))/max(1, len(c.raw)) + 1
+	n := c.guessRows()
 	for _, r := range e.numeric {
 		s.num[r] = make([]float64, 0, n)
 	}
