@@ -206,6 +206,11 @@ func (c *checker) form(r *record.Result, o *record.Outcome, m *record.Measure, f
 		c.add(diag.Error("R403", at, "%s takes no result in the form %q", m.Word, form).WithHelp("%s", formHelp(o)))
 		return
 	}
+	if form == "groups" && o.Design.V == "crossover" {
+		c.add(diag.Error("R403", at, "a crossover is not told by summaries of its groups: every subject is in both").
+			WithHelp("give `data` with subject, period and sequence, or an `effect`"))
+		return
+	}
 	switch form {
 	case "groups":
 		c.twoGroups(r, o, m)
