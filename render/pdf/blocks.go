@@ -15,10 +15,11 @@ type setter struct {
 
 	root    *elem
 	titled  bool // the document has a title heading, so sections are one level down
+	column  float64 // widest line of running text; tables and figures use the whole measure
 	places  []place
 	anchors map[string]int // into places
 	links   []*elem
-	notes   int // ids given
+	level   int // of the last heading in the tree
 
 	where   string
 	refused []BadRune
@@ -35,6 +36,7 @@ type place struct {
 
 func newSetter(doc *page.Document) *setter {
 	s := &setter{doc: doc, sheet: sheetOf(doc.Paper), anchors: map[string]int{}, where: "the title page"}
+	s.column = readable
 	s.root = &elem{role: "Document", joined: true}
 	for _, b := range doc.Blocks {
 		if h, ok := b.(page.Heading); ok && h.Level == 0 {
@@ -65,8 +67,10 @@ func (s *setter) pageOne(bs []page.Block, fr frame) []piece {
 	}
 	for k := math.Sqrt(depth / h); k >= 1-1.0/6; k -= 0.015 {
 		// Elements join the tree when drawn, so those of a trial are forgotten.
-		s.places, s.links, s.anchors = nil, nil, map[string]int{}
+		s.restart()
+		s.column = readable / k
 		small := s.blocks(bs, frame{fr.x, fr.w / k}, s.root)
+		s.column = readable
 		if height(small)*k <= depth {
 			for i := range small {
 				small[i].scale(fr.x, k)
@@ -74,8 +78,13 @@ func (s *setter) pageOne(bs []page.Block, fr frame) []piece {
 			return small
 		}
 	}
-	s.places, s.links, s.anchors = nil, nil, map[string]int{}
+	s.restart()
 	return s.blocks(bs, fr, s.root)
+}
+
+// restart forgets what a trial has noted.
+func (s *setter) restart() {
+	s.places, s.links, s.anchors, s.level = nil, nil, map[string]int{}, 0
 }
 
 // link makes the element of a link.
@@ -140,7 +149,8 @@ func (s *setter) heading(h page.Heading, fr frame, parent *elem) []piece {
 	if s.titled {
 		level++
 	}
-	el := parent.child(fmt.Sprintf("H%d", max(1, level)))
+	s.level = max(1, min(level, s.level+1)) // no level of the tree is left out
+	el := parent.child(fmt.Sprintf("H%d", s.level))
 	title := s.clean(page.Plain(h.Text))
 	s.where = fmt.Sprintf("the section %q", title)
 	st, before, after := h1Style, 26.0, 5.0
@@ -188,7 +198,7 @@ func (s *setter) paragraph(b page.Paragraph, fr frame, parent *elem) []piece {
 		st, before, role = quoteStyle, 8, "BlockQuote"
 	}
 	el := parent.child(role)
-	fr.w = min(fr.w, max(readable, readable*st.size/bodyStyle.size))
+	fr.w = min(fr.w, s.column*max(1, st.size/bodyStyle.size))
 	if b.Style == page.Quote {
 		fr.x, fr.w = fr.x+16, fr.w-28
 		el = el.child("P")
@@ -214,7 +224,7 @@ func (s *setter) list(b page.List, fr frame, parent *elem) []piece {
 		l.attrs = "/O /List /ListNumbering /Decimal"
 		indent = 17
 	}
-	fr.w = min(fr.w, readable)
+	fr.w = min(fr.w, s.column)
 	var out []piece
 	for i, item := range b.Items {
 		li := l.child("LI")

@@ -96,7 +96,7 @@ func (t textStyle) ascent() float64 { return t.leading/2 + t.size*0.34 }
 // text sets inlines as pieces of one line each, with no line left alone at
 // the foot or head of a page.
 func (s *setter) text(in []page.Inline, st textStyle, fr frame, el *elem) []piece {
-	lines := wrap(s.chars(in, st, el), fr.w)
+	lines := settle(s.chars(in, st, el), fr.w, st.family == boldFamily)
 	out := make([]piece, len(lines))
 	for i, l := range lines {
 		out[i].height = st.leading

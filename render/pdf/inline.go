@@ -271,6 +271,28 @@ func wrap(cs []char, width float64) []line {
 	return out
 }
 
+// settle wraps and then evens the lines out without adding one. Headings are
+// balanced; running text only gives its last line company when a short word
+// stands there alone.
+func settle(cs []char, width float64, balance bool) []line {
+	ls := wrap(cs, width)
+	n := len(ls)
+	if n < 2 || !balance && ls[n-1].width > 0.13*width || balance && n > 4 {
+		return ls
+	}
+	for k := 0.97; k > 0.55; k -= 0.03 {
+		try := wrap(cs, width*k)
+		if len(try) > n {
+			break
+		}
+		ls = try
+		if !balance && ls[n-1].width > 0.2*width {
+			break
+		}
+	}
+	return ls
+}
+
 // long reports whether the first word is wider than a line.
 func long(cs []char, width float64) bool {
 	x := 0.0

@@ -182,6 +182,35 @@ func TestPageOneFits(t *testing.T) {
 	}
 }
 
+// Headings that leave a level out, as on page one, leave none out in the tree.
+func TestLevelsHaveNoGap(t *testing.T) {
+	doc := &page.Document{Paper: "a4", Blocks: []page.Block{page.Heading{Level: 0, Text: page.T("Title")}, page.Heading{Level: 2, Text: page.T("Two")},
+		page.Heading{Level: 3, Text: page.T("Three")}, page.Heading{Level: 1, Text: page.T("One")}, page.Heading{Level: 3, Text: page.T("Three")}}}
+	b, err := build(doc, options{plain: true})
+	if err != nil {
+		t.Fatal(err)
+	}
+	if f := tagFaults(b); len(f) > 0 {
+		t.Error(f[0])
+	}
+}
+
+// The last line of a paragraph is not one short word where it can be helped,
+// and a heading's lines are of like length.
+func TestSettle(t *testing.T) {
+	s := newSetter(&page.Document{})
+	cs := s.chars(page.T("aaaa bbbb cccc dddd eeee f"), textStyle{family{mono, mono, mono}, 10, 12, colour{}}, nil)
+	if got := texts(wrap(cs, 24.5*6.01)); strings.Join(got, "|") != "aaaa bbbb cccc dddd eeee |f" {
+		t.Fatal(got)
+	}
+	if got := texts(settle(cs, 24.5*6.01, false)); strings.Join(got, "|") != "aaaa bbbb cccc dddd |eeee f" {
+		t.Error(got)
+	}
+	if got := texts(settle(cs, 24.5*6.01, true)); strings.Join(got, "|") != "aaaa bbbb cccc |dddd eeee f" {
+		t.Error(got)
+	}
+}
+
 // Blocks with nothing in them, and documents without blocks, are set too.
 func TestEmpty(t *testing.T) {
 	docs := []*page.Document{{}, {Paper: "letter", Status: "draft", Blocks: []page.Block{

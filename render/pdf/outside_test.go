@@ -140,7 +140,7 @@ func TestTextReadBack(t *testing.T) {
 	flat := strings.Join(strings.Fields(out), " ")
 	for _, want := range []string{
 		"All values in the interval lie above zero; values inside the region too small to matter remain compatible with the data.",
-		"ESTABLISHED", "−0.6 points (90% confidence interval −2.6 to 4.1 points)", "page 2 of ", "difference in yield, kg", "mean x̄ of the plots", "DRAFT",
+		"ESTABLISHED", "−0.6 points (90% confidence interval −2.6 to 4.1 points)", "page 2 of ", "difference in yield, kg", "mean x̄ of the plots", "3·10⁻⁹", "DRAFT",
 	} {
 		if !strings.Contains(flat, want) {
 			t.Errorf("not read back: %q", want)

@@ -63,11 +63,13 @@ func (s *setter) facts(b page.Facts, fr frame, parent *elem) []piece {
 // made smaller as a whole.
 func (s *setter) figure(b page.Figure, fr frame, parent *elem) []piece {
 	el := parent.child("Figure")
-	el.alt = s.clean(b.Alt)
+	if el.alt = s.clean(b.Alt); el.alt == "" {
+		el.alt = s.clean(page.Plain(b.Caption))
+	}
 	el.boxed = true
 	var out []piece
 	if len(b.Caption) > 0 {
-		out = glued(s.text(b.Caption, captionStyle, frame{fr.x, min(fr.w, readable+30)}, el.child("Caption")))
+		out = glued(s.text(b.Caption, captionStyle, frame{fr.x, min(fr.w, s.column+30)}, el.child("Caption")))
 		out[len(out)-1].keep = true
 		out[len(out)-1].height += 4
 	}
@@ -137,7 +139,7 @@ func (s *setter) verdict(b page.Verdict, fr frame, parent *elem) []piece {
 	sect := parent.child("Sect")
 	tone := toneColour(b.Tone)
 	in := frame{fr.x + 30, fr.w - 30}
-	narrow := frame{in.x, min(in.w, readable)}
+	narrow := frame{in.x, min(in.w, s.column)}
 
 	word := s.chars(page.T(b.Word+" "), textStyle{boldFamily, 12.6, 17, tone}, sect.child("P"))
 	at := word[:]
@@ -221,7 +223,7 @@ func (s *setter) signatures(b page.Signatures, fr frame, parent *elem) []piece {
 	if len(out) > 0 && len(b.Note) > 0 {
 		out[len(out)-1].keep = true
 	}
-	notes := s.text(b.Note, smallStyle, frame{fr.x, min(fr.w, readable)}, sect.child("P"))
+	notes := s.text(b.Note, smallStyle, frame{fr.x, min(fr.w, s.column)}, sect.child("P"))
 	if len(notes) > 0 {
 		notes[0].before = 7
 	}

@@ -72,7 +72,7 @@ func small() *page.Document {
 	}
 }
 
-// readable gives the file without compression and without binary data.
+// shown gives the file without compression and without binary data.
 func shown(b []byte) string {
 	var out strings.Builder
 	for _, part := range strings.SplitAfter(string(b), "\n") {

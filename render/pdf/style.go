@@ -136,6 +136,5 @@ func sheetOf(paper string) sheet {
 func (s sheet) measure() float64 { return s.width - s.left - s.right }
 func (s sheet) depth() float64   { return s.height - s.top - s.bottom }
 
-// readable is the widest a line of running text is set: tables and figures
-// use the whole measure.
+// readable is the widest a line of running text is set, about 95 characters.
 const readable = 424
