@@ -153,21 +153,28 @@ func subsetMeans(x []float64, centre float64) []float64 {
 
 // randomSubsetMeans draws subsets; the empty one, NaN, equals the observed.
 func randomSubsetMeans(x []float64, centre float64, seed uint64) []float64 {
+	centred := make([]float64, len(x))
+	for i, v := range x {
+		centred[i] = v - centre
+	}
 	out := make([]float64, randomSelections)
-	var stream numeric.Stream
-	for r := range out {
-		stream.Reset("permutation", seed, "", uint64(r))
-		sum, count := 0.0, 0
-		for i := 0; i < len(x); i += 64 {
-			for word, j := stream.Uint64(), i; word != 0 && j < len(x); word, j = word>>1, j+1 {
-				if word&1 == 1 {
-					sum += x[j] - centre
-					count++
+	inShares(len(out), func(from, to int) {
+		var stream numeric.Stream
+		for r := from; r < to; r++ {
+			stream.Reset("permutation", seed, "", uint64(r))
+			sum, count := 0.0, 0
+			for i := 0; i < len(centred); i += 64 {
+				part := centred[i:min(i+64, len(centred))]
+				word := stream.Uint64() & (^uint64(0) >> (64 - len(part)))
+				count += bits.OnesCount64(word)
+				for _, v := range part {
+					sum += masked(v, -(word & 1))
+					word >>= 1
 				}
 			}
+			out[r] = sum / float64(count) // 0/0 is NaN on purpose
 		}
-		out[r] = sum / float64(count) // 0/0 is NaN on purpose
-	}
+	})
 	return out
 }
 

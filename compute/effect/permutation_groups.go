@@ -2,6 +2,8 @@ package effect
 
 import (
 	"math"
+	"runtime"
+	"sync"
 
 	"steelyard/compute/numeric"
 	"steelyard/compute/result"
@@ -101,8 +103,13 @@ func subsetSums(x []float64, centre float64, most int) [][]float64 {
 
 // randomExchangeNulls draws selections: as many of all values as the smaller
 // group holds (Floyd's algorithm, as in Bentley 1987; from memory) become
-// that group. Each selection has a stream of its own. NaN: nothing moved.
+// that group. NaN: nothing moved.
 func randomExchangeNulls(x, y []float64, centre float64, seed uint64) []float64 {
+	// The smaller group is drawn; it stands first.
+	turn := 1.0
+	if len(y) < len(x) {
+		x, y, turn = y, x, -1
+	}
 	all := make([]float64, 0, len(x)+len(y))
 	for _, v := range x {
 		all = append(all, v-centre)
@@ -110,47 +117,48 @@ func randomExchangeNulls(x, y []float64, centre float64, seed uint64) []float64 
 	for _, v := range y {
 		all = append(all, v-centre)
 	}
-	// The smaller group is drawn: positions from start to stop now hold it.
-	start, stop := 0, len(x)
-	if len(y) < len(x) {
-		start, stop = len(x), len(all)
-	}
-	size := stop - start
-	chosen := make([]bool, len(all))
-	drawn := make([]int32, 0, size)
+	size := len(x)
 	nulls := make([]float64, randomSelections)
-	var stream numeric.Stream
-	for r := range nulls {
-		stream.Reset("permutation", seed, "", uint64(r))
-		drawn = drawn[:0]
-		for j := len(all) - size; j < len(all); j++ {
-			t := stream.IntN(j + 1)
-			if chosen[t] {
-				t = j
+	inShares(len(nulls), func(from, to int) {
+		chosen := make([]uint64, len(all)) // all bits or none
+		var stream numeric.Stream
+		for r := from; r < to; r++ {
+			stream.Reset("permutation", seed, "", uint64(r))
+			clear(chosen)
+			for j := len(all) - size; j < len(all); j++ {
+				t := stream.IntN(j + 1)
+				if chosen[t] != 0 {
+					t = j
+				}
+				chosen[t] = ^uint64(0)
 			}
-			chosen[t] = true
-			drawn = append(drawn, int32(t))
-		}
-		entering, leaving, moved := 0.0, 0.0, 0
-		for _, i := range drawn {
-			if int(i) < start || int(i) >= stop {
-				entering += all[i]
-				moved++
+			leaving, stayed := 0.0, 0
+			for i, v := range all[:size] {
+				leaving += masked(v, ^chosen[i])
+				stayed += int(chosen[i] & 1)
 			}
-		}
-		for i := start; i < stop; i++ {
-			if !chosen[i] {
-				leaving += all[i]
+			entering := 0.0
+			for i, v := range all[size:] {
+				entering += masked(v, chosen[size+i])
 			}
+			nulls[r] = turn * (leaving - entering) / float64(size-stayed) // 0/0 is NaN on purpose
 		}
-		for _, i := range drawn {
-			chosen[i] = false
-		}
-		d := (leaving - entering) / float64(moved) // 0/0 is NaN on purpose
-		if start > 0 {
-			d = -d // the second group was drawn
-		}
-		nulls[r] = d
-	}
+	})
 	return nulls
+}
+
+// masked is v where all bits are set and 0 where none is, without a branch.
+func masked(v float64, bits uint64) float64 {
+	return math.Float64frombits(math.Float64bits(v) & bits)
+}
+
+// inShares cuts 0 … n-1 into a share per processor. Each selection has a
+// stream and a place of its own, so the number of shares changes nothing.
+func inShares(n int, share func(from, to int)) {
+	k := runtime.GOMAXPROCS(0)
+	var group sync.WaitGroup
+	for i := range k {
+		group.Go(func() { share(n*i/k, n*(i+1)/k) })
+	}
+	group.Wait()
 }
