@@ -65,7 +65,7 @@ func (s *setter) pageOne(bs []page.Block, fr frame) []piece {
 	if h <= depth {
 		return ps
 	}
-	for k := math.Sqrt(depth / h); k >= 1-1.0/6; k -= 0.015 {
+	for k := min(0.98, 1.06*math.Sqrt(depth/h)); k >= 1-1.0/6; k -= 0.02 {
 		// Elements join the tree when drawn, so those of a trial are forgotten.
 		s.restart()
 		s.column = readable / k

@@ -214,3 +214,87 @@ func TestAttachmentsByPoppler(t *testing.T) {
 		t.Error("attachments where there are none:", list)
 	}
 }
+
+// The bookmarks are the headings, in their order and depth, and each leads to
+// the page that shows it.
+func TestBookmarks(t *testing.T) {
+	b := plainSample(t)
+	budget := maxUnpacked
+	w := scan(b, &budget)
+	pages := map[any]int{}
+	kids, _ := w.dict(w.catalog()["Pages"])["Kids"].([]any)
+	for i, k := range kids {
+		pages[k] = i + 1
+	}
+	type mark struct {
+		title string
+		level int
+		page  int
+	}
+	var got []mark
+	var walk func(item any, level int) int
+	walk = func(item any, level int) int {
+		n := 0
+		for d := w.dict(item); d != nil; d = w.dict(d["Next"]) {
+			dest := d["Dest"].([]any)
+			got = append(got, mark{w.text(d["Title"]), level, pages[dest[0]]})
+			n++
+			if below := walk(d["First"], level+1); float64(-below) != d["Count"] && below > 0 {
+				t.Errorf("%q counts %v below it, not %d", w.text(d["Title"]), d["Count"], below)
+			}
+		}
+		return n
+	}
+	root := w.dict(w.catalog()["Outlines"])
+	if n := walk(root["First"], 1); root["Count"] != float64(n) {
+		t.Errorf("the root counts %v, not %d", root["Count"], n)
+	}
+	i := 0
+	path := keep(t, "s.pdf", b)
+	for _, bl := range sample().Blocks {
+		h, ok := bl.(page.Heading)
+		if !ok || h.Level == 0 {
+			continue
+		}
+		if i == len(got) {
+			t.Fatal("bookmarks are missing")
+		}
+		m := got[i]
+		i++
+		if m.title != page.Plain(h.Text) || m.level != h.Level {
+			t.Errorf("%+v for %q at %d", m, page.Plain(h.Text), h.Level)
+		}
+		n := itoa(m.page)
+		text, err := run(t, "pdftotext", "-f", n, "-l", n, "-enc", "UTF-8", path, "-")
+		if err != nil || !strings.Contains(text, m.title) {
+			t.Errorf("%q is not on page %d", m.title, m.page)
+		}
+	}
+	if i != len(got) {
+		t.Errorf("%d bookmarks for %d headings", len(got), i)
+	}
+}
+
+// Many attachments keep their names and order.
+func TestManyAttachments(t *testing.T) {
+	doc := paragraph("x")
+	for i := range 23 {
+		doc.Attachments = append(doc.Attachments, page.Attachment{Name: "file " + itoa(22-i) + " ⇒.csv", Media: "text/csv", Relation: "Data", Bytes: bytes.Repeat([]byte(itoa(i)), i*50)})
+	}
+	var b bytes.Buffer
+	if err := Write(&b, doc); err != nil {
+		t.Fatal(err)
+	}
+	f, err := Read(b.Bytes())
+	if err != nil || len(f.Attachments) != 23 {
+		t.Fatal(err, len(f.Attachments))
+	}
+	for i, a := range f.Attachments {
+		if a.Name != doc.Attachments[i].Name || !bytes.Equal(a.Bytes, doc.Attachments[i].Bytes) || a.Sum != "match" {
+			t.Errorf("%d: %q", i, a.Name)
+		}
+	}
+	if list, err := run(t, "pdfdetach", "-list", keep(t, "m.pdf", b.Bytes())); err != nil || !strings.Contains(list, "23 embedded files") {
+		t.Error(list)
+	}
+}
