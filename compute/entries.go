@@ -129,8 +129,12 @@ func (r *run) specOf(h *record.Hypothesis, o *record.Outcome, a float64) spec {
 }
 
 func analysisOf(s spec, inf *effect.Inference, level, low, high float64) result.Analysis {
+	estimate := opt(inf.Estimate)
+	if inf.NoEstimate {
+		estimate = result.Opt{}
+	}
 	return result.Analysis{Measure: s.measure.Word, Method: inf.Word, N: inf.N, Events: inf.Events,
-		Estimate: opt(inf.Estimate), SE: inf.SE, DF: inf.DF, Level: level, Low: opt(low), High: opt(high), Notes: inf.Notes}
+		Estimate: estimate, SE: inf.SE, DF: inf.DF, Level: level, Low: opt(low), High: opt(high), Notes: inf.Notes}
 }
 
 func lookOf(l record.Look) string {

@@ -4,6 +4,7 @@ import (
 	"math"
 	"slices"
 	"sort"
+	"strings"
 
 	"steelyard/compute/claim"
 	"steelyard/compute/dist"
@@ -247,18 +248,29 @@ func (p *poolRun) fitOf(o pool.Options, studies []pooledStudy) pool.Pooled {
 	return pool.Fit(ys, o)
 }
 
+// byTables pools the fourfold tables themselves; false where a study gives
+// only its effect.
 func (p *poolRun) byTables(studies []pooledStudy) (pool.Pooled, bool) {
-	tables := make([]pool.Table, len(studies))
+	if slices.ContainsFunc(studies, func(s pooledStudy) bool { return s.in.Given != nil }) {
+		return pool.Pooled{}, false
+	}
+	strata := make([]effect.Stratum, len(studies))
+	rates := strings.HasPrefix(p.spec.measure.Word, "rate")
 	for i, s := range studies {
-		if s.in.Given != nil {
-			return pool.Pooled{}, false
+		x := effect.Stratum{X1: s.in.First.Events, N1: s.in.First.N, X2: s.in.Second.Events, N2: s.in.Second.N}
+		if rates {
+			x.N1, x.N2 = s.in.First.Exposure, s.in.Second.Exposure
 		}
-		tables[i] = pool.Table{X1: s.in.First.Events, N1: s.in.First.N, X2: s.in.Second.Events, N2: s.in.Second.N, T1: s.in.First.Exposure, T2: s.in.Second.Exposure}
+		strata[i] = x
 	}
 	if p.weights() == "peto" {
-		return pool.Peto(tables)
+		return pool.Peto(strata)
 	}
-	return pool.Pooled{}, false
+	m, ok := effect.MantelHaenszel(p.spec.measure.Word, strata)
+	if !ok || !m.OK || !(m.V > 0) {
+		return pool.Pooled{}, false
+	}
+	return pool.Pooled{Mu: m.Y, SE: math.Sqrt(m.V), DF: math.Inf(1), Weights: m.Weights}, true
 }
 
 // inference is the deciding pool as a method with its notes.

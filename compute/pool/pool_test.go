@@ -9,6 +9,8 @@ import (
 	"path/filepath"
 	"strconv"
 	"testing"
+
+	"steelyard/compute/effect"
 )
 
 const dir = "../../testdata/reference"
@@ -312,5 +314,21 @@ func BenchmarkLeaveOneOut1000(b *testing.B) {
 	s := random(rand.New(rand.NewPCG(5, 6)), 1000)
 	for b.Loop() {
 		LeaveOneOut(s, Options{Random: true, Between: REML, Interval: HartungKnapp})
+	}
+}
+
+// Peto's odds ratios of the published sets (SciPy 1.10 recomputation in
+// testdata/reference/published.json).
+func TestPeto(t *testing.T) {
+	for _, c := range []struct{ id, file string }{{"meta-bcg", "bcg.csv"}, {"meta-aspirin", "aspirin.csv"}, {"meta-six-binary", "six_studies_binary.csv"}} {
+		var tables []effect.Stratum
+		for _, r := range columns(t, c.file) {
+			tables = append(tables, effect.Stratum{X1: r[0], N1: r[1], X2: r[2], N2: r[3]})
+		}
+		p, ok := Peto(tables)
+		if !ok {
+			t.Fatal("no pooled ratio")
+		}
+		near(t, c.id, math.Exp(p.Mu), recomputed(t, c.id)["peto_or"], 1e-12)
 	}
 }

@@ -1,14 +1,14 @@
 package pool
 
-import "math"
+import (
+	"math"
 
-// Table is one study's counts: events and subjects, or events and exposure,
-// of the first and the second group.
-type Table struct{ X1, N1, X2, N2, T1, T2 float64 }
+	"steelyard/compute/effect"
+)
 
 // Peto pools odds ratios from observed minus expected events (Yusuf et al.
 // 1985, from memory): the log odds ratio, normal.
-func Peto(tables []Table) (Pooled, bool) {
+func Peto(tables []effect.Stratum) (Pooled, bool) {
 	p := Pooled{DF: math.Inf(1), Weights: make([]float64, len(tables))}
 	var oe, sv float64
 	for i, t := range tables {
