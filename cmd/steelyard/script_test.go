@@ -27,6 +27,7 @@ func TestMain(m *testing.M) {
 //	code N COMMAND…     the exact exit code
 //	await FILE REGEXP   until the file holds it, for at most half a minute
 //	edit FILE OLD NEW   replace a text, saving in place
+//	add SOURCE FILE     add a text at the end of a file
 func TestScript(t *testing.T) {
 	testscript.Run(t, testscript.Params{
 		Dir:           filepath.Join("..", "..", "testdata", "script"),
@@ -36,7 +37,7 @@ func TestScript(t *testing.T) {
 			return nil
 		},
 		Cmds: map[string]func(*testscript.TestScript, bool, []string){
-			"code": code, "await": await, "edit": edit,
+			"code": code, "await": await, "edit": edit, "add": add,
 		},
 		RequireExplicitExec: true,
 		RequireUniqueNames:  true,
@@ -90,4 +91,15 @@ func edit(ts *testscript.TestScript, neg bool, args []string) {
 		ts.Fatalf("%s does not hold %q", args[0], args[1])
 	}
 	ts.Check(os.WriteFile(path, changed, 0o666))
+}
+
+func add(ts *testscript.TestScript, neg bool, args []string) {
+	if neg || len(args) != 2 {
+		ts.Fatalf("usage: add SOURCE FILE")
+	}
+	more, err := os.ReadFile(ts.MkAbs(args[0]))
+	ts.Check(err)
+	text, err := os.ReadFile(ts.MkAbs(args[1]))
+	ts.Check(err)
+	ts.Check(os.WriteFile(ts.MkAbs(args[1]), append(text, more...), 0o666))
 }

@@ -15,12 +15,14 @@ import (
 	"io"
 	"io/fs"
 	"runtime/debug"
+	"slices"
 
 	"steelyard/cmd/internal/version"
 	"steelyard/compute"
 	"steelyard/compute/result"
 	"steelyard/protocol"
 	"steelyard/protocol/diag"
+	"steelyard/protocol/record"
 	"steelyard/render"
 	"steelyard/render/jsonout"
 	"steelyard/render/page"
@@ -143,7 +145,7 @@ func (r Rooms) Compile(in Input) (c *Compiled, err error) {
 		return c, err
 	}
 	c.Page = r.Compose(c.Loaded, c.Result)
-	return c, nil
+	return c, c.attach(in)
 }
 
 // refused is the result of a record that has errors: who it is and what is
@@ -199,21 +201,26 @@ func (c *Compiled) Files() []string {
 			list = append(list, name)
 		}
 	}
-	for _, r := range rec.Results {
-		if r != nil && r.Data != nil {
-			add(r.Data.File.V)
-		}
-	}
-	for _, r := range rec.Earlier {
-		if r != nil && r.Data != nil {
-			add(r.Data.File.V)
-		}
+	for _, name := range c.data() {
+		add(name)
 	}
 	add(rec.Head.Typeface.V)
 	for _, w := range rec.Witnesses {
 		if w != nil {
 			add(w.Token.V)
 			add(w.CA.V)
+		}
+	}
+	return list
+}
+
+// data lists the data files that the record names, each once.
+func (c *Compiled) data() (list []string) {
+	for _, results := range [][]*record.Result{c.Loaded.Record.Results, c.Loaded.Record.Earlier} {
+		for _, r := range results {
+			if r != nil && r.Data != nil && r.Data.File.V != "" && !slices.Contains(list, r.Data.File.V) {
+				list = append(list, r.Data.File.V)
+			}
 		}
 	}
 	return list
