@@ -8,9 +8,9 @@ import (
 	"steelyard/protocol/record"
 )
 
-// inversion says where and how to look for the limits of a test.
-type inversion struct {
-	Test  func(c float64) Test
+// Inversion makes limits from a test: where and how to look for them.
+type Inversion struct {
+	Test  func(c float64) Test // both one-sided p-values at any c of the range
 	Scale record.Scale // coordinate of the search
 	// Low and High are the ends of the effect's range.
 	Low, High float64
@@ -33,16 +33,16 @@ const beyond = 6
 // double that a record can hold.
 const maxDoublings = 80
 
-// limits inverts the test at one-sided error a: low is the point below which
+// Limits inverts the test at one-sided error a: low is the point below which
 // p-up stays at most a, high the point above which p-down does. A limit that
 // does not exist is the end of the range. Where p is not monotone the
 // outermost crossing counts.
-func (v inversion) limits(a float64) (low, high float64) {
+func (v Inversion) Limits(a float64) (low, high float64) {
 	return v.side(a, -1), v.side(a, +1)
 }
 
 // side finds one limit; direction is -1 for the lower.
-func (v inversion) side(a, direction float64) float64 {
+func (v Inversion) side(a, direction float64) float64 {
 	end := v.High
 	if direction < 0 {
 		end = v.Low
@@ -83,7 +83,7 @@ func (v inversion) side(a, direction float64) float64 {
 
 // bracket returns distances from the origin between which h changes sign for
 // the last time, going outward.
-func (v inversion) bracket(h, at func(float64) float64, end float64) (inner, outer float64, found bool) {
+func (v Inversion) bracket(h, at func(float64) float64, end float64) (inner, outer float64, found bool) {
 	step := v.Step
 	if !(step > 0) || math.IsInf(step, 0) {
 		step = math.Max(1e-3*math.Abs(at(0)), 0.25)
@@ -135,7 +135,7 @@ func (v inversion) bracket(h, at func(float64) float64, end float64) (inner, out
 }
 
 // inside is a coordinate inside the range, for estimates at its end.
-func (v inversion) inside() float64 {
+func (v Inversion) inside() float64 {
 	lo, hi := onScale(v.Scale, v.Low), onScale(v.Scale, v.High)
 	switch {
 	case math.IsInf(lo, -1) && math.IsInf(hi, 1):
@@ -148,7 +148,7 @@ func (v inversion) inside() float64 {
 	return (lo + hi) / 2
 }
 
-func (v inversion) clip(c float64) float64 { return math.Min(math.Max(c, v.Low), v.High) }
+func (v Inversion) clip(c float64) float64 { return math.Min(math.Max(c, v.Low), v.High) }
 
 // finite keeps infinities out of the root search.
 func finite(x float64) float64 { return math.Max(-1e150, math.Min(x, 1e150)) }

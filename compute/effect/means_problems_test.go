@@ -295,13 +295,13 @@ func TestInversion(t *testing.T) {
 	wantLow, wantHigh := wald.Limits(0.025)
 	for _, start := range []float64{3, 1e-8, 1e8, 0, math.Inf(1)} {
 		for _, step := range []float64{0, 1e-6, 0.4, 50} {
-			low, high := inversion{Test: wald.Test, Scale: record.Log, Low: 0, High: math.Inf(1), Start: start, Step: step}.limits(0.025)
+			low, high := Inversion{Test: wald.Test, Scale: record.Log, Low: 0, High: math.Inf(1), Start: start, Step: step}.Limits(0.025)
 			near(t, "low", low, wantLow, 1e-11)
 			near(t, "high", high, wantHigh, 1e-11)
 		}
 	}
 	// A range that ends before the crossing: the limit is its end.
-	low, high := inversion{Test: wald.Test, Scale: record.Log, Low: 2, High: 4, Start: 3, Step: 0.4}.limits(0.025)
+	low, high := Inversion{Test: wald.Test, Scale: record.Log, Low: 2, High: 4, Start: 3, Step: 0.4}.Limits(0.025)
 	if low != 2 || high != 4 {
 		t.Errorf("limits %v, %v of a range from 2 to 4", low, high)
 	}
@@ -315,7 +315,7 @@ func TestInversion(t *testing.T) {
 		n := Wald{Scale: record.Identity, SE: 1, DF: math.Inf(1), Low: math.Inf(-1), High: math.Inf(1)}.Test(z)
 		return n
 	}
-	_, high = inversion{Test: hump, Scale: record.Identity, Low: math.Inf(-1), High: math.Inf(1), Start: 0, Step: 0.15}.limits(0.0228)
+	_, high = Inversion{Test: hump, Scale: record.Identity, Low: math.Inf(-1), High: math.Inf(1), Start: 0, Step: 0.15}.Limits(0.0228)
 	if !(high > 5 && high < 6) {
 		t.Errorf("outermost crossing at %v", high)
 	}

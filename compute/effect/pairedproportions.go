@@ -39,8 +39,8 @@ func (m tango) Test(d float64) Test { return normalTest(tangoZ(m.b, m.c, m.n, d)
 
 // Limits implements Method.
 func (m tango) Limits(a float64) (low, high float64) {
-	return inversion{Test: m.Test, Scale: record.Atanh, Low: -1, High: 1, Start: (m.b - m.c) / m.n,
-		Step: math.Sqrt(m.b+m.c+1) / m.n, Monotone: true}.limits(a)
+	return Inversion{Test: m.Test, Scale: record.Atanh, Low: -1, High: 1, Start: (m.b - m.c) / m.n,
+		Step: math.Sqrt(m.b+m.c+1) / m.n, Monotone: true}.Limits(a)
 }
 
 // mcnemar is the exact test of equal risks given the discordant pairs, in

@@ -69,8 +69,8 @@ func (m binomialMidP) Test(c float64) Test {
 
 // Limits implements Method.
 func (m binomialMidP) Limits(a float64) (low, high float64) {
-	return inversion{Test: m.Test, Scale: record.Logit, Low: 0, High: 1, Start: m.x / m.n,
-		Step: logitStep(m.x, m.n), Monotone: true}.limits(a)
+	return Inversion{Test: m.Test, Scale: record.Logit, Low: 0, High: 1, Start: m.x / m.n,
+		Step: logitStep(m.x, m.n), Monotone: true}.Limits(a)
 }
 
 // logitStep is about one standard error of a proportion on the logit scale,

@@ -54,8 +54,8 @@ func (m poissonRate) Test(c float64) Test {
 // chi-square quantiles of Garwood without their loss for small errors.
 func (m poissonRate) Limits(a float64) (low, high float64) {
 	test := func(mu float64) Test { return poissonRate{m.x, 1, m.mid}.Test(mu) }
-	low, high = inversion{Test: test, Scale: record.Log, Low: 0, High: math.Inf(1),
-		Start: m.x, Step: 1 / math.Sqrt(m.x+0.5), Monotone: true}.limits(a)
+	low, high = Inversion{Test: test, Scale: record.Log, Low: 0, High: math.Inf(1),
+		Start: m.x, Step: 1 / math.Sqrt(m.x+0.5), Monotone: true}.Limits(a)
 	return low / m.e, high / m.e
 }
 

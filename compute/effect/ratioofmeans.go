@@ -37,10 +37,10 @@ func (f Fieller) Test(c float64) Test {
 // Limits implements Method by inversion: the degrees of freedom change with
 // c, so there is no closed form.
 func (f Fieller) Limits(a float64) (low, high float64) {
-	return inversion{
+	return Inversion{
 		Test: f.Test, Scale: record.Log, Low: 0, High: math.Inf(1),
 		Start: f.M1 / f.M2, Step: math.Sqrt(f.relative()),
-	}.limits(a)
+	}.Limits(a)
 }
 
 // relative is the variance of the log ratio by the delta method.

@@ -54,7 +54,7 @@ func (m oddsExact) Test(c float64) Test {
 // Limits implements Method. Each side is searched with its own tail only.
 func (m oddsExact) Limits(a float64) (low, high float64) {
 	if m.mid {
-		return oddsRatio.invertTable(m.t, m.Test, true).limits(a)
+		return oddsRatio.invertTable(m.t, m.Test, true).Limits(a)
 	}
 	up := func(c float64) Test { return Test{Up: conditionalUpper(m.t, m.t.x1, c)} }
 	down := func(c float64) Test { return Test{Down: conditionalLower(m.t, m.t.x1, c)} }

@@ -17,13 +17,13 @@ func (m scoreMethod) Test(c float64) Test { return normalTest(m.kind.score(m.t, 
 
 // Limits implements Method.
 func (m scoreMethod) Limits(a float64) (low, high float64) {
-	return m.kind.invertTable(m.t, m.Test, true).limits(a)
+	return m.kind.invertTable(m.t, m.Test, true).Limits(a)
 }
 
 // invertTable prepares the search for the limits of a test of a table.
-func (k contrast) invertTable(t table, test func(c float64) Test, monotone bool) inversion {
+func (k contrast) invertTable(t table, test func(c float64) Test, monotone bool) Inversion {
 	est, _ := k.estimate(t)
-	v := inversion{Test: test, Scale: k.scale(), Low: k.low(), High: k.high(), Start: est, Monotone: monotone}
+	v := Inversion{Test: test, Scale: k.scale(), Low: k.low(), High: k.high(), Start: est, Monotone: monotone}
 	// The step is a standard error with half an event added to every cell.
 	u := table{t.x1 + 0.5, t.n1 + 1, t.x2 + 0.5, t.n2 + 1}
 	if s, ok := k.variance(u); ok {

@@ -44,8 +44,8 @@ func (m rateDifference) Test(c float64) Test { return normalTest(rateDifferenceZ
 func (m rateDifference) Limits(a float64) (low, high float64) {
 	t := m.t
 	step := math.Sqrt((t.x1+0.5)/(t.e1*t.e1) + (t.x2+0.5)/(t.e2*t.e2))
-	return inversion{Test: m.Test, Scale: record.Identity, Low: math.Inf(-1), High: math.Inf(1),
-		Start: t.x1/t.e1 - t.x2/t.e2, Step: step, Monotone: true}.limits(a)
+	return Inversion{Test: m.Test, Scale: record.Identity, Low: math.Inf(-1), High: math.Inf(1),
+		Start: t.x1/t.e1 - t.x2/t.e2, Step: step, Monotone: true}.Limits(a)
 }
 
 // rateRatio is a method for the ratio of two rates. Given all n events, those
@@ -113,8 +113,8 @@ func (m rateRatio) Limits(a float64) (low, high float64) {
 		return p / q * scale, v / u * scale
 	case ratioMidP:
 		unit := rateRatio{twoRates{x1, 1, x2, 1}, m.kind}
-		low, high = inversion{Test: unit.Test, Scale: record.Log, Low: 0, High: inf, Start: x1 / x2,
-			Step: math.Sqrt(1/(x1+0.5) + 1/(x2+0.5)), Monotone: true}.limits(a)
+		low, high = Inversion{Test: unit.Test, Scale: record.Log, Low: 0, High: inf, Start: x1 / x2,
+			Step: math.Sqrt(1/(x1+0.5) + 1/(x2+0.5)), Monotone: true}.Limits(a)
 		return low * scale, high * scale
 	}
 	panic("effect: unknown method of the rate ratio")
