@@ -231,11 +231,7 @@ func noteText(n result.Note) string {
 			b.WriteByte('%')
 		case arg >= len(n.Args):
 		default:
-			if x, ok := n.Args[arg].(float64); ok {
-				b.WriteString(number.Verb(verb, x))
-			} else {
-				fmt.Fprintf(&b, verb, n.Args[arg])
-			}
+			b.WriteString(argText(verb, n.Args[arg]))
 			arg++
 		}
 	}
@@ -244,3 +240,16 @@ func noteText(n result.Note) string {
 
 // NoteText is a note's message with its arguments.
 func NoteText(n result.Note) string { return noteText(n) }
+
+// argText writes one argument under its verb; as it is where the verb does
+// not suit it.
+func argText(verb string, arg any) string {
+	if x, ok := arg.(float64); ok {
+		return number.Verb(verb, x)
+	}
+	s := fmt.Sprintf(verb, arg)
+	if strings.Contains(s, "%!") {
+		return fmt.Sprint(arg)
+	}
+	return s
+}

@@ -112,11 +112,15 @@ func (a Axis) At(v float64) float64 {
 	case v >= a.Hi:
 		return 1
 	}
+	p := (v/2 - a.Lo/2) / (a.Hi/2 - a.Lo/2)
 	if a.Log {
 		lo := math.Log(a.Lo)
-		return (math.Log(v) - lo) / (math.Log(a.Hi) - lo)
+		p = (math.Log(v) - lo) / (math.Log(a.Hi) - lo)
 	}
-	return (v/2 - a.Lo/2) / (a.Hi/2 - a.Lo/2)
+	if !(p >= 0) { // an axis without a range
+		return 0
+	}
+	return min(p, 1)
 }
 
 // Inside reports whether a value stands on the axis.

@@ -107,11 +107,13 @@ type MarginStep struct {
 func (d MarginStep) Draw() *page.Drawing {
 	c := &canvas{w: Width, h: 152}
 	f := frame{x0: edge + 34, x1: Width - edge - 10, y0: 18, y1: 118}
-	top := d.Alpha * 4
-	for _, p := range d.P {
-		top = math.Max(top, p)
+	top := 1e-6
+	for _, p := range append([]float64{d.Alpha * 4}, d.P...) {
+		if p > top {
+			top = p
+		}
 	}
-	up := Axis{Lo: 0, Hi: math.Min(1, math.Max(top*1.05, 1e-6))}
+	up := Axis{Lo: 0, Hi: math.Min(1, top*1.05)}
 	if d.Stated.OK && d.Axis.Inside(d.Stated.V) {
 		x := f.x(d.Axis, d.Stated.V)
 		c.line(x, f.y0, x, f.y1, stroke(page.Slate, 0.8))
@@ -174,9 +176,12 @@ func (d Beliefs) Draw() *page.Drawing {
 			s = dashed(page.Slate, 1.2)
 		}
 		c.steps(f, d.Axis, up, h.X, h.H, s)
-		c.line(at, 10, at+18, 10, s)
-		c.label(at+22, 12.5, h.Name, smallSize, page.Black, page.Start, false)
-		at += 34 + textWidth(h.Name, smallSize)
+		name := fitText(h.Name, smallSize, 110)
+		if at+22+textWidth(name, smallSize) <= Width-edge {
+			c.line(at, 10, at+18, 10, s)
+			c.label(at+22, 12.5, name, smallSize, page.Black, page.Start, false)
+		}
+		at += 34 + textWidth(name, smallSize)
 	}
 	c.bottomAxis(f, d.Axis)
 	c.axisTitle(f, d.Axis, f.y1+24)

@@ -52,9 +52,12 @@ func (d Survival) Draw() *page.Drawing {
 			py := f.y1 - up.At(shareAt(g, t))*(f.y1-f.y0)
 			c.line(f.x(ax, t), py-2.5, f.x(ax, t), py+2.5, stroke(page.Black, 0.7))
 		}
-		c.line(at, 8, at+20, 8, s)
-		c.label(at+24, 10.5, g.Name, labelSize, page.Black, page.Start, false)
-		at += 40 + textWidth(g.Name, labelSize)
+		name := fitText(g.Name, labelSize, 110)
+		if at+24+textWidth(name, labelSize) <= Width-edge { // the table of numbers at risk names every group
+			c.line(at, 8, at+20, 8, s)
+			c.label(at+24, 10.5, name, labelSize, page.Black, page.Start, false)
+		}
+		at += 40 + textWidth(name, labelSize)
 	}
 	c.axisTitle(f, ax, f.y1+24)
 	c.atRisk(f, ax, d)
