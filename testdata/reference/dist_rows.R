@@ -1,7 +1,7 @@
 # Writes the R rows of dist.json: Rscript dist_rows.R > rows_r.json
 # Base R only. Values are printed with 17 digits; what R itself keeps is said
 # per group ("digits") where that is less.
-num <- function(x) ifelse(is.finite(x), formatC(x, digits = 17, format = "g"), paste0("\"", x, "\""))
+num <- function(x) trimws(formatC(x, digits = 17, format = "g", width = 1))
 first <- TRUE
 group <- function(fn, call, digits, args, values) {
   if (!first) cat(",\n")

@@ -371,13 +371,14 @@ def correlation():
                 return mp.exp(c + (n_ - 2) / 2 * mp.log(1 - q ** 2) - (n_ - mpf(3) / 2) * mp.log(1 - rh * q)) \
                     * mp.hyp2f1(0.5, 0.5, n_ - mpf(1) / 2, (1 + rh * q) / 2)
             def far(sign):
-                # panels one standard deviation wide, outward from z0, until
-                # past the peak and small
-                w = 1 / mp.sqrt(n_)
+                # widening panels, the first over a fall of about e^2,
+                # outward from z0 until past the peak and small
+                w = 2 / (mp.sqrt(n_) + n_ * mp.tanh(abs(z0 - zeta)))
                 total, a, best = mpf(0), z0, mpf(0)
                 while True:
                     b = a + sign * w
-                    part = mp.quad(dens, [a, b], method="gauss-legendre", maxdegree=4) * sign
+                    part = mp.quad(dens, [a, b], method="gauss-legendre", maxdegree=5) * sign
+                    w = min(w * 1.25, 1 / mp.sqrt(n_))
                     total += part
                     best = max(best, part)
                     if part < best * mpf(10) ** -28 and (b - zeta) * sign > 0:
@@ -406,15 +407,12 @@ def bivariate():
 
 
 def special():
-    group("Ei", "ei(t)", [row([t], value=mp.ei(mpf(t))) for t in [1e-8, 0.1, 0.372507410781367, 1, 5, 20, 39.99, 40, 41, 60, 200, 700]])
+    group("Ei", "ei(t)", [row([t], value=mp.ei(mpf(t))) for t in [1e-8, 0.1, 0.5, 1, 5, 20, 39.99, 40, 41, 60, 200, 700]])
 
 
 def ranks():
     def counts(n, m):
         """number of m-subsets of 1..n+m by rank sum less its minimum"""
-        f = [[0] * (n * m + 1) for _ in range(m + 1)]
-        # partitions of u into at most m parts of at most n
-        table = {(0,): 1}
         g = [1] + [0] * (n * m)
         for i in range(1, m + 1):
             for u in range(n * m, n + i - 1, -1):
