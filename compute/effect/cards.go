@@ -2,7 +2,6 @@ package effect
 
 import (
 	"slices"
-
 )
 
 // Cards explains the measures and methods of this package and the problems

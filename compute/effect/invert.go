@@ -11,7 +11,7 @@ import (
 // Inversion makes limits from a test: where and how to look for them.
 type Inversion struct {
 	Test  func(c float64) Test // both one-sided p-values at any c of the range
-	Scale record.Scale // coordinate of the search
+	Scale record.Scale         // coordinate of the search
 	// Low and High are the ends of the effect's range.
 	Low, High float64
 	// Start is where the search starts: the estimate, on the effect's scale.
