@@ -1,8 +1,11 @@
 package compute
 
 import (
+	"slices"
+
 	"steelyard/compute/claim"
 	"steelyard/compute/result"
+	"steelyard/protocol/record"
 )
 
 // settle turns every trial into its hypothesis: verdict from adjusted
@@ -73,7 +76,34 @@ func (t *trial) fill(r *run, at attempt) {
 	t.out.Curve = claim.Curve(at.inf, t.question, curvePoints(at.inf))
 	low, high := at.inf.Method.Limits((1 - r.level) / 2)
 	t.out.Descriptive = analysisOf(at.spec, at.inf, r.level, low, high)
-	t.out.Assumptions = at.inf.Checks
+	t.out.Assumptions = named(at.inf.Checks, at.spec.outcome)
+	t.out.WhatNext = t.next(at)
+}
+
+// next works out what would settle a claim that is open.
+func (t *trial) next(at attempt) *result.WhatNext {
+	if t.out.Verdict != result.Open {
+		return nil
+	}
+	return claim.Next(at.inf, t.question, at.a)
+}
+
+// named puts the record's names in the place of "first" and "second".
+func named(checks []result.Check, o *record.Outcome) []result.Check {
+	names := map[string]string{"first": "first", "second": "second"}
+	if len(o.Groups.V) == 2 {
+		names["first"], names["second"] = o.Groups.V[0].V, o.Groups.V[1].V
+	}
+	out := make([]result.Check, len(checks))
+	for i, c := range checks {
+		out[i] = result.Check{Assumption: c.Assumption, Shows: slices.Clone(c.Shows)}
+		for j := range out[i].Shows {
+			if name, ok := names[out[i].Shows[j].Group]; ok {
+				out[i].Shows[j].Group = name
+			}
+		}
+	}
+	return out
 }
 
 // postHoc reports whether the verdicts carry the words "post hoc": anything

@@ -78,9 +78,10 @@ func (m conformingBoth) up(c float64) float64 {
 	short := dist.ChiSquareUpper(nu*v0*v0, nu).Q
 	root := math.Sqrt(m.N)
 	ln0 := math.Log(nu)/2 - math.Log(math.Pi)/2 - stirlingRest(nu/2)
+	zq := dist.NormalQuantile(q)
 	f := func(v float64) float64 {
-		d := spare(m.Half*v, q)
-		inside := dist.NormalUpper((m.left.K*v-d)*root).P + dist.NormalUpper((m.right.K*v-d)*root).P
+		d := spare(m.Half*v, q, zq)
+		inside := upper((m.left.K*v-d)*root) + upper((m.right.K*v-d)*root)
 		h := v*v - 1
 		return inside * math.Exp(ln0-math.Log(v)+nu*(math.Log1p(h)-h)/2)
 	}
@@ -107,18 +108,20 @@ func (m conformingBoth) breaks(v0, nu float64) []float64 {
 }
 
 // spare is d <= a with P(Z > d) + P(Z > 2a-d) = q: how near to a limit, in
-// standard deviations, the mean may come when the limits are 2a apart.
-func spare(a, q float64) float64 {
-	d := dist.NormalQuantile(q)
-	if far := 2*a - d; far > 0 && dist.NormalUpper(far).P < 1e-17*q {
-		return d // the far side weighs nothing
+// standard deviations, the mean may come when the limits are 2a apart. zq is
+// the normal deviate of q, where the search starts.
+func spare(a, q, zq float64) float64 {
+	if far := 2*a - zq; far > 0 && upper(far) < 1e-17*q {
+		return zq // the far side weighs nothing
 	}
-	lo, hi := d, a // the far side only asks for more distance
-	if d > a {
+	if zq > a {
 		return a
 	}
-	for range 100 {
-		out := dist.NormalUpper(d).P + dist.NormalUpper(2*a-d).P - q
+	lo, hi := zq, a // the far side only asks for more distance
+	// Near the middle the share falls with the square of the distance from it.
+	d := math.Max(zq, a-math.Sqrt(math.Max(0, q-2*upper(a))/(a*density(a))))
+	for range 60 {
+		out := upper(d) + upper(2*a-d) - q
 		if out > 0 {
 			lo = d
 		} else {
@@ -128,13 +131,16 @@ func spare(a, q float64) float64 {
 		if !(next > lo && next < hi) {
 			next = (lo + hi) / 2
 		}
-		if math.Abs(next-d) <= 1e-15*(1+math.Abs(d)) {
+		if math.Abs(next-d) <= 1e-14*(1+math.Abs(d)) {
 			return next
 		}
 		d = next
 	}
 	return d
 }
+
+// upper is P(Z > z) alone, for integrands.
+func upper(z float64) float64 { return math.Erfc(z/math.Sqrt2) / 2 }
 
 func density(z float64) float64 { return math.Exp(-z*z/2) / math.Sqrt(2*math.Pi) }
 
