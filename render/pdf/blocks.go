@@ -14,7 +14,7 @@ type setter struct {
 	cuts  [faceCount]*cut
 
 	root    *elem
-	titled  bool // the document has a title heading, so sections are one level down
+	titled  bool    // the document has a title heading, so sections are one level down
 	column  float64 // widest line of running text; tables and figures use the whole measure
 	places  []place
 	anchors map[string]int // into places

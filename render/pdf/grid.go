@@ -87,7 +87,12 @@ func share(w, whole, word []float64, room float64, cost func([]float64) float64)
 	try, best := make([]float64, len(w)), math.Inf(1)
 	for n := 0; ; n++ {
 		depth := lines(whole, stiff, room)
-		if depth > 1e3 {
+		if math.IsInf(depth, 1) {
+			if n == 0 { // the widest words have no room to spare
+				for i := range w {
+					w[i] = word[i] * room / least
+				}
+			}
 			return
 		}
 		total := 0.0
@@ -127,7 +132,7 @@ func cost(rows [][]cell) func(w []float64) float64 {
 }
 
 // lines is the smallest depth at which columns no narrower than least have
-// room together; large when they have none at any.
+// room together; infinite when they have none at any.
 func lines(whole, least []float64, room float64) float64 {
 	need := func(depth float64) float64 {
 		sum := 0.0
@@ -136,12 +141,12 @@ func lines(whole, least []float64, room float64) float64 {
 		}
 		return sum
 	}
-	lo, hi := 1.0, 64.0
+	lo, hi := 1.0, 1e6
 	if need(hi) > room {
-		return 1e6
+		return math.Inf(1)
 	}
-	for range 24 {
-		if m := (lo + hi) / 2; need(m) > room {
+	for range 40 {
+		if m := math.Sqrt(lo * hi); need(m) > room {
 			lo = m
 		} else {
 			hi = m

@@ -55,11 +55,20 @@ func TestHeadingStaysWithText(t *testing.T) {
 }
 
 func TestNothingRunsOffThePage(t *testing.T) {
-	docs := map[string]*page.Document{"sample": sample(), "letter": sample(), "long word": paragraph(strings.Repeat("x", 4000)), "wide table": wideTable(), "tall figure": tall()}
+	docs := map[string]*page.Document{"sample": sample(), "letter": sample(), "long word": paragraph(strings.Repeat("x", 4000)), "wide table": wideTable(), "tall figure": tall(),
+		"long facts": {Paper: "a4", Blocks: []page.Block{page.Facts{Columns: 2, Items: []page.Fact{{Label: "Why", Value: page.T(words(1500))}, {Label: words(30), Value: page.T("short")}}}}},
+		"long cell": {Paper: "letter", Blocks: []page.Block{page.Paragraph{Text: page.T("before")}, page.Table{Head: [][]page.Inline{page.T("a"), page.T("b")},
+			Rows: []page.Row{{Cells: [][]page.Inline{page.T("x"), page.T(words(3000))}}, {Cells: [][]page.Inline{page.T("y"), page.T("z")}}}}}},
+		"long title": {Paper: "a4", Blocks: []page.Block{page.Heading{Level: 0, Text: page.T(words(400))}, page.Paragraph{Text: page.T("after")}}},
+	}
 	docs["letter"].Paper = "letter"
 	for name, doc := range docs {
 		s := newSetter(doc)
 		sh := s.sheet
+		all := strings.Join(onPages(doc), "")
+		if n := strings.Count(all, "word and "); name == "long cell" && n < 2999 || name == "long facts" && n < 1528 || name == "long title" && n < 399 {
+			t.Errorf("%s: %d words are left", name, n)
+		}
 		for n, l := range paginate(s.flow(), sh) {
 			for i, p := range l.pieces {
 				if l.tops[i] < sh.top-0.01 || l.tops[i]+p.height > sh.height-sh.bottom+0.5 {
@@ -272,5 +281,28 @@ func FuzzText(f *testing.F) {
 		if _, err := Read(b); err != nil {
 			t.Error(err)
 		}
+	})
+}
+
+// A face of any bytes is opened or refused, and what is opened can be cut.
+func FuzzFace(f *testing.F) {
+	good := faceBytes(mono)
+	f.Add(good[:2000], "A")
+	f.Add([]byte("\x00\x01\x00\x00\x00\x01"), "x")
+	f.Fuzz(func(t *testing.T, data []byte, text string) {
+		face, err := openFace(data)
+		if err != nil {
+			return
+		}
+		c := newCut(face, "x")
+		for _, r := range text {
+			if g := face.gid(r); g != 0 {
+				c.use(g, r)
+				face.advance(g)
+				face.extent(g)
+			}
+		}
+		c.sfnt()
+		c.widths()
 	})
 }

@@ -55,6 +55,15 @@ func paginate(ps []piece, sh sheet) []leaf {
 			if len(cur.pieces) > 0 && y+p.before+p.height > limit {
 				turn()
 			}
+			for p.height > limit-sh.top-p.repeated() { // taller than any page
+				var head piece
+				if head, p = p.cut(limit - y); len(head.items) == 0 {
+					p.height = limit - sh.top - p.repeated() // only space is too much
+					break
+				}
+				place(head)
+				turn()
+			}
 			place(p)
 		}
 		i = j + 1
@@ -63,4 +72,40 @@ func paginate(ps []piece, sh sheet) []leaf {
 		turn()
 	}
 	return out
+}
+
+// repeated is the height of the head that is drawn again above the piece.
+func (p piece) repeated() float64 {
+	if p.again == nil {
+		return 0
+	}
+	return p.again.height
+}
+
+// cut divides a piece that no page can hold between two lines of its text.
+// The head is empty when the piece holds no two lines.
+func (p piece) cut(room float64) (head, rest piece) {
+	room -= p.repeated()
+	top := 0.0 // of the first line that goes on the next page
+	for _, it := range p.items {
+		if t := it.y - it.size; it.kind == textItem && it.y > room-4 && (top == 0 || t < top) {
+			top = t
+		}
+	}
+	if top <= 0 {
+		return piece{}, p
+	}
+	head, rest = p, p
+	head.items, rest.items = nil, nil
+	head.keep, rest.fresh, rest.before = false, false, 0
+	for _, it := range p.items {
+		if it.kind == textItem && it.y > room-4 || it.kind != textItem && it.y > top {
+			it.y -= top - 2
+			rest.items = append(rest.items, it)
+		} else {
+			head.items = append(head.items, it)
+		}
+	}
+	head.height, rest.height = min(top, room), p.height-top+2
+	return head, rest
 }
