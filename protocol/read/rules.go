@@ -19,6 +19,8 @@ type checker struct {
 	sets       map[string]*record.Set
 	estimands  map[string]*record.Estimand
 	seen       map[string]map[string]bool // outcome → studies with results
+	member     map[string]string          // hypothesis → its family
+	guesses    int                        // nearest names sought in long lists
 }
 
 // rules checks what no single key can tell.
@@ -31,6 +33,14 @@ func rules(rec *record.Record, damaged bool) diag.List {
 		sets:       byName(rec.Plan.Sets, func(s *record.Set) string { return s.Name }),
 		estimands:  byName(rec.Plan.Estimands, func(e *record.Estimand) string { return e.Name }),
 		seen:       map[string]map[string]bool{},
+		member:     map[string]string{},
+	}
+	for _, f := range rec.Plan.Families {
+		for _, s := range f.Members.V {
+			if c.member[s.V] == "" {
+				c.member[s.V] = f.Name
+			}
+		}
 	}
 	for _, r := range rec.Results {
 		if r.Study.Stated && r.Outcome.Stated && !r.LeaveOut.Stated {
@@ -85,14 +95,18 @@ func known[T any](c *checker, v record.String, what string, table map[string]*T)
 	if c.damaged {
 		return nil
 	}
+	d := diag.Error("R301", v.Span, "there is no %s %s", what, quoteShort(v.V))
+	if len(table) > longList && c.guesses > mostGuesses {
+		c.add(d)
+		return nil
+	}
 	names := make([]string, 0, len(table))
 	for _, name := range sortedNames(table) {
 		if name != "" {
 			names = append(names, name)
 		}
 	}
-	d := diag.Error("R301", v.Span, "there is no %s %s", what, quoteShort(v.V))
-	switch near := nearest(v.V, names); {
+	switch near := c.near(v.V, names); {
 	case near != "":
 		d = d.WithHelp("did you mean %q?", near)
 	case len(names) == 0:
@@ -102,6 +116,22 @@ func known[T any](c *checker, v record.String, what string, table map[string]*T)
 	}
 	c.add(d)
 	return nil
+}
+
+// Bounds of the search for nearest names.
+const (
+	longList    = 100 // names
+	mostGuesses = 20  // searches through lists that are longer
+)
+
+// near is nearest, which gives up after some long lists.
+func (c *checker) near(written string, names []string) string {
+	if len(names) > longList {
+		if c.guesses++; c.guesses > mostGuesses {
+			return ""
+		}
+	}
+	return nearest(written, names)
 }
 
 func sortedNames[T any](m map[string]*T) []string {

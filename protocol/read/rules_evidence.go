@@ -13,7 +13,7 @@ func (c *checker) outcomeName(name string, at diag.Span, table string) *record.O
 		return o
 	}
 	d := diag.Error("R301", at, "[plan.%s.%s] is named after no outcome of the plan", table, name)
-	if near := nearest(name, sortedNames(c.outcomes)); near != "" {
+	if near := c.near(name, sortedNames(c.outcomes)); near != "" {
 		d = d.WithHelp("did you mean [plan.%s.%s]?", table, near)
 	}
 	c.add(d)

@@ -68,19 +68,29 @@ func (c *checker) order(f *record.Family) {
 	}
 	c.twice(f.Order)
 	var missing []string
+	ordered, members := setOf(f.Order), setOf(f.Members)
+	help := "members: " + words(record.Texts(f.Members))
 	for _, s := range distinct(f.Members) {
-		if !record.Lists(f.Order, s.V) {
+		if !ordered[s.V] {
 			missing = append(missing, s.V)
 		}
 	}
 	for _, s := range distinct(f.Order) {
-		if !record.Lists(f.Members, s.V) {
-			c.add(diag.Error("R320", s.Span, "%s is no member of this family", quoteShort(s.V)).WithHelp("members: %s", words(record.Texts(f.Members))))
+		if !members[s.V] {
+			c.add(diag.Error("R320", s.Span, "%s is no member of this family", quoteShort(s.V)).WithHelp("%s", help))
 		}
 	}
 	if len(missing) > 0 {
 		c.add(diag.Error("R320", f.Order.Span, "`order` leaves out %s", words(missing)).WithHelp("name every member once"))
 	}
+}
+
+func setOf(list record.Strings) map[string]bool {
+	m := make(map[string]bool, len(list.V))
+	for _, s := range list.V {
+		m[s.V] = true
+	}
+	return m
 }
 
 func (c *checker) weights(f *record.Family) {

@@ -169,7 +169,7 @@ func (c *checker) corrected(ref *record.ResultRef) {
 		studies = append(studies, r.Study.V)
 	}
 	d := diag.Error("R501", ref.Study.Span, "no entry is of the study %s and the outcome %q", quoteShort(ref.Study.V), ref.Outcome.V)
-	if near := nearest(ref.Study.V, studies); near != "" && near != ref.Study.V {
+	if near := c.near(ref.Study.V, studies); near != "" && near != ref.Study.V {
 		d = d.WithHelp("did you mean %q?", near)
 	} else {
 		d = d.WithHelp("name study, outcome, and set and look where the entry has them")

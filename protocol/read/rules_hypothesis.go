@@ -229,10 +229,13 @@ func (c *checker) covariates(h *record.Hypothesis, o *record.Outcome) {
 
 // evidence demands a word on several studies.
 func (c *checker) evidence(h *record.Hypothesis, claim *record.Claim, o *record.Outcome) {
-	studies := 0
-	for study := range c.seen[o.Name] {
-		if h.Counts(study) {
-			studies++
+	studies := len(c.seen[o.Name])
+	if h.Studies.Stated {
+		studies = 0
+		for _, s := range distinct(h.Studies) {
+			if c.seen[o.Name][s.V] {
+				studies++
+			}
 		}
 	}
 	if absent(h.Evidence) && studies > 1 {
@@ -272,7 +275,7 @@ func (c *checker) unprotected() {
 	var first *record.Hypothesis
 	for _, h := range c.rec.Plan.Hypotheses {
 		claim := record.ClaimOf(h.Claim.V)
-		if claim == nil || !h.Claim.Stated || !claim.Judged || h.Role.V != "primary" || c.rec.FamilyOf(h.Name) != nil {
+		if claim == nil || !h.Claim.Stated || !claim.Judged || h.Role.V != "primary" || c.member[h.Name] != "" {
 			continue
 		}
 		if other := exclusive(claim.Word); other != "" && h.Outcome.Stated {

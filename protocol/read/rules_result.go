@@ -69,7 +69,7 @@ func (c *checker) studies() {
 			if names[s.V] || c.damaged {
 				continue
 			}
-			if near := nearest(s.V, all); near != "" {
+			if near := c.near(s.V, all); near != "" {
 				c.add(diag.Warning("R420", s.Span, "no entry is of the study %s", quoteShort(s.V)).WithHelp("did you mean %q?", near))
 			}
 		}

@@ -119,6 +119,31 @@ func TestLargeAndHostile(t *testing.T) {
 	}
 }
 
+// TestManyNames checks that long lists of names are checked soon.
+func TestManyNames(t *testing.T) {
+	base, err := os.ReadFile("testdata/base.toml")
+	if err != nil {
+		t.Fatal(err)
+	}
+	list := func(prefix string, n int) string {
+		var b strings.Builder
+		for i := range n {
+			b.WriteString("\"" + prefix + record.FormatNumber(float64(i)) + "\", ")
+		}
+		return "[" + b.String() + "]"
+	}
+	const n = 30000
+	var b strings.Builder
+	b.WriteString(strings.Replace(string(base), "claim   = \"equivalent\"", "claim   = \"equivalent\"\nstudies = "+list("T", n), 1))
+	b.WriteString("[plan.family.F]\nprocedure = \"fallback\"\nmembers = " + list("M", n) + "\norder = " + list("O", n) + "\nweights = [1]\n")
+	for i := range n {
+		b.WriteString("[plan.hypothesis.H" + record.FormatNumber(float64(i+2)) + "]\noutcome = \"pael\"\nclaim = \"differs\"\n")
+	}
+	if _, got := readText(b.String(), true); len(got) != maxDiagnostics+1 {
+		t.Errorf("%d diagnostics", len(got))
+	}
+}
+
 func manyKeys(n int) string {
 	var b strings.Builder
 	for i := range n {
