@@ -1,6 +1,7 @@
 package render
 
 import (
+	"slices"
 	"strings"
 
 	"steelyard/compute/result"
@@ -207,17 +208,58 @@ func unitTail(v voice) string {
 
 // assumptions prints what the data show of each assumption.
 func (c *composer) assumptions(h *result.Hypothesis) {
-	t := newTable("Assumptions looked at", "Assumption", "Group", "What the data show", "#Value")
+	groups := groupsShown(h.Assumptions)
+	heads := []string{"Assumption", "What the data show"}
+	for _, g := range groups {
+		if g == "" {
+			g = "value"
+		}
+		heads = append(heads, "#"+capital(g))
+	}
+	t := newTable("Assumptions looked at", heads...)
 	for _, a := range h.Assumptions {
+		name := strings.ReplaceAll(a.Assumption, "-", " ")
+		done := map[string]bool{}
 		for _, s := range a.Shows {
-			t.row(strings.ReplaceAll(a.Assumption, "-", " "), s.Group, s.What, number.Significant(s.Value, 3))
+			if done[s.What] {
+				continue
+			}
+			done[s.What] = true
+			cells := []string{name, s.What}
+			for _, g := range groups {
+				cells = append(cells, shownFor(a.Shows, s.What, g))
+			}
+			t.row(cells...)
 		}
 		if len(a.Shows) == 0 {
-			t.row(strings.ReplaceAll(a.Assumption, "-", " "), "", "cannot be looked at from these numbers", "")
+			t.row(name, "cannot be looked at from these numbers")
 		}
 	}
 	t.note("Shown for judgement; the method was chosen by the plan and not by these numbers.")
 	t.to(c)
+}
+
+// groupsShown lists the groups of which something is shown, in order.
+func groupsShown(checks []result.Check) []string {
+	var out []string
+	for _, a := range checks {
+		for _, s := range a.Shows {
+			if !slices.Contains(out, s.Group) {
+				out = append(out, s.Group)
+			}
+		}
+	}
+	return out
+}
+
+// shownFor is one number about one group, "" where there is none.
+func shownFor(shows []result.Shown, what, group string) string {
+	for _, s := range shows {
+		if s.What == what && s.Group == group {
+			return number.Short(s.Value, 3)
+		}
+	}
+	return ""
 }
 
 // notes prints what the computation had to say.

@@ -1,6 +1,8 @@
 package render
 
 import (
+	"strings"
+
 	"steelyard/compute/result"
 	"steelyard/render/number"
 )
@@ -14,6 +16,7 @@ func (c *composer) arrived() {
 	c.studyTables()
 	if !c.res.Masked {
 		c.groupTable()
+		c.groupFigures()
 		c.flowTable()
 		c.survivalFigures()
 	} else {
@@ -150,8 +153,10 @@ func bareText(b *result.BareP) string {
 // sourcesNote lists where results are written down.
 func (c *composer) sourcesNote() string {
 	var s string
+	seen := map[string]bool{}
 	for _, st := range c.res.Studies {
-		if st.Source != "" {
+		if key := st.Study + "\x00" + st.Source; st.Source != "" && !seen[key] {
+			seen[key] = true
 			s += st.Study + ": " + fullStop(st.Source) + " "
 		}
 	}
@@ -163,7 +168,7 @@ func (c *composer) sourcesNote() string {
 
 // groupTable prints the numbers of each group as the entry gave them.
 func (c *composer) groupTable() {
-	t := newTable("The numbers by group", "Study", "Outcome", "Group", ">n", "#Mean", "#SD", "#Median", ">Events", ">Exposure", "#r", ">Missing")
+	t := newTable("The numbers by group", "Study", "Outcome", "Set", "Group", ">n", "#Mean", "#SD", "#Median", ">Events", ">Exposure", "#r", ">Missing")
 	for i := range c.res.Studies {
 		s := &c.res.Studies[i]
 		if s.Use == result.MaskedUse {
@@ -175,7 +180,7 @@ func (c *composer) groupTable() {
 			if g.Missing > 0 {
 				missing = number.Int(g.Missing)
 			}
-			row := t.row(s.Study, o.Label, g.Name, number.CountOpt(g.N), spreadText(o, g.Mean, g.SD), spreadText(o, g.SD, g.SD),
+			row := t.row(s.Study, o.Label, s.Set, g.Name, number.CountOpt(g.N), spreadText(o, g.Mean, g.SD), spreadText(o, g.SD, g.SD),
 				spreadText(o, g.Median, g.SD), number.CountOpt(g.Events), plainOpt(g.Exposure), number.SignificantOpt(g.R, 3), missing)
 			row.Grey = s.Use != result.Analysed
 		}
@@ -207,14 +212,19 @@ func plainOpt(o result.Opt) string {
 // analysed.
 func (c *composer) flowTable() {
 	t := newTable("Flow", "Study", "Group", ">Assessed", ">Randomised", ">Received", ">Lost", ">Analysed")
+	seen := map[string]bool{}
 	for i := range c.res.Studies {
 		s := &c.res.Studies[i]
 		for _, g := range s.Groups {
 			if !g.Assessed.OK && !g.Randomised.OK && !g.Received.OK && !g.Lost.OK && !g.Analysed.OK {
 				continue
 			}
-			t.row(s.Study, g.Name, number.CountOpt(g.Assessed), number.CountOpt(g.Randomised), number.CountOpt(g.Received),
-				number.CountOpt(g.Lost), number.CountOpt(g.Analysed))
+			cells := []string{s.Study, g.Name, number.CountOpt(g.Assessed), number.CountOpt(g.Randomised), number.CountOpt(g.Received),
+				number.CountOpt(g.Lost), number.CountOpt(g.Analysed)}
+			if key := strings.Join(cells, "\x00"); !seen[key] { // one entry serves several sets
+				seen[key] = true
+				t.row(cells...)
+			}
 		}
 	}
 	t.to(c)
@@ -246,9 +256,9 @@ func (c *composer) totalsTable() {
 
 // fileTable prints data files with digests and dropped rows by reason.
 func (c *composer) fileTable() {
-	t := newTable("Data files", "File", "Set", ">Rows", ">Used", "Dropped")
+	t := newTable("Data files", "File", "Outcome", "Set", ">Rows", ">Used", "Dropped")
 	for _, f := range c.res.Files {
-		t.row(f.Path, f.Set, number.Int(f.Rows), number.Int(f.Used), droppedText(f.Dropped))
+		t.row(f.Path, outcomeLabel(c.res, f.Outcome), f.Set, number.Int(f.Rows), number.Int(f.Used), droppedText(f.Dropped))
 	}
 	t.to(c)
 	var fs facts
@@ -260,6 +270,14 @@ func (c *composer) fileTable() {
 		}
 	}
 	fs.to(c, 1)
+}
+
+// outcomeLabel is an outcome's label, "" for no outcome.
+func outcomeLabel(res *result.Result, name string) string {
+	if name == "" {
+		return ""
+	}
+	return outcomeOf(res, name).Label
 }
 
 // droppedText counts rows by reason and group.

@@ -133,7 +133,9 @@ func (t *table) to(c *composer) {
 		return
 	}
 	t.dropEmpty()
-	c.add(t.Table)
+	if len(t.Columns) > 0 {
+		c.add(t.Table)
+	}
 }
 
 // list gathers items.

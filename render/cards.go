@@ -3,11 +3,12 @@ package render
 import (
 	"slices"
 
+	"steelyard/compute/effect"
 	"steelyard/protocol/card"
 )
 
 // methodCards joins the cards of the packages whose methods a record can use.
-func methodCards() []card.Card { return nil }
+func methodCards() []card.Card { return effect.Cards }
 
 // findCard finds the card of a used word; nil when there is none. A method's
 // card must name the measure or none.

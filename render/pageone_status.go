@@ -70,14 +70,14 @@ func (c *composer) numbers(primary []*result.Hypothesis) string {
 	var parts []string
 	for i := range c.res.Studies {
 		s := &c.res.Studies[i]
-		if s.Outcome != primary[0].Outcome || s.Use != result.Analysed {
+		if s.Outcome != primary[0].Outcome || s.Use != result.Analysed || primary[0].Set != "" && s.Set != "" && s.Set != primary[0].Set {
 			continue
 		}
 		for _, g := range s.Groups {
 			if t := groupParts(&g); len(t) > 0 {
-				name := s.Study
-				if g.Name != "" {
-					name += ", " + g.Name
+				name := g.Name
+				if name == "" || len(primary[0].Studies) > 1 {
+					name = strings.TrimSuffix(s.Study+", "+g.Name, ", ")
 				}
 				parts = append(parts, name+": "+strings.Join(t, ", "))
 			}
@@ -354,7 +354,7 @@ func (c *composer) supports(primary []*result.Hypothesis) {
 		yes.to(c)
 	}
 	if len(no.items) > 0 {
-		c.heading(2, "What they do not", "")
+		c.heading(2, "What they do not support", "")
 		no.to(c)
 	}
 }

@@ -9,6 +9,9 @@ import (
 // table prints a table in columns, wrapping cells where it is too wide; rows
 // become labelled blocks where even that does not fit.
 func (p *printer) table(t page.Table, indent int) {
+	if len(t.Head) == 0 {
+		return
+	}
 	if c := plain(t.Caption); c != "" {
 		p.hanging("", c, indent)
 	}

@@ -1,0 +1,69 @@
+package render
+
+import (
+	"steelyard/compute/result"
+	"steelyard/render/chart"
+	"steelyard/render/number"
+)
+
+// groupFigures draws the groups of every outcome whose entries give means or
+// events, one figure an outcome.
+func (c *composer) groupFigures() {
+	for i := range c.res.Outcomes {
+		o := &c.res.Outcomes[i]
+		if d, what := c.groupRows(o); len(d.Rows) > 1 && what != "" {
+			alt := what + " of each group of " + o.Label + "; the table above has the numbers."
+			c.add2(figure(o.Label+": "+what+" by group.", alt, d.Draw(), nil))
+		}
+	}
+}
+
+// groupRows gathers the groups of an outcome; the deciding set only, where
+// entries come in several.
+func (c *composer) groupRows(o *result.Outcome) (d chart.Groups, what string) {
+	set := ""
+	for i := range c.res.Hypotheses {
+		if h := &c.res.Hypotheses[i]; h.Outcome == o.Name && h.Set != "" {
+			set = h.Set
+			break
+		}
+	}
+	var values []float64
+	for i := range c.res.Studies {
+		s := &c.res.Studies[i]
+		if s.Outcome != o.Name || s.Use == result.MaskedUse || s.Set != "" && set != "" && s.Set != set {
+			continue
+		}
+		for _, g := range s.Groups {
+			r := chart.Group{Name: s.Study, Grey: s.Use != result.Analysed}
+			if g.Name != "" {
+				r.Name += ", " + g.Name
+			}
+			switch {
+			case g.Mean.OK:
+				what = "means with one standard deviation to each side"
+				r.Mean, r.SD, r.Text = chart.Point{V: g.Mean.V, OK: true}, g.SD.V, spreadText(o, g.Mean, g.SD)
+				if g.SD.OK {
+					r.Text += " (SD " + spreadText(o, g.SD, g.SD) + ")"
+				}
+				values = append(values, g.Mean.V-g.SD.V, g.Mean.V+g.SD.V)
+			case g.Events.OK && g.N.OK && g.N.V > 0:
+				what = "share with an event"
+				r.Share, r.Text = chart.Point{V: g.Events.V / g.N.V, OK: true}, number.Count(g.Events.V)+" of "+number.Count(g.N.V)
+			default:
+				continue
+			}
+			d.Rows = append(d.Rows, r)
+		}
+	}
+	if len(values) > 0 {
+		d.Axis = chart.NewAxis(false, values...)
+		d.Axis.Title = o.Label
+		if o.Unit != "" {
+			d.Axis.Title += ", " + o.Unit
+		}
+	} else {
+		d.Axis = chart.Axis{Lo: 0, Hi: 1, Title: "Share with an event"}
+	}
+	return d, what
+}
