@@ -88,7 +88,7 @@ func (c *checker) entry(r *record.Result, earlier bool) {
 	}
 	c.look(r)
 	forms := r.Forms()
-	c.setOf(r, forms)
+	c.setOf(r, forms, earlier)
 	switch len(forms) {
 	case 1:
 	case 0:
@@ -132,10 +132,11 @@ func (c *checker) look(r *record.Result) {
 	}
 }
 
-// setOf checks the analysis set of an entry.
-func (c *checker) setOf(r *record.Result, forms []string) {
+// setOf checks the analysis set of an entry. Results from before the plan may
+// have none.
+func (c *checker) setOf(r *record.Result, forms []string, earlier bool) {
 	known(c, r.Set, "analysis set", c.sets)
-	if len(c.sets) == 0 || !absent(r.Set) || len(forms) == 0 || slices.Contains(forms, "data") || c.damaged {
+	if earlier || len(c.sets) == 0 || !absent(r.Set) || len(forms) == 0 || slices.Contains(forms, "data") || c.damaged {
 		return
 	}
 	c.add(diag.Error("R411", r.At, "the plan declares analysis sets, and this summary does not say of which it is").
