@@ -7,71 +7,89 @@ type leaf struct {
 	gaps   []float64 // space above each piece that its bands fill
 }
 
+// binder fills pages one after another.
+type binder struct {
+	sheet sheet
+	out   []leaf
+	cur   leaf
+	y     float64
+}
+
+func (b *binder) limit() float64 { return b.sheet.height - b.sheet.bottom }
+
+func (b *binder) turn() {
+	b.out = append(b.out, b.cur)
+	b.cur, b.y = leaf{}, b.sheet.top
+}
+
+func (b *binder) add(p piece) {
+	gap := p.before
+	if len(b.cur.pieces) == 0 {
+		gap = 0
+	}
+	b.y += gap
+	b.cur.pieces = append(b.cur.pieces, p)
+	b.cur.tops = append(b.cur.tops, b.y)
+	b.cur.gaps = append(b.cur.gaps, gap)
+	b.y += p.height
+}
+
+// place adds a piece, below the head that belongs above it on a new page.
+func (b *binder) place(p piece) {
+	if len(b.cur.pieces) == 0 && p.again != nil {
+		b.add(*p.again)
+		p.before = 0
+	}
+	b.add(p)
+}
+
+// piece places one piece where it fits, divided when no page can hold it.
+func (b *binder) piece(p piece) {
+	if len(b.cur.pieces) > 0 && b.y+p.before+p.height > b.limit() {
+		b.turn()
+	}
+	most := b.limit() - b.sheet.top - p.repeated()
+	for p.height > most {
+		var head piece
+		if head, p = p.cut(b.limit() - b.y); len(head.items) == 0 {
+			p.height = most // only space is too much
+			break
+		}
+		b.place(head)
+		b.turn()
+	}
+	b.place(p)
+}
+
 // paginate puts pieces on pages. Pieces kept together move to the next page
 // as one when they do not fit, unless no page would hold them.
 func paginate(ps []piece, sh sheet) []leaf {
-	var out []leaf
-	cur := leaf{}
-	y, limit := sh.top, sh.height-sh.bottom
-	turn := func() {
-		out = append(out, cur)
-		cur, y = leaf{}, sh.top
-	}
-	add := func(p piece) {
-		gap := p.before
-		if len(cur.pieces) == 0 {
-			gap = 0
-		}
-		y += gap
-		cur.pieces = append(cur.pieces, p)
-		cur.tops = append(cur.tops, y)
-		cur.gaps = append(cur.gaps, gap)
-		y += p.height
-	}
-	place := func(p piece) {
-		if len(cur.pieces) == 0 && p.again != nil {
-			add(*p.again)
-			p.before = 0
-		}
-		add(p)
-	}
+	b := &binder{sheet: sh, y: sh.top}
 	for i := 0; i < len(ps); {
 		j := i
 		for j < len(ps)-1 && ps[j].keep && !ps[j+1].fresh {
 			j++
 		}
 		chain := ps[i : j+1]
-		if chain[0].fresh && len(cur.pieces) > 0 {
-			turn()
+		if chain[0].fresh && len(b.cur.pieces) > 0 {
+			b.turn()
 		}
 		need := height(chain)
-		if len(cur.pieces) == 0 {
+		if len(b.cur.pieces) == 0 {
 			need -= chain[0].before
 		}
-		if y+need > limit && len(cur.pieces) > 0 && need-chain[0].before <= 0.92*(limit-sh.top) {
-			turn()
+		if b.y+need > b.limit() && len(b.cur.pieces) > 0 && need-chain[0].before <= 0.92*sh.depth() {
+			b.turn()
 		}
 		for _, p := range chain {
-			if len(cur.pieces) > 0 && y+p.before+p.height > limit {
-				turn()
-			}
-			for p.height > limit-sh.top-p.repeated() { // taller than any page
-				var head piece
-				if head, p = p.cut(limit - y); len(head.items) == 0 {
-					p.height = limit - sh.top - p.repeated() // only space is too much
-					break
-				}
-				place(head)
-				turn()
-			}
-			place(p)
+			b.piece(p)
 		}
 		i = j + 1
 	}
-	if len(cur.pieces) > 0 || len(out) == 0 {
-		turn()
+	if len(b.cur.pieces) > 0 || len(b.out) == 0 {
+		b.turn()
 	}
-	return out
+	return b.out
 }
 
 // repeated is the height of the head that is drawn again above the piece.

@@ -40,71 +40,79 @@ type drawn struct {
 
 var errDrawn = errors.New("pdf: the drawn file is not as expected")
 
-// parseDrawn takes apart the file fpdf wrote: cross-reference table, pages
-// and fonts. The file is our own, so its layout is known.
-func parseDrawn(b []byte) (*drawn, error) {
+// drawnTable finds the objects of a file through its cross-reference table.
+type drawnTable struct {
+	b, rows []byte
+	count   int
+}
+
+func openDrawn(b []byte) (*drawnTable, error) {
 	at := bytes.LastIndex(b, []byte("startxref\n"))
 	if at < 0 {
 		return nil, errDrawn
 	}
 	start := number(b[at+len("startxref\n"):])
-	if start <= 0 || start >= len(b) {
+	if start <= 0 || start >= at {
 		return nil, errDrawn
 	}
-	table := b[start:at]
-	lines := bytes.SplitN(table, []byte("\n"), 3)
+	lines := bytes.SplitN(b[start:at], []byte("\n"), 3)
 	if len(lines) < 3 {
 		return nil, errDrawn
 	}
-	count := number(lines[1][bytes.IndexByte(lines[1], ' ')+1:])
-	rows := lines[2]
-	object := func(n int) []byte {
-		if n <= 0 || n >= count || len(rows) < 20*(n+1) {
-			return nil
-		}
-		off := number(rows[20*n:])
-		if off >= len(b) {
-			return nil
-		}
-		o := b[off:]
-		if i := bytes.Index(o, []byte(" obj\n")); i >= 0 {
-			return o[i+5:]
-		}
+	return &drawnTable{b, lines[2], number(lines[1][bytes.IndexByte(lines[1], ' ')+1:])}, nil
+}
+
+// object is what follows "n 0 obj"; nil when there is no such object.
+func (t *drawnTable) object(n int) []byte {
+	if n <= 0 || n >= t.count || len(t.rows) < 20*(n+1) {
 		return nil
 	}
+	off := number(t.rows[20*n:])
+	if off < 0 || off >= len(t.b) {
+		return nil
+	}
+	_, o, _ := bytes.Cut(t.b[off:], []byte(" obj\n"))
+	return o
+}
+
+// parseDrawn takes apart the file fpdf wrote: pages, whose list is object 1,
+// and fonts, which object 2 names. The file is our own, so its layout is
+// known.
+func parseDrawn(b []byte) (*drawn, error) {
+	t, err := openDrawn(b)
+	if err != nil {
+		return nil, err
+	}
 	out := &drawn{fonts: map[string][]byte{}}
-	kids := object(1)
+	kids := t.object(1)
 	from, to := bytes.IndexByte(kids, '['), bytes.IndexByte(kids, ']')
 	if from < 0 || to < from {
 		return nil, errDrawn
 	}
-	for _, ref := range strings.Split(strings.TrimSpace(string(kids[from+1:to])), " 0 R") {
+	for _, ref := range strings.Split(string(kids[from+1:to]), " 0 R") {
 		if ref = strings.TrimSpace(ref); ref == "" {
 			continue
 		}
 		n, _ := strconv.Atoi(ref)
-		content := streamOf(object(reference(object(n), "/Contents ")))
+		content := streamOf(t.object(reference(t.object(n), "/Contents ")))
 		if content == nil {
 			return nil, errDrawn
 		}
 		out.contents = append(out.contents, content)
 	}
-	res := object(2)
-	if i := bytes.Index(res, []byte("endobj")); i >= 0 {
-		res = res[:i]
-	}
+	res, _, _ := bytes.Cut(t.object(2), []byte("endobj"))
 	for _, f := range bytes.Split(res, []byte("/F"))[1:] {
 		i := bytes.IndexByte(f, ' ')
 		if i < 0 || bytes.HasPrefix(f, []byte("ont")) {
 			continue
 		}
-		font := object(number(f[i+1:]))
+		font := t.object(number(f[i+1:]))
 		name := word(font, "/BaseFont /")
-		file := streamOf(object(reference(object(reference(font, "/FontDescriptor ")), "/FontFile2 ")))
+		file := streamOf(t.object(reference(t.object(reference(font, "/FontDescriptor ")), "/FontFile2 ")))
 		if name == "" || file == nil {
 			return nil, errDrawn
 		}
-		out.fonts[string(bytes.Clone(f[:i]))+" "+name] = file
+		out.fonts[string(f[:i])+" "+name] = file
 	}
 	return out, nil
 }

@@ -10,6 +10,7 @@ import (
 	"path/filepath"
 	"runtime"
 	"strings"
+	"sync"
 	"testing"
 
 	"github.com/google/go-cmp/cmp"
@@ -54,6 +55,21 @@ func TestSameBytes(t *testing.T) {
 	if sha256.Sum256(b.Bytes()) == want {
 		t.Error("another title gives the same bytes")
 	}
+}
+
+// Documents written at the same time do not disturb one another.
+func TestWriteTogether(t *testing.T) {
+	want := mustWrite(t)
+	var wg sync.WaitGroup
+	for range 4 {
+		wg.Go(func() {
+			var b bytes.Buffer
+			if err := Write(&b, sample()); err != nil || !bytes.Equal(b.Bytes(), want) {
+				t.Error("other bytes beside others", err)
+			}
+		})
+	}
+	wg.Wait()
 }
 
 // small is a document with little of everything, for the golden file.

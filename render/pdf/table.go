@@ -54,40 +54,7 @@ func (s *setter) table(b page.Table, fr frame, parent *elem) []piece {
 		tops[i] = body.child("TR")
 		rows[i] = s.measureRow(r, cols, tops[i])
 	}
-	g, tight := measure(cols, heads, rows, fr)
-	full, k := fr, 1.0
-	if tight > 1 { // smaller type, as far as it stays readable
-		k = max(1/tight, 0.8)
-		fr.w = full.w / k
-		g, _ = measure(cols, heads, rows, fr)
-	}
-	var again *piece
-	if heads != nil {
-		p := s.headPiece(g, heads, fr, thead)
-		p.scale(fr.x, k)
-		a := artifact(p)
-		again = &a
-		out = append(out, p)
-	} else {
-		p := piece{height: 1, keep: true}
-		p.rule(fr.x, 0, full.w, 0.9, ink(page.Black))
-		out = append(out, p)
-	}
-	for i := range rows {
-		p := s.rowPiece(g, rows[i], fr, tops[i])
-		last := i == len(rows)-1
-		if last {
-			p.rule(fr.x, p.height, fr.w, 0.9, ink(page.Black))
-			p.height += 1
-		} else {
-			p.rule(fr.x, p.height, fr.w, 0.3, ink(page.Mist))
-		}
-		p.scale(fr.x, k)
-		p.again = again
-		p.keep = i == 0 && !last || i == len(rows)-2 || last && len(b.Notes) > 0
-		out = append(out, p)
-	}
-	fr = full
+	out = append(out, s.rows(b, fr, cols, heads, rows, thead, tops)...)
 	if height(out) < 0.34*s.sheet.depth() {
 		out = glued(out)
 		out[len(out)-1].keep = len(b.Notes) > 0
@@ -101,6 +68,44 @@ func (s *setter) table(b page.Table, fr frame, parent *elem) []piece {
 	}
 	out[0].before = 12
 	out[len(out)-1].height += 6
+	return out
+}
+
+// rows sets the head and the rows of a measured table; one whose widest words
+// have no room is set smaller, as far as it stays readable.
+func (s *setter) rows(b page.Table, fr frame, cols []page.Column, heads []cell, rows [][]cell, thead *elem, tops []*elem) []piece {
+	g, tight := measure(cols, heads, rows, fr)
+	k := 1.0
+	if tight > 1 {
+		k = max(1/tight, 0.8)
+		fr.w /= k
+		g, _ = measure(cols, heads, rows, fr)
+	}
+	var again *piece
+	top := piece{height: 1, keep: true}
+	if heads != nil {
+		top = s.headPiece(g, heads, fr, thead)
+		top.scale(fr.x, k)
+		a := artifact(top)
+		again = &a
+	} else {
+		top.rule(fr.x, 0, fr.w*k, 0.9, ink(page.Black))
+	}
+	out := []piece{top}
+	for i := range rows {
+		p := s.rowPiece(g, rows[i], fr, tops[i])
+		last := i == len(rows)-1
+		if last {
+			p.rule(fr.x, p.height, fr.w, 0.9, ink(page.Black))
+			p.height++
+		} else {
+			p.rule(fr.x, p.height, fr.w, 0.3, ink(page.Mist))
+		}
+		p.scale(fr.x, k)
+		p.again = again
+		p.keep = i == 0 && !last || i == len(rows)-2 || last && len(b.Notes) > 0
+		out = append(out, p)
+	}
 	return out
 }
 
