@@ -14,7 +14,7 @@ import (
 func (c *composer) pageOne() {
 	c.add(page.Heading{Level: 0, Text: page.T(c.res.Record.Title), Anchor: "top"})
 	primary := c.primary()
-	dense := len(primary) > 1
+	rows, dense := len(primary) > 1, len(primary) > 2 // the more claims, the less is said twice
 	c.identityFacts(dense)
 	if q := c.rec.Plan.Question.V; q != "" {
 		c.add(page.Paragraph{Text: page.T(q), Style: page.Lead})
@@ -24,8 +24,8 @@ func (c *composer) pageOne() {
 		c.add(c.verdictBlock(h, dense))
 	}
 	c.small(c.otherClaims(len(primary)))
-	c.arrivalFacts(primary, dense)
-	c.pageOneCaution(dense)
+	c.arrivalFacts(primary, rows)
+	c.pageOneCaution(rows)
 	c.small(c.howToVerify())
 }
 

@@ -71,11 +71,15 @@ func (b Beam) Draw() *page.Drawing {
 	}
 	b.ground(c, f)
 	y := beamTop + beamThick + markRoom
-	for _, r := range b.Rows {
+	for i, r := range b.Rows {
 		if r.Separate {
 			c.line(edge, y, Width-edge, y, stroke(page.Mist, 0.6))
 		}
-		b.hang(c, f, r, y, row)
+		from := y
+		if i == 0 {
+			from = beamTop + beamThick
+		}
+		b.hang(c, f, r, y, row, from)
 		y += row
 	}
 	c.axisTitle(f, b.Axis, bottom+9)
@@ -135,8 +139,9 @@ func (b Beam) namedMarks(c *canvas, f frame) {
 	}
 }
 
-// hang draws one interval under the beam.
-func (b Beam) hang(c *canvas, f frame, r Row, top, height float64) {
+// hang draws one interval under the beam: in the row that begins at top, by
+// hangers that begin at from.
+func (b Beam) hang(c *canvas, f frame, r Row, top, height, from float64) {
 	a := b.Axis
 	y := top + height*0.45
 	ink := page.Accent
@@ -160,8 +165,8 @@ func (b Beam) hang(c *canvas, f frame, r Row, top, height float64) {
 	if r.Wider.OK && r.WiderHigh.OK {
 		x0, x1 := f.x(a, r.Wider.V), f.x(a, r.WiderHigh.V)
 		c.line(x0, y, x1, y, dashed(ink, 0.9))
-		c.end(f, a, r.Wider, y, ink, -1, top)
-		c.end(f, a, r.WiderHigh, y, ink, 1, top)
+		c.end(f, a, r.Wider, y, ink, -1, from)
+		c.end(f, a, r.WiderHigh, y, ink, 1, from)
 	}
 	if r.Low.OK || r.High.OK {
 		low, high := r.Low, r.High
@@ -173,8 +178,8 @@ func (b Beam) hang(c *canvas, f frame, r Row, top, height float64) {
 		}
 		x0, x1 := f.x(a, low.V), f.x(a, high.V)
 		c.line(x0, y, x1, y, stroke(ink, width))
-		c.end(f, a, low, y, ink, -1, top)
-		c.end(f, a, high, y, ink, 1, top)
+		c.end(f, a, low, y, ink, -1, from)
+		c.end(f, a, high, y, ink, 1, from)
 		if b.Names == 0 {
 			b.cleared(c, f, x0-6-textWidth(r.LowText, labelSize), y, r.LowText)
 			b.cleared(c, f, x1+6, y, r.HighText)
@@ -219,13 +224,13 @@ func (b Beam) cleared(c *canvas, f frame, x, y float64, text string) {
 
 // end draws the end of an interval: a hanger up toward the beam where the
 // limit exists and is on the axis, an arrow where it goes on.
-func (c *canvas) end(f frame, a Axis, p Point, y float64, ink page.Ink, dir, top float64) {
+func (c *canvas) end(f frame, a Axis, p Point, y float64, ink page.Ink, dir, from float64) {
 	x := f.x(a, p.V)
 	if math.IsInf(p.V, 0) || !a.Inside(p.V) {
 		c.add(page.Polygon{X: []float64{x, x - dir*6, x - dir*6}, Y: []float64{y, y - 3.2, y + 3.2}, Fill: ink})
 		return
 	}
-	c.line(x, top, x, y+2.5, stroke(ink, 1))
+	c.line(x, from, x, y+2.5, stroke(ink, 1))
 }
 
 // estimate draws the weight that hangs at the estimate.
