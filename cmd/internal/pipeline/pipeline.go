@@ -9,8 +9,6 @@ package pipeline
 
 import (
 	"bytes"
-	"crypto/sha256"
-	"encoding/hex"
 	"fmt"
 	"io"
 	"io/fs"
@@ -128,11 +126,6 @@ func contain(err *error) {
 func (r Rooms) Check(in Input) (c *Compiled, err error) {
 	defer contain(&err)
 	c = &Compiled{rooms: r, Loaded: r.Load(in.Name, in.Text, in.Seal, in.Files)}
-	c.Diagnostics = c.Loaded.Diagnostics
-	if c.Loaded.Diagnostics.HasErrors() {
-		c.Result = refused(c.Loaded)
-		return c, nil
-	}
 	c.Result = r.Run(c.Loaded, version.Version)
 	c.Diagnostics = c.Result.Diagnostics
 	return c, nil
@@ -146,21 +139,6 @@ func (r Rooms) Compile(in Input) (c *Compiled, err error) {
 	}
 	c.Page = r.Compose(c.Loaded, c.Result)
 	return c, c.attach(in)
-}
-
-// refused is the result of a record that has errors: who it is and what is
-// wrong with it, and nothing computed.
-func refused(in *protocol.Loaded) *result.Result {
-	head, sum := in.Record.Head, sha256.Sum256(in.Source.Text)
-	return &result.Result{
-		Engine: version.Version,
-		Record: result.Record{
-			Title: head.Title.V, Number: head.Number.V, Version: head.Version.V,
-			Status: head.Status.V, Setting: head.Setting.V,
-			SourceSHA256: hex.EncodeToString(sum[:]), PlanSHA256: in.PlanSHA256,
-		},
-		Diagnostics: in.Diagnostics,
-	}
 }
 
 // View prints one view. A record with errors has only its JSON.

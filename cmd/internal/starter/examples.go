@@ -11,7 +11,7 @@ type example struct {
 	label, unit, better string
 	reference           string
 	smallest, why       string
-	spec                string
+	spec, horizon       string
 	below, above        string               // limits for the claims of those names
 	numbers             map[string][2]string // summary key → first and second group
 }
@@ -103,14 +103,16 @@ func exampleOf(m *record.Measure) example {
 		return e
 	case "restricted-mean-difference":
 		e := strength
-		e.label, e.unit = "Days without a leak", "days"
+		e.label, e.unit, e.horizon = "Days without a leak", "days", "60"
 		return e
 	case "correlation", "rank-correlation":
 		return example{label: "Seal strength with dwell time", better: "higher",
 			smallest: "0.3", why: "A weaker relation than 0.3 is of no use for setting the dwell time.",
 			below: "0.9", above: "0.3", numbers: numbers{"n": {"60"}, "r": {"0.58"}}}
 	case "sd":
-		return spread
+		e := spread
+		e.smallest, e.why = "0.2", "A spread of 0.2 mL more or less still keeps the fill inside its limits."
+		return e
 	case "sd-ratio", "paired-sd-ratio":
 		e := spread
 		e.below, e.above = "1.5", "0.6"

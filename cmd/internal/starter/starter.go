@@ -149,6 +149,9 @@ func (w *writer) outcome() {
 	if e.spec != "" {
 		w.key("spec", e.spec, "limits for individual values")
 	}
+	if e.horizon != "" {
+		w.key("horizon", e.horizon, "the mean is that up to this time")
+	}
 	if w.c.NeedsSize {
 		w.key("smallest", e.smallest, "the smallest effect that matters")
 		w.key("why", quote(e.why), "")
