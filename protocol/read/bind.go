@@ -20,7 +20,9 @@ type binder struct {
 	all       bool // every key and word counts as computed
 	damaged   bool // a fault may have hidden keys
 	versionOK bool
-	skipReady bool // inside a table that was reported as not computed
+	hidden    bool               // names may be declared where they were not read
+	skipReady bool               // inside a table that was reported as not computed
+	refused   map[diag.Span]bool // tables that are at fault as a whole, by place
 }
 
 // fieldIndex finds the fields of a struct by key.
@@ -109,7 +111,12 @@ func (b *binder) table(n *record.Node, v reflect.Value, path, shown string, at d
 		}
 		row := record.KeyOf(join(path, e.Key))
 		if row == nil || row.Parent() != path {
-			meant = append(meant, b.unknown(e, rows, path, shown))
+			near := b.unknown(e, rows, path, shown)
+			if i, ok := index[near]; ok && n.Entry(near) == nil {
+				b.hidden = b.hidden || record.KeyOf(join(path, near)).Kind == record.KindNamedTables
+				b.refuse(v.Field(i), e.KeySpan)
+			}
+			meant = append(meant, near)
 			continue
 		}
 		b.entry(row, e, v.Field(index[e.Key]), join(shown, e.Key))
@@ -147,7 +154,7 @@ func (b *binder) emptyTable(row *record.Key, f reflect.Value) {
 func (b *binder) entry(row *record.Key, e record.Entry, f reflect.Value, shown string) {
 	n := e.Value
 	if n.Kind == record.UnreadNode {
-		refuse(f, n.Span)
+		b.refuse(f, n.Span)
 		return
 	}
 	if !b.skipReady && !row.Ready && !b.all {
@@ -181,7 +188,7 @@ func (b *binder) oneTable(row *record.Key, e record.Entry, f reflect.Value, show
 	}
 	if n.Kind != record.TableNode {
 		b.wrongType(row, n)
-		refuse(f, n.Span)
+		b.refuse(f, n.Span)
 		return
 	}
 	if f.Kind() == reflect.Pointer {
@@ -203,7 +210,7 @@ func headOf(e record.Entry) diag.Span {
 func (b *binder) namedTables(row *record.Key, e record.Entry, f reflect.Value, shown string) {
 	if e.Value.Kind != record.TableNode {
 		b.wrongType(row, e.Value)
-		refuse(f, e.Value.Span)
+		b.refuse(f, e.Value.Span)
 		return
 	}
 	if b.nameless(row, e) {
@@ -218,10 +225,10 @@ func (b *binder) namedTables(row *record.Key, e record.Entry, f reflect.Value, s
 		case record.TableNode:
 			b.table(named.Value, elem.Elem(), row.Below(), join(shown, named.Key), headOf(named))
 		case record.UnreadNode:
-			refuse(elem, named.Value.Span)
+			b.refuse(elem, named.Value.Span)
 		default:
 			b.notTable(row, named)
-			refuse(elem, named.Value.Span)
+			b.refuse(elem, named.Value.Span)
 		}
 	}
 }
@@ -232,7 +239,7 @@ func (b *binder) namedTables(row *record.Key, e record.Entry, f reflect.Value, s
 func (b *binder) nameless(row *record.Key, e record.Entry) bool {
 	for _, named := range e.Value.Entries {
 		if record.KeyOf(row.Below()+"."+named.Key) != nil && named.Value.Kind != record.TableNode {
-			b.damaged = true
+			b.hidden = true
 			b.list.Add(diag.Error("R203", headOf(e), "this table needs a name of its own").WithHelp("write [%s.NAME], with a name of your choice", row.Path))
 			return true
 		}
@@ -242,7 +249,11 @@ func (b *binder) nameless(row *record.Key, e record.Entry) bool {
 
 // notTable reports a value where tables under names are expected.
 func (b *binder) notTable(row *record.Key, e record.Entry) {
-	b.list.Add(diag.Error("R203", e.Value.Span, "%q in [%s] takes a table, not %s", e.Key, row.Path, describe(e.Value)))
+	d := diag.Error("R203", e.Value.Span, "%q in [%s] takes a table, not %s", e.Key, row.Path, describe(e.Value))
+	if e.Value.Kind == record.ArrayNode && row.Parent() == "plan" {
+		d = d.WithHelp("its head has one bracket: [%s.%s]", row.Path, e.Key)
+	}
+	b.list.Add(d)
 }
 
 // name checks a name that the user gave.
@@ -312,13 +323,22 @@ func (b *binder) namedValues(row *record.Key, e record.Entry, f reflect.Value) {
 		elem.FieldByName("At").Set(reflect.ValueOf(named.KeySpan))
 		v := elem.Field(elem.NumField() - 1)
 		if named.Value.Kind == record.UnreadNode {
-			refuse(v, named.Value.Span)
+			b.refuse(v, named.Value.Span)
 		} else {
 			leaf.Path = row.Path + "." + named.Key
 			b.leaf(&leaf, named.Value, v)
 		}
 		f.Set(reflect.Append(f, elem))
 	}
+}
+
+// refuse marks a field as written and at fault, and remembers the table.
+func (b *binder) refuse(f reflect.Value, at diag.Span) {
+	if b.refused == nil {
+		b.refused = map[diag.Span]bool{}
+	}
+	b.refused[at] = true
+	refuse(f, at)
 }
 
 // refuse marks a field as written and at fault: a table is there, every value

@@ -105,6 +105,8 @@ func basedDigits(base byte, s string) bool {
 // helpForBare guesses what was meant.
 func helpForBare(s string) string {
 	switch {
+	case strings.ContainsAny(s, "“”„‟″‘’«»"):
+		return "quotation marks are straight: \"" + strings.Trim(s, "“”„‟″‘’«»") + "\""
 	case s[0] == '.' && len(s) > 1 && isDigit(s[1]):
 		return "write the zero before the point: 0" + s
 	case strings.HasSuffix(s, "%"):

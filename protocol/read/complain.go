@@ -58,6 +58,9 @@ func (b *binder) unknown(e record.Entry, rows []*record.Key, path, shown string)
 	for i, r := range rows {
 		known[i] = r.Name()
 	}
+	if e.Value.Kind == record.UnreadNode {
+		return nearest(e.Key, known) // the statement was reported
+	}
 	d := diag.Error("R201", e.KeySpan, "%s is not a key%s", quoteShort(e.Key), in(shown))
 	near := nearest(e.Key, known)
 	switch {

@@ -92,6 +92,10 @@ func (b *binder) wrongType(row *record.Key, n *record.Node) {
 		d = d.WithHelp("write it in brackets: [%s]", quoteShort(n.Text))
 	case row.Kind == record.KindString && n.Kind != record.TableNode && n.Kind != record.ArrayNode:
 		d = d.WithHelp("write it in quotes")
+	case row.Kind == record.KindNamedTables && row.Parent() == "result":
+		d = d.WithHelp("write %s.NAME = { … }", row.Name())
+	case row.Kind == record.KindNamedTables:
+		d = d.WithHelp("write [%s.NAME]", row.Path)
 	case row.Kind == record.KindTable && row.Name() == "alpha":
 		d = d.WithHelp("write alpha = { one_sided = 0.05 }")
 	}

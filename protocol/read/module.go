@@ -127,6 +127,9 @@ func refused(p *parser, pieces []piece, err error) *statement {
 			help: "a date is written year-month-day, a time hour:minute:second"})
 		return s
 	}
+	if number, _, found := strings.Cut(message, " is out of range for "); found {
+		message = "the number " + number + " is larger than a record can hold"
+	}
 	if message != "" {
 		message = strings.ToLower(message[:1]) + message[1:]
 	}

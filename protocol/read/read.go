@@ -45,7 +45,7 @@ func readWith(src *diag.Source, all bool) (*record.Record, diag.List) {
 	b.record(rec)
 	list = append(list, b.list...)
 	if b.versionOK {
-		list = append(list, rules(rec, b.damaged)...)
+		list = append(list, rules(rec, b.damaged || b.hidden, b.refused)...)
 	}
 	list.Sort()
 	return rec, limit(list)

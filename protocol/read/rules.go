@@ -10,7 +10,8 @@ import (
 // checker holds what the rules between fields share.
 type checker struct {
 	rec     *record.Record
-	damaged bool // names may be hidden by a fault: do not call them unknown
+	damaged bool               // names may be hidden by a fault: do not call them unknown
+	refused map[diag.Span]bool // tables that are at fault as a whole
 	list    diag.List
 
 	outcomes   map[string]*record.Outcome
@@ -24,9 +25,9 @@ type checker struct {
 }
 
 // rules checks what no single key can tell.
-func rules(rec *record.Record, damaged bool) diag.List {
+func rules(rec *record.Record, damaged bool, refused map[diag.Span]bool) diag.List {
 	c := &checker{
-		rec: rec, damaged: damaged,
+		rec: rec, damaged: damaged, refused: refused,
 		outcomes:   byName(rec.Plan.Outcomes, func(o *record.Outcome) string { return o.Name }),
 		hypotheses: byName(rec.Plan.Hypotheses, func(h *record.Hypothesis) string { return h.Name }),
 		families:   byName(rec.Plan.Families, func(f *record.Family) string { return f.Name }),

@@ -109,6 +109,9 @@ func (c *checker) size(s *record.Size) {
 
 // prior takes one of two forms.
 func (c *checker) prior(p *record.Prior) {
+	if c.refused[p.At] {
+		return
+	}
 	known(c, p.Outcome, "outcome", c.outcomes)
 	c.reason(p.Why, "why")
 	moments := !absent(p.Mean) || !absent(p.SD)

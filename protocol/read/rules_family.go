@@ -237,6 +237,9 @@ func (c *checker) dataRules() {
 
 // filter demands exactly one condition.
 func (c *checker) filter(f *record.Filter) {
+	if c.refused[f.At] {
+		return
+	}
 	written := 0
 	for _, absent := range []bool{absent(f.Above), absent(f.AtLeast), absent(f.Below), absent(f.AtMost),
 		f.Equals.Span.IsZero(), absent(f.OneOf), absent(f.Missing)} {

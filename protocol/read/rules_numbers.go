@@ -79,7 +79,7 @@ func (c *checker) twoGroups(r *record.Result, o *record.Outcome, m *record.Measu
 
 // group checks one group or sample.
 func (c *checker) group(g *record.Group, m *record.Measure, what string) {
-	if !c.complete(g.At, what, groupNumbers(g), m) {
+	if c.refused[g.At] || !c.complete(g.At, what, groupNumbers(g), m) {
 		return
 	}
 	if g.Events.Stated && g.N.Stated && g.Events.V > g.N.V {
@@ -101,7 +101,7 @@ func (c *checker) pairs(p *record.Pairs, m *record.Measure) {
 	numbers := []number{{"n", p.N}, {"mean", p.Mean}, {"sd", p.SD}, {"first_mean", p.FirstMean}, {"second_mean", p.SecondMean},
 		{"first_sd", p.FirstSD}, {"second_sd", p.SecondSD}, {"r", p.R},
 		{"both", p.Both}, {"first_only", p.FirstOnly}, {"second_only", p.SecondOnly}, {"neither", p.Neither}}
-	if !c.complete(p.At, "pairs", numbers, m) {
+	if c.refused[p.At] || !c.complete(p.At, "pairs", numbers, m) {
 		return
 	}
 	c.lonely(p.N, p.SD, "pairs")
@@ -112,6 +112,9 @@ func (c *checker) pairs(p *record.Pairs, m *record.Measure) {
 
 // effect checks an effect that was estimated elsewhere.
 func (c *checker) effect(e *record.Effect, m *record.Measure) {
+	if c.refused[e.At] {
+		return
+	}
 	interval := !absent(e.Low) || !absent(e.High) || !absent(e.Level)
 	const help = "write effect = { estimate, se }, or effect = { estimate, low, high, level }"
 	switch {

@@ -230,6 +230,9 @@ func (c *checker) form(r *record.Result, o *record.Outcome, m *record.Measure, f
 
 // data checks the names of columns and of the file.
 func (c *checker) data(d *record.Data, o *record.Outcome, m *record.Measure) {
+	if c.refused[d.At] {
+		return
+	}
 	c.file(d.File)
 	c.digest(d.SHA256)
 	columns := []struct {

@@ -292,7 +292,11 @@ func (p *parser) keyValue() statement {
 	p.blank(false)
 	if p.pos >= len(p.text) || p.text[p.pos] != '=' {
 		first, last := s.key[0].span.Start, s.key[len(s.key)-1].span.End
-		p.fail("R105", first, last, "a key and its value are written key = value", "no = after %s", quoteShort(string(p.text[first:last])))
+		help := "a key and its value are written key = value"
+		if p.pos < len(p.text) && p.text[p.pos] == ':' {
+			help = "write = in place of :"
+		}
+		p.fail("R105", first, last, help, "no = after %s", quoteShort(string(p.text[first:last])))
 		return s
 	}
 	p.pos++
