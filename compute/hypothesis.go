@@ -28,6 +28,7 @@ type attempt struct {
 	because string
 	inf     *effect.Inference
 	a       claim.Assessment
+	worst   *claim.Assessment // combinations: at the least favourable values
 	problem *result.Note
 	empty   bool // no results
 	studies []string
@@ -137,6 +138,9 @@ func (r *run) gather(at *attempt, h *record.Hypothesis, q claim.Question, found 
 		at.empty = true
 	case h.Evidence.V == "pooled" && len(found) > 1:
 		at.inf, at.problem = r.pooled(at, h, found)
+	case h.Evidence.V == "combined":
+		r.combined(at, h, q, found)
+		return
 	case len(found) > 1:
 		at.problem = &result.Note{Code: "S111", Message: "%d results are given and `evidence` does not say how they count together", Args: []any{len(found)}}
 	case found[0].res.P != nil:
@@ -225,7 +229,8 @@ func (t *trial) verdictOf(at attempt) result.Verdict {
 		}
 		return result.Open
 	}
-	return at.a.Verdict(at.a.P.P, at.a.Against.P, t.question.Alpha, t.out.Role == "exploratory")
+	p, against := at.pair()
+	return at.a.Verdict(p.P, against.P, t.question.Alpha, t.out.Role == "exploratory")
 }
 
 // curvePoints is the length of a p-value function; costly methods get few.
