@@ -5,6 +5,7 @@ import (
 	"fmt"
 	"io"
 	"math"
+	"strconv"
 
 	"github.com/go-pdf/fpdf"
 
@@ -14,6 +15,7 @@ import (
 // drawer prints leaves through fpdf, marking every painted thing as content
 // of an element or as an artifact.
 type drawer struct {
+	buf   []byte
 	f     *fpdf.Fpdf
 	s     *setter
 	page  int // from 1
@@ -149,7 +151,44 @@ func (d *drawer) text(it *item, x, y float64) {
 		d.f.RawWriteStr(fmt.Sprintf("/Span <</ActualText <FEFF%X>>> BDC", utf16BE(it.actual)))
 		defer d.f.RawWriteStr("EMC")
 	}
-	d.f.Text(x, y, it.text)
+	if len(it.kerns) == 0 {
+		d.f.Text(x, y, it.text)
+		return
+	}
+	// fpdf has no operator for kerned text.
+	b := append(d.buf[:0], "BT "...)
+	b = strconv.AppendFloat(b, x, 'f', 2, 64)
+	b = append(b, ' ')
+	b = strconv.AppendFloat(b, d.s.sheet.height-y, 'f', 2, 64)
+	b = append(b, " Td [("...)
+	from := 0
+	for _, k := range it.kerns {
+		if k.at == len(it.text) {
+			break
+		}
+		b = append(escaped(b, it.text[from:k.at]), ") "...)
+		b = strconv.AppendInt(b, -int64(k.by), 10)
+		b = append(b, " ("...)
+		from = k.at
+	}
+	b = append(escaped(b, it.text[from:]), ")] TJ ET"...)
+	d.f.RawWriteStr(string(b))
+	d.buf = b
+}
+
+// escaped appends the bytes of a string in parentheses.
+func escaped(b []byte, s string) []byte {
+	for i := 0; i < len(s); i++ {
+		switch s[i] {
+		case '\\', '(', ')':
+			b = append(b, '\\')
+		case '\r':
+			b = append(b, '\\', 'r')
+			continue
+		}
+		b = append(b, s[i])
+	}
+	return b
 }
 
 // spot notes the place of a link; pieces of one link that touch become one.

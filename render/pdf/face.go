@@ -31,6 +31,7 @@ type face struct {
 	restricted  bool // the face forbids embedding
 
 	cmap4, cmap12 []byte
+	kerns         []byte // the pairs of a kern subtable of format 0
 	ascii         [128]uint16
 }
 
@@ -124,6 +125,27 @@ func (f *face) readHeader(tables map[string][]byte) {
 		f.fixed = u32(post, 12) != 0
 	}
 	f.name = postScriptName(tables["name"])
+	if k := tables["kern"]; len(k) > 18 && u16(k, 0) == 0 && u16(k, 2) > 0 && u16(k, 8) == 1 {
+		f.kerns = k[18:min(len(k), 18+6*u16(k, 10))]
+	}
+}
+
+// kern is by how much a pair of glyphs stands closer (negative) or wider than
+// their advances, in thousandths.
+func (f *face) kern(left, right int) int {
+	pair := left<<16 | right
+	lo, hi := 0, len(f.kerns)/6
+	for lo < hi {
+		if m := (lo + hi) / 2; u32(f.kerns, 6*m) < pair {
+			lo = m + 1
+		} else {
+			hi = m
+		}
+	}
+	if lo < len(f.kerns)/6 && u32(f.kerns, 6*lo) == pair {
+		return f.thousand(i16(f.kerns, 6*lo+4))
+	}
+	return 0
 }
 
 // postScriptName is name 6 of the name table, cut to the characters a PDF

@@ -14,6 +14,7 @@ type item struct {
 	size   float64
 	colour colour
 	text   string  // two bytes a glyph
+	kerns  []kern  // where glyphs stand off their advance
 	w      float64 // width of the text
 	actual string
 
@@ -23,6 +24,12 @@ type item struct {
 	scale float64 // of marks and shapes
 	place int     // of destinations
 	shape func(d *drawer, x, y, k float64)
+}
+
+// kern moves what follows the first at bytes of a text, in thousandths.
+type kern struct {
+	at int
+	by int16
 }
 
 type itemKind uint8
@@ -68,6 +75,7 @@ func (p *piece) put(s *setter, cs []char, x, y float64) {
 		j, w := i, 0.0
 		start := x + float64(c.dx)
 		var text []byte
+		var kerns []kern
 		for ; j < len(cs); j++ {
 			n := cs[j]
 			if n.face != c.face || n.look != c.look && !same(n.look, c.look) || j > i && (n.dx != 0 || n.dy != 0 || c.dx != 0 || c.dy != 0) {
@@ -76,10 +84,13 @@ func (p *piece) put(s *setter, cs []char, x, y float64) {
 			text = append(text, byte(n.gid>>8), byte(n.gid))
 			s.cuts[n.face].use(int(n.gid), n.r)
 			w += n.w
+			if n.kern != 0 {
+				kerns = append(kerns, kern{len(text), n.kern})
+			}
 		}
 		p.items = append(p.items, item{
 			kind: textItem, el: c.look.el, x: start, y: y - c.look.rise - float64(c.dy), face: c.face, size: c.look.size,
-			colour: c.look.colour, text: string(text), w: w, actual: c.look.actual,
+			colour: c.look.colour, text: string(text), kerns: kerns, w: w, actual: c.look.actual,
 		})
 		x += w
 		i = j

@@ -24,6 +24,7 @@ type char struct {
 	dx, dy float32 // of marks that stand over the glyph before
 	r      rune
 	gid    uint16
+	kern   int16 // in thousandths, part of w: the next glyph stands so much off
 	face   faceID
 	after  brk
 }
@@ -163,9 +164,17 @@ func (s *setter) glyph(out []char, r rune, l *look, text string) []char {
 			dx, dy := over(f, int(out[n-1].gid), g, l.size)
 			c.dx, c.dy = float32(dx-out[n-1].w), float32(dy)
 		}
+	} else if n := len(out); n > 0 && out[n-1].look == l && out[n-1].face == id && !digit(r) && !digit(out[n-1].r) {
+		// Figures keep their equal widths, so that columns stand.
+		if k := f.kern(int(out[n-1].gid), g); k != 0 {
+			out[n-1].kern = int16(k)
+			out[n-1].w += float64(k) * l.size / 1000
+		}
 	}
 	return append(out, c)
 }
+
+func digit(r rune) bool { return r >= '0' && r <= '9' }
 
 // over is the shift that centres a mark on the ink of its base and lifts it
 // above bases taller than a small letter, from the origin of the base.
