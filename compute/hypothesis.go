@@ -66,41 +66,41 @@ func (r *run) hypothesis(h *record.Hypothesis) {
 
 func (r *run) question(h *record.Hypothesis, o *record.Outcome) claim.Question {
 	m := record.MeasureOf(o.Measure.V)
-	null, low, high, has := pointsOf(h, o)
+	null, low, high, has, oneSided := pointsOf(h, o)
 	alpha, _ := h.ErrorLevel(&r.rec.Plan)
 	better := o.Better.V
 	if better == "" {
 		better = "neither"
 	}
-	return claim.Question{Claim: h.Claim.V, Better: better, Alpha: alpha, Null: null, Low: low, High: high, HasRegion: has,
+	return claim.Question{Claim: h.Claim.V, Better: better, Alpha: alpha, Null: null, Low: low, High: high, HasRegion: has, OneSided: oneSided,
 		Limit: h.Limit.V, Scale: m.Scale, RangeLow: m.Low, RangeHigh: m.High, Level: r.level}
 }
 
 // pointsOf are the points of a claim: the outcome's, with the margin in the
 // place of the one that the claim is tested against, or of both where the
-// outcome has no region or the claim reads both.
-func pointsOf(h *record.Hypothesis, o *record.Outcome) (null, low, high float64, has bool) {
+// claim reads both. oneSided says that the other side was never stated.
+func pointsOf(h *record.Hypothesis, o *record.Outcome) (null, low, high float64, has, oneSided bool) {
 	null, low, high, has = h.Points(o)
 	_, outerLow, outerHigh, outer := o.Points()
-	if !h.Margin.Stated || !outer {
-		return null, low, high, has
+	better := h.Claim.V == "minimum-effect" || h.Claim.V == "benefit-too-small"
+	if !h.Margin.Stated || h.Claim.V != "noninferior" && !better {
+		return null, low, high, has, false
 	}
-	higher := o.Better.V != "lower"
-	switch h.Claim.V {
-	case "noninferior":
-		if higher {
-			high = outerHigh
-		} else {
-			low = outerLow
-		}
-	case "minimum-effect", "benefit-too-small":
-		if higher {
-			low = outerLow
-		} else {
-			high = outerHigh
-		}
+	if !outer {
+		return null, low, high, has, !h.Margin.V.IsPair
 	}
-	return null, low, high, has
+	if testsLow(h, o) {
+		high = outerHigh
+	} else {
+		low = outerLow
+	}
+	return null, low, high, has, false
+}
+
+// testsLow reports whether the point that a one-sided margin moves is the
+// lower one.
+func testsLow(h *record.Hypothesis, o *record.Outcome) bool {
+	return (h.Claim.V == "noninferior") == (o.Better.V != "lower")
 }
 
 func (r *run) hypothesisHead(h *record.Hypothesis, o *record.Outcome, q claim.Question) *result.Hypothesis {
@@ -113,6 +113,11 @@ func (r *run) hypothesisHead(h *record.Hypothesis, o *record.Outcome, q claim.Qu
 		Limit: result.Opt{V: h.Limit.V, OK: h.Limit.Stated}}
 	if q.HasRegion {
 		out.MarginLow, out.MarginHigh = result.Some(q.Low), result.Some(q.High)
+	}
+	if q.OneSided && testsLow(h, o) {
+		out.MarginHigh = result.Opt{}
+	} else if q.OneSided {
+		out.MarginLow = result.Opt{}
 	}
 	return out
 }

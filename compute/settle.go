@@ -1,6 +1,7 @@
 package compute
 
 import (
+	"math"
 	"slices"
 
 	"steelyard/compute/claim"
@@ -40,7 +41,8 @@ func (t *trial) settle(r *run) {
 		out.Judged.Verdict = at.a.Verdict(t.p.P, t.against.P, out.Alpha, out.Role == "exploratory")
 		if t.adjusted {
 			out.Judged.PAdjusted = result.P{P: t.p.P, Ln: t.p.LnP, OK: true}
-			out.Judged.IntervalDecides = false
+			own, _ := at.pair()
+			out.Judged.IntervalDecides = math.Abs(own.LnP-t.p.LnP) <= 1e-12*math.Abs(own.LnP)
 		}
 		out.Evidence, out.Studies = t.evidence(at), at.studies
 		t.fill(r, at)

@@ -24,6 +24,9 @@ type Question struct {
 	Null      float64
 	Low, High float64 // the region in force, low < null < high
 	HasRegion bool
+	// OneSided says that only the side the claim is tested against was stated:
+	// the reading then knows the null alone.
+	OneSided  bool
 	Limit     float64 // below, above
 	Scale     record.Scale
 	RangeLow  float64 // ends of the effect's range
@@ -146,6 +149,23 @@ func (a *Assessment) differs(t effect.Test, q Question) {
 	a.Tests[0].Alternative = "two-sided"
 }
 
+// OfTails assesses a claim about the null from two one-sided p-values alone,
+// upward and downward, where there is neither estimate nor interval.
+func OfTails(q Question, up, down dist.Tail) Assessment {
+	a := Assessment{Judged: true}
+	alternative := "two-sided"
+	switch {
+	case q.Claim == "differs":
+		a.P = dist.TwoSided(up, down)
+	case q.Better == "lower":
+		a.P, a.Against, a.CanContradict, alternative = down, up, true, "less"
+	default:
+		a.P, a.Against, a.CanContradict, alternative = up, down, true, "greater"
+	}
+	a.Tests = []result.Test{{Null: q.Null, Alternative: alternative, Statistic: "combination", P: result.P{P: a.P.P, Ln: a.P.LnP, OK: true}}}
+	return a
+}
+
 // TwoSided is the doubled smaller tail of a test, capped at 1.
 func TwoSided(t effect.Test) dist.Tail { return dist.TwoSided(t.Up, t.Down) }
 
@@ -191,7 +211,7 @@ func row(t effect.Test, s side, p dist.Tail) result.Test {
 
 // reading counts the points that the data exclude from below and from above.
 func reading(inf *effect.Inference, q Question, e float64) result.Reading {
-	r := result.Reading{HasRegion: q.HasRegion && !inf.NullOnly, OK: true}
+	r := result.Reading{HasRegion: q.HasRegion && !q.OneSided && !inf.NullOnly, OK: true}
 	points := []float64{q.Null}
 	if r.HasRegion {
 		points = []float64{q.Low, q.Null, q.High}
