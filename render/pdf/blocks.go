@@ -149,8 +149,7 @@ func (s *setter) heading(h page.Heading, fr frame, parent *elem) []piece {
 	if s.titled {
 		level++
 	}
-	s.level = max(1, min(level, s.level+1)) // no level of the tree is left out
-	el := parent.child(fmt.Sprintf("H%d", s.level))
+	el := parent.child("H")
 	title := s.clean(page.Plain(h.Text))
 	s.where = fmt.Sprintf("the section %q", title)
 	st, before, after := h1Style, 26.0, 5.0
@@ -167,6 +166,8 @@ func (s *setter) heading(h page.Heading, fr frame, parent *elem) []piece {
 	if len(ps) == 0 {
 		return nil
 	}
+	s.level = max(1, min(level, s.level+1)) // no level of the tree is left out
+	el.role = fmt.Sprintf("H%d", s.level)
 	p := piece{before: before}
 	if h.Level == 1 {
 		p.rule(fr.x, 0, fr.w, 0.8, ink(page.Black))

@@ -22,6 +22,7 @@ type parser struct {
 	b     []byte
 	i     int
 	depth int
+	left  *int // values that may still be read; nil for no bound
 }
 
 const maxDepth = 40
@@ -72,6 +73,11 @@ func (p *parser) value() (any, error) {
 	}
 	if p.depth++; p.depth > maxDepth {
 		return nil, errSyntax
+	}
+	if p.left != nil {
+		if *p.left--; *p.left < 0 {
+			return nil, errSyntax
+		}
 	}
 	defer func() { p.depth-- }()
 	switch c := p.b[p.i]; {
@@ -294,4 +300,5 @@ func inflate(d pdfDict, data []byte, budget *int) ([]byte, error) {
 var (
 	errFilter   = errors.New("its stream has a filter other than Flate")
 	errTooLarge = errors.New("its streams are too large when unpacked")
+	errTooMany  = errors.New("the PDF holds more objects than are looked at")
 )

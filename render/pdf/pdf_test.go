@@ -3,6 +3,7 @@ package pdf
 import (
 	"bytes"
 	"os"
+	"path/filepath"
 	"testing"
 )
 
@@ -15,13 +16,14 @@ func mustWrite(t testing.TB) []byte {
 	return b.Bytes()
 }
 
-// The file is kept for looking at when PDF_OUT names a place.
+// The file is kept for looking at in the folder that PDF_OUT names.
 func TestWriteSample(t *testing.T) {
 	b := mustWrite(t)
 	if !bytes.HasPrefix(b, []byte("%PDF-1.7\n")) || !bytes.HasSuffix(b, []byte("%%EOF\n")) {
 		t.Error("the file does not begin and end as a PDF")
 	}
 	if out := os.Getenv("PDF_OUT"); out != "" {
+		out = filepath.Join(out, "sample.pdf")
 		if err := os.WriteFile(out, b, 0o644); err != nil {
 			t.Fatal(err)
 		}

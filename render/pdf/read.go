@@ -50,6 +50,7 @@ var (
 const (
 	maxUnpacked    = 96 << 20
 	maxAttachments = 4096
+	maxValues      = 1 << 21 // about what twenty thousand rows of a table give
 )
 
 // WrittenBySteelyard reports whether the file says that it was written by
@@ -76,6 +77,9 @@ func Read(file []byte) (*File, error) {
 	w := scan(file, &budget)
 	if w.encrypted {
 		return nil, ErrEncrypted
+	}
+	if w.left < 0 {
+		return nil, errTooMany
 	}
 	w.metadata(out)
 	out.Ours = out.Ours || WrittenBySteelyard(file)

@@ -74,6 +74,10 @@ func TestReadRefuses(t *testing.T) {
 	if _, err := Read(locked); !errors.Is(err, ErrEncrypted) {
 		t.Error(err)
 	}
+	flood := []byte("%PDF-1.7\n1 0 obj\n[" + strings.Repeat("1 ", maxValues) + "]\nendobj\n")
+	if _, err := Read(flood); !errors.Is(err, errTooMany) {
+		t.Error(err)
+	}
 	// A stream that unpacks to more than the bound.
 	z := &squeezer{}
 	bomb := z.deflate(make([]byte, maxUnpacked+1))

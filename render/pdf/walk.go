@@ -9,12 +9,13 @@ type walked struct {
 	order     []int          // numbers of embedded file streams, as met
 	trailer   pdfDict
 	encrypted bool
-	budget    *int
+	budget    *int // bytes that may still be unpacked
+	left      int  // values that may still be read
 }
 
 // scan walks the file from the front.
 func scan(b []byte, budget *int) *walked {
-	w := &walked{objects: map[int]any{}, streams: map[int][]byte{}, trailer: pdfDict{}, budget: budget}
+	w := &walked{objects: map[int]any{}, streams: map[int][]byte{}, trailer: pdfDict{}, budget: budget, left: maxValues}
 	closed := true // "endstream" may still come
 	wasted := 0    // bytes of values given up
 	for i := 0; i < len(b); {
@@ -32,7 +33,7 @@ func scan(b []byte, budget *int) *walked {
 		if !ok {
 			continue
 		}
-		p := parser{b: b, i: i}
+		p := parser{b: b, i: i, left: &w.left}
 		v, err := p.value()
 		if err != nil {
 			// Look inside what could not be read, but not for ever.
@@ -109,7 +110,7 @@ func (w *walked) trailers(b []byte) {
 		if i < 0 {
 			return
 		}
-		p := parser{b: b, i: i + len("trailer")}
+		p := parser{b: b, i: i + len("trailer"), left: &w.left}
 		if v, err := p.value(); err == nil {
 			if d, ok := v.(pdfDict); ok {
 				w.take(d)
@@ -154,7 +155,7 @@ func (w *walked) unpack(d pdfDict, data []byte) {
 	if err != nil && len(text) == 0 || !ok || first < 0 || int(first) > len(text) {
 		return
 	}
-	head := parser{b: text[:int(first)]}
+	head := parser{b: text[:int(first)], left: &w.left}
 	last := -1
 	for {
 		n, err := head.value()
@@ -169,7 +170,7 @@ func (w *walked) unpack(d pdfDict, data []byte) {
 		if !ok || !ok2 || at < 0 || int(at) <= last || int(first)+int(at) > len(text) {
 			return
 		}
-		p := parser{b: text, i: int(first) + int(at)}
+		p := parser{b: text, i: int(first) + int(at), left: &w.left}
 		v, err := p.value()
 		if err != nil {
 			return
