@@ -6,12 +6,15 @@ import (
 	"steelyard/render/number"
 )
 
+// mostGroups is how many groups a figure shows; the table has more.
+const mostGroups = 10
+
 // groupFigures draws the groups of every outcome whose entries give means or
 // events, one figure an outcome.
 func (c *composer) groupFigures() {
 	for i := range c.res.Outcomes {
 		o := &c.res.Outcomes[i]
-		if d, what := c.groupRows(o); len(d.Rows) > 1 && what != "" {
+		if d, what := c.groupRows(o); len(d.Rows) > 1 && len(d.Rows) <= mostGroups && what != "" {
 			alt := what + " of each group of " + o.Label + "; the table above has the numbers."
 			c.add2(figure(o.Label+": "+what+" by group.", alt, d.Draw(), nil))
 		}
@@ -63,7 +66,12 @@ func (c *composer) groupRows(o *result.Outcome) (d chart.Groups, what string) {
 			d.Axis.Title += ", " + o.Unit
 		}
 	} else {
-		d.Axis = chart.Axis{Lo: 0, Hi: 1, Title: "Share with an event"}
+		top := 0.0
+		for _, r := range d.Rows {
+			top = max(top, r.Share.V)
+		}
+		d.Axis = chart.NewAxis(false, 0, max(top, 0.01))
+		d.Axis.Lo, d.Axis.Title = 0, "Share with an event"
 	}
 	return d, what
 }

@@ -35,10 +35,10 @@ func (c *composer) nextText(h *result.Hypothesis) string {
 	if w.NoSize {
 		parts = append(parts, "No size would do if the present estimate held.")
 	}
-	if s := twoSizes(w.NewStudyN80, w.NewStudyN90); s != "" {
+	if s := c.twoSizes(w.NewStudyN80, w.NewStudyN90); s != "" {
 		parts = append(parts, "A new study judged alone: "+s+".")
 	}
-	if s := twoSizes(w.AddedN80, w.AddedN90); s != "" {
+	if s := c.twoSizes(w.AddedN80, w.AddedN90); s != "" {
 		parts = append(parts, "Added to the present data: "+s+".")
 	}
 	s := v.f.Interval(h.Estimate, w.ExcludedLow, w.ExcludedHigh, v.points()...)
@@ -58,15 +58,26 @@ func (c *composer) nextText(h *result.Hypothesis) string {
 func finite(o result.Opt) bool { return o.OK && o.V-o.V == 0 }
 
 // twoSizes is "about 120 participants for power 0.8, 160 for 0.9".
-func twoSizes(n80, n90 result.Opt) string {
+func (c *composer) twoSizes(n80, n90 result.Opt) string {
 	var p []string
 	if n80.OK {
-		p = append(p, "about "+number.Count(n80.V)+" participants for power 0.8")
+		p = append(p, "about "+number.Count(n80.V)+" "+c.units()+" for power 0.8")
 	}
 	if n90.OK {
-		p = append(p, "about "+number.Count(n90.V)+" participants for power 0.9")
+		p = append(p, "about "+number.Count(n90.V)+" "+c.units()+" for power 0.9")
 	}
 	return strings.Join(p, ", ")
+}
+
+// units are what a setting counts.
+func (c *composer) units() string {
+	switch c.res.Record.Setting {
+	case "clinical", "education":
+		return "participants"
+	case "safety", "field", "other":
+		return "subjects or units"
+	}
+	return "units"
 }
 
 // sizeTable prints the solved questions of size.
@@ -106,7 +117,7 @@ func (c *composer) stillNeeded() string {
 		case h.WhatNext != nil && h.WhatNext.NoSize:
 			parts = append(parts, h.Name+": no further size would do if the present estimate held")
 		case h.WhatNext != nil && h.WhatNext.NewStudyN90.OK:
-			parts = append(parts, h.Name+": a new study of about "+number.Count(h.WhatNext.NewStudyN90.V)+" participants (power 0.9 if the present estimate held)")
+			parts = append(parts, h.Name+": a new study of about "+number.Count(h.WhatNext.NewStudyN90.V)+" "+c.units()+" (power 0.9 if the present estimate held)")
 		case h.Reason != nil:
 			parts = append(parts, h.Name+": data that support the analysis")
 		}

@@ -138,7 +138,9 @@ func (c *composer) verdictBlock(h *result.Hypothesis, dense bool) page.Verdict {
 			b.Reading = []page.Inline{page.Text("Reading: "), page.Strong(name), page.Text(" – " + words + ".")}
 		}
 	}
-	b.Region = page.T(v.regionText())
+	if s := v.regionText(); s != "" {
+		b.Region = page.T(s)
+	}
 	b.Figure = c.beam(h, dense)
 	return b
 }
@@ -257,6 +259,9 @@ func (v voice) regionText() string {
 		}
 	}
 	if s == "" {
+		if v.h.Reading.OK && judged(v.h.Verdict) {
+			return "" // the reading says it
+		}
 		return "No smallest effect that matters was stated."
 	}
 	if why != "" {

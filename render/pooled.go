@@ -109,10 +109,7 @@ func (c *composer) modelTable(group []*result.Pooled, o *result.Outcome) {
 
 // heterogeneity prints how far the studies differ.
 func (c *composer) heterogeneity(group []*result.Pooled, o *result.Outcome) {
-	for _, p := range group {
-		if !p.Q.OK {
-			continue
-		}
+	for _, p := range spreadModel(group) {
 		var f facts
 		f.add("Q", number.Statistic(p.Q)+" on "+number.DF(p.QDF)+" df, "+number.PEquals(p.QP))
 		f.add("I²", withLimits(number.ShareOpt(p.I2), p.I2Low, p.I2High, number.Share))
@@ -124,10 +121,19 @@ func (c *composer) heterogeneity(group []*result.Pooled, o *result.Outcome) {
 		}
 		c.heading(3, "How far the studies differ ("+modelName(p)+")", "")
 		f.to(c, 2)
-		if p.Model == "random" || len(group) == 1 {
-			return
+	}
+}
+
+// spreadModel is the model that says how far studies differ: the random one
+// where there is one; none where Q was not computed.
+func spreadModel(group []*result.Pooled) []*result.Pooled {
+	var found []*result.Pooled
+	for _, p := range group {
+		if p.Q.OK && (len(found) == 0 || p.Model == "random") {
+			found = []*result.Pooled{p}
 		}
 	}
+	return found
 }
 
 // withLimits is "34.0 % (0.0 % to 71.2 %)".

@@ -19,7 +19,7 @@ type Group struct {
 // Groups is the figure of group summaries: means with one standard deviation
 // to each side, or shares as filled bars.
 type Groups struct {
-	Axis Axis // of the means; shares run from 0 to 1
+	Axis Axis // of the means or shares; that of shares begins at 0
 	Rows []Group
 }
 
@@ -39,9 +39,7 @@ func (g Groups) Draw() *page.Drawing {
 		c.label(Width-edge, y+3, fitText(r.Text, labelSize, 112), labelSize, page.Black, page.End, false)
 		switch {
 		case r.Share.OK:
-			share := Axis{Lo: 0, Hi: 1}.At(r.Share.V)
-			c.add(page.Rect{X: f.x0, Y: y - 4, W: f.x1 - f.x0, H: 8, Fill: page.Paper, Outline: &hairline})
-			c.add(page.Rect{X: f.x0, Y: y - 4, W: share * (f.x1 - f.x0), H: 8, Fill: ink})
+			c.add(page.Rect{X: f.x0, Y: y - 4, W: g.Axis.At(r.Share.V) * (f.x1 - f.x0), H: 8, Fill: ink})
 		case r.Mean.OK && !math.IsNaN(r.Mean.V):
 			if r.SD > 0 && !math.IsInf(r.SD, 0) {
 				x0, x1 := f.x(g.Axis, r.Mean.V-r.SD), f.x(g.Axis, r.Mean.V+r.SD)
