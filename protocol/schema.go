@@ -78,7 +78,8 @@ func tableSchema(table string) object {
 	return append(o, member{"additionalProperties", false})
 }
 
-// keySchema is the schema of one key.
+// keySchema is the schema of one key. It is long because it has a case for each
+// kind.
 func keySchema(k *record.Key) object {
 	o := object{{"description", description(k)}}
 	if k.Path == "steelyard" {
