@@ -4,13 +4,18 @@ import (
 	"slices"
 	"strings"
 
+	"steelyard/compute/effect"
+	"steelyard/compute/family"
 	"steelyard/protocol/card"
 	"steelyard/protocol/data"
+	"steelyard/protocol/read"
+	"steelyard/protocol/seal"
+	"steelyard/protocol/wording"
 )
 
 // cards joins the cards of all packages.
 func cards() []card.Card {
-	return slices.Concat(data.Cards)
+	return slices.Concat(effect.Cards, family.Cards, read.Cards, data.Cards, seal.Cards, wording.Cards)
 }
 
 // kindName is a kind of card for readers.

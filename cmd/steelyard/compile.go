@@ -171,7 +171,7 @@ func (a *app) showCompiled(w batch.Worker, r batch.Report) {
 		a.trouble(r.Err)
 		return
 	}
-	if line := outcome(r, w.Strict); w.Print == nil {
+	if line := outcome(r, w.Strict, true); w.Print == nil {
 		a.say.Sayf("%s: %s", shownPath(r.Record), line)
 	} else if a.say.ErrTerminal {
 		a.say.Noticef("%s: %s", shownPath(r.Record), line)

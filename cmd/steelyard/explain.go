@@ -48,11 +48,11 @@ rule or formula, what must hold for it, where it is published, and an example.`,
 
 // writeCard prints one card for a reader at a prompt.
 func writeCard(b *strings.Builder, c card.Card, width int) {
-	fmt.Fprintf(b, "%s · %s", c.Word, kindName(c.Kind))
+	first := c.Word + " · " + kindName(c.Kind)
 	if len(c.Of) > 0 {
-		fmt.Fprintf(b, " of %s", strings.Join(c.Of, ", "))
+		first += " of " + strings.Join(c.Of, ", ")
 	}
-	b.WriteByte('\n')
+	fold(b, first, "", width)
 	if c.Title != "" {
 		fold(b, c.Title, "", width)
 	}

@@ -17,9 +17,9 @@ func shownPath(r batch.Found) string {
 	return r.Path
 }
 
-// outcome is what became of a record, in one line: verdicts, faults, files,
-// time.
-func outcome(r batch.Report, strict bool) string {
+// outcome is what became of a record, in one line: verdicts, faults, the files
+// where they are asked for, time.
+func outcome(r batch.Report, strict, files bool) string {
 	var parts []string
 	c := r.Compiled
 	if c.Failed(strict) {
@@ -31,7 +31,7 @@ func outcome(r batch.Report, strict bool) string {
 		if n := c.Diagnostics.Count(diag.SeverityWarning); n > 0 {
 			parts = append(parts, term.Count(n, "warning"))
 		}
-		if len(r.Wrote) > 0 {
+		if files && len(r.Wrote) > 0 {
 			parts = append(parts, "wrote "+strings.Join(r.Wrote, ", "))
 		}
 	}

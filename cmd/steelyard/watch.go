@@ -139,7 +139,7 @@ func (h *handler) show(r batch.Report) {
 		h.trouble(r.Err)
 		return
 	}
-	h.line(r.Record.Path, outcome(r, h.worker.Strict))
+	h.line(r.Record.Path, outcome(r, h.worker.Strict, false))
 	c := r.Compiled
 	h.say.PrintErr(term.Diagnostics(c.Diagnostics, c.Loaded.Source, r.Record.Path, h.say.ErrColor()))
 }
