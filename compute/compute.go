@@ -11,7 +11,6 @@ import (
 	"steelyard/protocol"
 	"steelyard/protocol/diag"
 	"steelyard/protocol/record"
-	"steelyard/protocol/seal"
 )
 
 // Run computes everything the record asks for. The record must have no
@@ -25,15 +24,21 @@ func Run(in *protocol.Loaded, engine string) *result.Result {
 		return r.res
 	}
 	r.studies()
+	r.decide()
+	r.sensitivities()
+	r.beliefs()
+	r.sealedPlan()
+	r.finish()
+	return r.res
+}
+
+// decide computes every hypothesis and settles its verdict.
+func (r *run) decide() {
 	for _, h := range r.rec.Plan.Hypotheses {
 		r.hypothesis(h)
 	}
 	r.families()
 	r.settle()
-	r.sensitivities()
-	r.beliefs()
-	r.finish()
-	return r.res
 }
 
 // run is one computation of one record.
@@ -52,10 +57,12 @@ func newRun(in *protocol.Loaded, engine string) *run {
 	if r.level == 0 {
 		r.level = 0.95
 	}
-	r.seed = seal.Seed(in.PlanSHA256)
-	if r.rec.Plan.Seed.Stated {
-		r.seed = uint64(r.rec.Plan.Seed.V)
+	sealed := ""
+	if in.Seal != nil {
+		sealed = in.Seal.PlanSHA256()
 	}
+	r.seed = seedOf(r.rec.Plan, sealed, in.PlanSHA256)
+	r.res.Seal = sealOf(in.Seal)
 	return r
 }
 

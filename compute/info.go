@@ -19,11 +19,11 @@ func (r *run) describe() {
 	h := r.rec.Head
 	sum := sha256.Sum256(r.in.Source.Text)
 	r.res.Record = result.Record{Title: h.Title.V, Number: h.Number.V, Version: h.Version.V, Status: h.Status.V,
-		Setting: h.Setting.V, Stage: r.stage(), Date: r.rec.Dated(), SourceSHA256: hex.EncodeToString(sum[:]), PlanSHA256: r.in.PlanSHA256}
+		Setting: h.Setting.V, Stage: r.stage(), Date: r.rec.Dated(r.sealDays()...), SourceSHA256: hex.EncodeToString(sum[:]), PlanSHA256: r.in.PlanSHA256}
 	if r.res.Record.Status == "" {
 		r.res.Record.Status = "draft"
 	}
-	r.res.Seal = result.Seal{State: "unsealed", Order: "unsealed"}
+	r.res.Seal = sealOf(r.in.Seal)
 	for _, o := range r.rec.Plan.Outcomes {
 		if m := record.MeasureOf(o.Measure.V); m != nil {
 			r.res.Outcomes = append(r.res.Outcomes, outcomeOf(o, m))
@@ -105,49 +105,72 @@ func (r *run) resultAt(entry int) *record.Result {
 
 // choices lists every analysis choice and where it came from.
 func (r *run) choices() {
-	add := func(what, value string, stated bool, why string) {
+	add := func(what, value string, stated bool, why, path string) {
 		from := "default"
-		if stated {
+		switch {
+		case r.deviates(path):
+			from = "deviation"
+		case stated:
 			from = "plan"
 		}
 		r.res.Choices = append(r.res.Choices, result.Choice{What: what, Value: value, From: from, Why: why})
 	}
 	p := r.rec.Plan
 	if p.Alpha.OneSided.Stated {
-		add("one-sided error level", number(p.Alpha.OneSided.V), true, p.AlphaWhy.V)
+		add("one-sided error level", number(p.Alpha.OneSided.V), true, p.AlphaWhy.V, "plan.alpha.one_sided")
 	}
 	if p.Alpha.TwoSided.Stated {
-		add("two-sided error level", number(p.Alpha.TwoSided.V), true, p.AlphaWhy.V)
+		add("two-sided error level", number(p.Alpha.TwoSided.V), true, p.AlphaWhy.V, "plan.alpha.two_sided")
 	}
-	add("level of descriptive intervals", number(r.level), p.Level.Stated, "")
+	add("level of descriptive intervals", number(r.level), p.Level.Stated, "", "plan.level")
 	if r.drawsRandom() {
-		add("seed of random draws", strconv.FormatUint(r.seed, 10), p.Seed.Stated, "")
+		add("seed of random draws", strconv.FormatUint(r.seed, 10), p.Seed.Stated, "", "plan.seed")
 	}
 	for _, o := range r.res.Outcomes {
 		rec := r.rec.OutcomeNamed(o.Name)
-		add(o.Name+": measure", o.Measure, true, "")
+		add(o.Name+": measure", o.Measure, true, "", "plan.outcome."+o.Name+".measure")
 		if o.Low.OK {
-			add(o.Name+": region too small to matter", number(o.Low.V)+" to "+number(o.High.V), true, o.Why)
+			add(o.Name+": region too small to matter", number(o.Low.V)+" to "+number(o.High.V), true, o.Why, "plan.outcome."+o.Name+".smallest")
 		}
-		add(o.Name+": better", o.Better, rec.Better.Stated, "")
+		add(o.Name+": better", o.Better, rec.Better.Stated, "", "plan.outcome."+o.Name+".better")
 	}
 	for i, t := range r.tried {
 		h := r.res.Hypotheses[i]
-		add(h.Name+": claim", h.Claim, true, "")
+		at := "plan.hypothesis." + h.Name + "."
+		add(h.Name+": claim", h.Claim, true, "", at+"claim")
 		if h.Alpha > 0 {
-			add(h.Name+": error level", number(h.Alpha), true, "")
+			add(h.Name+": error level", number(h.Alpha), true, "", at+"alpha")
 		}
 		if t.h.Margin.Stated {
-			add(h.Name+": margin", number(h.MarginLow.V)+" to "+number(h.MarginHigh.V), true, h.MarginWhy)
+			add(h.Name+": margin", marginText(h), true, h.MarginWhy, at+"margin")
 		}
 		if h.Judged.Method != "" {
-			add(h.Name+": method", h.Judged.Method, t.h.Method.Stated, "")
+			add(h.Name+": method", h.Judged.Method, t.h.Method.Stated, "", at+"method")
 		}
-		add(h.Name+": evidence", h.Evidence, t.h.Evidence.Stated, "")
+		add(h.Name+": evidence", h.Evidence, t.h.Evidence.Stated, "", at+"evidence")
 		if t.h.Studies.Stated {
-			add(h.Name+": studies", strings.Join(record.Texts(t.h.Studies), ", "), true, "")
+			add(h.Name+": studies", strings.Join(record.Texts(t.h.Studies), ", "), true, "", at+"studies")
 		}
 	}
+}
+
+// marginText is a margin as its points.
+func marginText(h result.Hypothesis) string {
+	var ends []string
+	for _, o := range []result.Opt{h.MarginLow, h.MarginHigh} {
+		if o.OK {
+			ends = append(ends, number(o.V))
+		}
+	}
+	return strings.Join(ends, " to ")
+}
+
+// deviates reports whether a declared deviation changed the key at a path, or
+// the table that holds it.
+func (r *run) deviates(path string) bool {
+	return slices.ContainsFunc(r.res.Seal.Changes, func(c result.Change) bool {
+		return c.Declared && (c.Path == path || strings.HasPrefix(path, c.Path+".") || strings.HasPrefix(c.Path, path+"."))
+	})
 }
 
 // drawsRandom reports whether any analysis used the seed.
@@ -179,6 +202,11 @@ func (r *run) timeline() {
 			day(res.Day(), "result", res.Study.V+", "+res.Outcome.V)
 		}
 	}
+	if r.in.Seal != nil {
+		for _, e := range r.in.Seal.Entries {
+			all = append(all, result.Event{At: e.Time.Format("2006-01-02 15:04 UTC"), Sort: e.Time.UTC().Format(sortable), Kind: "seal", What: fmt.Sprintf("seal %d of the plan", e.Number)})
+		}
+	}
 	for _, d := range rec.Deviations {
 		day(d.Date.V, "deviation", d.What.V)
 		if d.Approved != nil {
@@ -202,6 +230,9 @@ func (r *run) timeline() {
 	r.res.Timeline = append(r.res.Timeline, all...)
 }
 
+// sortable orders instants of Greenwich as text.
+const sortable = "2006-01-02T15:04:05.000000000"
+
 func instant(at record.Instant, kind, what string) result.Event {
-	return result.Event{At: at.V.Format("2006-01-02 15:04 -07:00"), Sort: at.V.UTC().Format("2006-01-02T15:04:05.000000000"), Kind: kind, What: what}
+	return result.Event{At: at.V.Format("2006-01-02 15:04 -07:00"), Sort: at.V.UTC().Format(sortable), Kind: kind, What: what}
 }

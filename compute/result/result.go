@@ -35,6 +35,7 @@ type Result struct {
 	Studies     []Study      // every entry, in record order: results, earlier, missing
 	Totals      []GroupTotal // page one: counts per outcome of a primary hypothesis and group, over its analysed entries
 	Hypotheses  []Hypothesis
+	Removed     []Hypothesis // of the sealed plan, gone from the plan now
 	Pooled      []Pooled
 	Combined    []Combined
 	Families    []Family
@@ -79,6 +80,16 @@ type Seal struct {
 	Changes       []Change
 	EditedResults []ResultName
 	Broken        string // which entry, and how
+	Amendments    []Amendment
+	Vanished      []string // dates of sealed deviations that are changed or gone
+	Unreadable    []string // why the sealed plan could not be computed
+}
+
+// Amendment is what one seal changed in the plan of the seal before it.
+type Amendment struct {
+	Number  int
+	At      string // RFC 3339, UTC
+	Changes []Change
 }
 
 // Change is one difference between the sealed plan and the plan now.
@@ -91,7 +102,12 @@ type Change struct {
 }
 
 // ResultName names an entry.
-type ResultName struct{ Study, Outcome, Set, Look string }
+type ResultName struct {
+	Study, Outcome, Set, Look string
+	File                      string // the data file that was changed; "" when the entry was
+	Removed, Declared         bool
+	Seal                      int // the first seal that knew it otherwise
+}
 
 // Outcome describes one outcome on its own scale.
 type Outcome struct {
