@@ -23,6 +23,7 @@ type compileFlags struct {
 	strict bool
 	print  string
 	part   string
+	index  bool
 }
 
 func (a *app) compileCommand() *cobra.Command {
@@ -47,6 +48,7 @@ write is not overwritten.`,
 	f.common(cmd)
 	cmd.Flags().StringVar(&f.print, "print", "", "write json or text to standard output, and no file")
 	cmd.Flags().StringVar(&f.part, "part", "", "I/N: every N-th record, beginning with the I-th")
+	cmd.Flags().BoolVar(&f.index, "index", false, "also write index.json: every record with its verdicts and outputs")
 	complete(cmd, "print", []string{"json", "text"})
 	return cmd
 }
@@ -97,8 +99,8 @@ func (a *app) compile(cmd *cobra.Command, args []string, f compileFlags) error {
 		if !ok || form == pipeline.PDF {
 			return fmt.Errorf("--print %q: allowed are json, text", f.print)
 		}
-		if cmd.Flags().Changed("to") || f.out != "" {
-			return errors.New("--print writes no file: it goes without --to and --out")
+		if cmd.Flags().Changed("to") || f.out != "" || f.index {
+			return errors.New("--print writes no file: it goes without --to, --out and --index")
 		}
 		w.Print, w.Forms, w.Text.Color = &form, nil, a.say.OutColor()
 	}
@@ -114,7 +116,24 @@ func (a *app) compile(cmd *cobra.Command, args []string, f compileFlags) error {
 			return fmt.Errorf("%w: compile them apart, or with their folder as the one PATH", err)
 		}
 	}
-	return a.each(cmd, w, list, a.showCompiled)
+	if !f.index {
+		return a.each(cmd, w, list, a.showCompiled)
+	}
+	var x index
+	dir := indexFolder(f.out, args)
+	if err := indexClash(w, list, dir); err != nil {
+		return err
+	}
+	failed := a.each(cmd, w, list, func(w batch.Worker, r batch.Report) {
+		a.showCompiled(w, r)
+		x.add(dir, r)
+	})
+	path, err := x.write(dir)
+	if err != nil {
+		return worldError{err}
+	}
+	a.say.Sayf("%s: index of %s", path, term.Count(len(x.Records), "record"))
+	return failed
 }
 
 // find turns arguments and --part into records.
