@@ -14,5 +14,4 @@ var NotReady = []string{
 
 // NotReadyWords lists, per key, the words of its closed list that this version
 // does not compute yet. Measures say so themselves (Measure.Ready).
-var NotReadyWords = map[string][]string{
-}
+var NotReadyWords = map[string][]string{}
