@@ -91,6 +91,10 @@ func (c *composer) numbersOf(v voice) {
 		f.add("Events", number.Count(h.Events.V))
 	}
 	f.add("Method", h.Method)
+	f.add("Set", h.Set)
+	if len(h.Studies) > 0 && h.Evidence == "single" {
+		f.add("Study", join(h.Studies))
+	}
 	if h.Claim != "describe" {
 		f.add("Error level", strings.TrimPrefix(v.atError(), "at "))
 	}

@@ -1,6 +1,7 @@
 package render
 
 import (
+	"slices"
 	"strings"
 
 	"steelyard/compute/result"
@@ -41,6 +42,7 @@ func (c *composer) studyTables() {
 func (c *composer) studyTable(o *result.Outcome) {
 	t := newTable(o.Label+": results, each analysed alone"+inUnit(number.Of(o)), "Study", "Set", "Known", "Look", ">n", "#Estimate", "Interval", "#p at the null", "Use")
 	var why list
+	var methods []string
 	for i := range c.res.Studies {
 		s := &c.res.Studies[i]
 		if s.Outcome != o.Name {
@@ -54,13 +56,19 @@ func (c *composer) studyTable(o *result.Outcome) {
 		}
 		p := ""
 		switch {
+		case s.BareP != nil && s.Use != result.MaskedUse:
+			p = bareText(s.BareP)
 		case s.P.OK:
 			p = number.P(s.P)
-		case s.BareP != nil && !c.res.Masked:
-			p = bareText(s.BareP)
+		}
+		if m := s.Analysis.Method; m != "" && !slices.Contains(methods, m) {
+			methods = append(methods, m)
 		}
 		row := t.row(s.Study, s.Set, dateText(s.Date), s.Look, n, sh.Estimate, withLevel(sh.Bare(), s.Analysis.Level), p, useText(s.Use))
 		row.Grey = s.Use != result.Analysed && s.Use != result.MaskedUse
+	}
+	if len(methods) > 0 {
+		t.note("Method: " + join(methods) + ".")
 	}
 	t.to(c)
 	why.to(c)
@@ -256,9 +264,9 @@ func (c *composer) totalsTable() {
 
 // fileTable prints data files with digests and dropped rows by reason.
 func (c *composer) fileTable() {
-	t := newTable("Data files", "File", "Outcome", "Set", ">Rows", ">Used", "Dropped")
+	t := newTable("Data files", "File", "Result", "Set", ">Rows", ">Used", "Dropped")
 	for _, f := range c.res.Files {
-		t.row(f.Path, outcomeLabel(c.res, f.Outcome), f.Set, number.Int(f.Rows), number.Int(f.Used), droppedText(f.Dropped))
+		t.row(f.Path, resultName(c.res, &f), f.Set, number.Int(f.Rows), number.Int(f.Used), droppedText(f.Dropped))
 	}
 	t.to(c)
 	var fs facts
@@ -272,12 +280,12 @@ func (c *composer) fileTable() {
 	fs.to(c, 1)
 }
 
-// outcomeLabel is an outcome's label, "" for no outcome.
-func outcomeLabel(res *result.Result, name string) string {
-	if name == "" {
-		return ""
+// resultName names the entry that a file serves.
+func resultName(res *result.Result, f *result.File) string {
+	if f.Outcome == "" {
+		return f.Study
 	}
-	return outcomeOf(res, name).Label
+	return strings.Trim(f.Study+", "+outcomeOf(res, f.Outcome).Label, ", ")
 }
 
 // droppedText counts rows by reason and group.

@@ -268,7 +268,22 @@ func (c *composer) changeCounts() string {
 	if words > 0 {
 		parts = append(parts, number.Int(words)+number.Hard+"of wording only")
 	}
-	parts = append(parts, plural(len(s.EditedResults), "sealed result changed later", "sealed results changed later"))
+	edits, known := plural(len(s.EditedResults), "sealed result changed later", "sealed results changed later"), 0
+	for _, e := range s.EditedResults {
+		if e.Declared {
+			known++
+		}
+	}
+	if known > 0 {
+		edits += " (" + number.Int(known) + number.Hard + "declared)"
+	}
+	parts = append(parts, edits)
+	if n := len(c.res.Removed); n > 0 {
+		parts = append(parts, plural(n, "sealed hypothesis removed", "sealed hypotheses removed"))
+	}
+	if n := len(s.Vanished); n > 0 {
+		parts = append(parts, plural(n, "sealed deviation changed or gone", "sealed deviations changed or gone"))
+	}
 	if n := len(c.rec.Deviations); n > 0 {
 		parts = append(parts, plural(n, "deviation", "deviations"))
 	}

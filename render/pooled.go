@@ -51,7 +51,7 @@ func (c *composer) pooledGroup(group []*result.Pooled) {
 		title += ", set " + d.Set
 	}
 	c.heading(2, title, "")
-	c.para("Studies: " + join(d.Studies) + ". The plan's model decides: " + modelName(d) + ".")
+	c.para("Studies: " + join(d.Studies) + ". The plan's model decides" + forHypotheses(d.Hypotheses) + ": " + modelName(d) + ".")
 	if d.Model == "random" {
 		c.small("Under the random-effects model the claim is about the mean over settings like these, not about each of them.")
 	}
@@ -65,6 +65,14 @@ func (c *composer) pooledGroup(group []*result.Pooled) {
 	if len(d.LeftForZero) > 0 {
 		c.para("Left out of the pooling because no group has an event (or all have): " + join(d.LeftForZero) + ".")
 	}
+}
+
+// forHypotheses is " H1 and H2", "" for none.
+func forHypotheses(names []string) string {
+	if len(names) == 0 {
+		return ""
+	}
+	return " " + join(names)
 }
 
 // modelName is "random effects (reml), hartung-knapp interval".

@@ -11,12 +11,14 @@ func hypothesisObject(res *result.Result, h *result.Hypothesis) *object {
 	o.str("outcome", h.Outcome)
 	o.str("claim", h.Claim)
 	o.text("role", h.Role)
+	o.text("statement", h.Statement)
 	if h.Claim != "describe" {
 		o.number("alpha", h.Alpha)
 	}
 	if h.MarginLow.OK && h.MarginHigh.OK {
 		o.list("margin", []any{finite(h.MarginLow.V), finite(h.MarginHigh.V)})
 	}
+	o.text("margin_why", h.MarginWhy)
 	o.opt("limit", h.Limit)
 	o.text("evidence", h.Evidence)
 	o.some("studies", words(h.Studies))

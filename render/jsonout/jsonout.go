@@ -35,6 +35,7 @@ func document(in *protocol.Loaded, res *result.Result) *object {
 	o.put("outcomes", outcomesObject(res))
 	o.list("studies", each(res.Studies, func(s *result.Study) *object { return studyObject(s) }))
 	o.list("hypotheses", each(res.Hypotheses, func(h *result.Hypothesis) *object { return hypothesisObject(res, h) }))
+	o.some("removed_hypotheses", each(res.Removed, func(h *result.Hypothesis) *object { return hypothesisObject(res, h) }))
 	o.list("pooled", each(res.Pooled, pooledObject))
 	o.list("combined", each(res.Combined, combinedObject))
 	o.list("families", each(res.Families, familyObject))
@@ -141,8 +142,29 @@ func sealObject(res *result.Result) *object {
 		x.str("outcome", e.Outcome)
 		x.text("set", e.Set)
 		x.text("look", e.Look)
+		x.text("file", e.File)
+		x.flag("removed", e.Removed)
+		x.flag("declared", e.Declared)
+		if e.Seal > 0 {
+			x.integer("seal", e.Seal)
+		}
 		return x
 	}))
+	o.some("vanished_deviations", words(s.Vanished))
+	o.some("amendments", each(s.Amendments, func(a *result.Amendment) *object {
+		x := &object{}
+		x.integer("seal", a.Number)
+		x.str("at", a.At)
+		x.list("changed", each(a.Changes, func(ch *result.Change) *object {
+			y := &object{}
+			y.str("path", ch.Path)
+			y.text("old", ch.Old)
+			y.text("new", ch.New)
+			return y
+		}))
+		return x
+	}))
+	o.some("not_computed", words(s.Unreadable))
 	o.text("broken", s.Broken)
 	return o
 }
@@ -158,6 +180,7 @@ func outcomesObject(res *result.Result) *object {
 		o.opt("null", x.Null)
 		o.opt("low", x.Low)
 		o.opt("high", x.High)
+		o.text("why", x.Why)
 		o.text("better", x.Better)
 		if x.Groups[0] != "" {
 			o.list("groups", words(x.Groups[:]))
@@ -215,6 +238,8 @@ func studyObject(s *result.Study) *object {
 	}
 	o.str("use", string(s.Use))
 	o.text("why", s.Why)
+	o.text("source", s.Source)
+	o.text("file", s.File)
 	return o
 }
 

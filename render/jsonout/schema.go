@@ -117,6 +117,7 @@ func schema() *object {
 		must("outcomes", outcomesSchema()),
 		must("studies", array(studySchema())),
 		must("hypotheses", array(hypothesisSchema())),
+		may("removed_hypotheses", array(hypothesisSchema())),
 		must("pooled", array(pooledSchema())),
 		must("combined", array(combinedSchema())),
 		must("families", array(familySchema())),

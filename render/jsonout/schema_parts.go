@@ -16,19 +16,21 @@ func resultNameFields() []field {
 func sealSchema() *object {
 	return fields(may("state", oneOf("unsealed", "sealed", "changed", "broken")), must("entries", integer()), may("first_at", text()), may("last_at", text()), may("plan_sha256", text()),
 		may("order", oneOf("before-results", "same-day", "after-results", "unsealed")), must("declared", array(text())), must("undeclared", array(text())), may("wording", array(text())),
-		must("edited_results", array(fields(resultNameFields()...))), may("broken", text()))
+		must("edited_results", array(fields(append(resultNameFields(), may("file", text()), must("removed", yesNo()), must("declared", yesNo()), may("seal", integer()))...))),
+		may("vanished_deviations", array(text())), may("amendments", array(fields(must("seal", integer()), must("at", text()), must("changed", array(fields(must("path", text()), may("old", text()), may("new", text()))))))),
+		may("not_computed", array(text())), may("broken", text()))
 }
 
 func outcomesSchema() *object {
 	return openObject(fields(must("label", text()), may("unit", text()), must("measure", text()), may("scale", oneOf("identity", "log", "logit", "atanh")),
-		may("null", number()), may("low", number()), may("high", number()), may("better", oneOf("higher", "lower", "neither")), may("groups", array(text()))))
+		may("null", number()), may("low", number()), may("high", number()), may("why", text()), may("better", oneOf("higher", "lower", "neither")), may("groups", array(text()))))
 }
 
 func studySchema() *object {
 	given := fields(must("value", number()), must("sides", integer()), may("direction", text()), may("relation", text()), may("n", number()))
 	return fields(joinFields(must("study", text()), must("outcome", text()), may("set", text()), may("date", text()), may("look", text()), may("n", number()), may("events", number()),
 		analysisFields(), withLn("p"), may("given_p", given),
-		must("use", oneOf("analysed", "left-out", "earlier", "superseded", "masked", "missing", "not-computed")), may("why", text()))...)
+		must("use", oneOf("analysed", "left-out", "earlier", "superseded", "masked", "missing", "not-computed")), may("why", text()), may("source", text()), may("file", text()))...)
 }
 
 func hypothesisSchema() *object {
@@ -36,8 +38,8 @@ func hypothesisSchema() *object {
 	check := fields(must("assumption", text()), must("shows", array(fields(must("what", text()), may("group", text()), must("value", number())))))
 	next := fields(must("no_size", yesNo()), may("new_study_n80", number()), may("new_study_n90", number()), may("added_n80", number()), may("added_n90", number()), may("excluded_below", number()), may("excluded_above", number()))
 	other := array(fields(joinFields(may("because", text()), judgedFields())...))
-	return fields(joinFields(must("name", text()), must("outcome", text()), must("claim", text()), may("role", oneOf("primary", "secondary", "exploratory")), may("alpha", number()),
-		may("margin", pair), may("limit", number()), may("evidence", oneOf(evidenceWords...)), may("studies", array(text())), judgedFields(),
+	return fields(joinFields(must("name", text()), must("outcome", text()), must("claim", text()), may("role", oneOf("primary", "secondary", "exploratory")), may("statement", text()), may("alpha", number()),
+		may("margin", pair), may("margin_why", text()), may("limit", number()), may("evidence", oneOf(evidenceWords...)), may("studies", array(text())), judgedFields(),
 		must("post_hoc", yesNo()), must("sentence", text()), must("interval_decides", yesNo()), may("descriptive", fields(analysisFields()...)),
 		may("curve", array(pair)), may("assumptions", array(check)), may("what_next", next), may("by_set", other), may("alternatives", other))...)
 }
