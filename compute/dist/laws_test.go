@@ -341,4 +341,3 @@ func TestFaultsOfTheCallerPanic(t *testing.T) {
 		}()
 	}
 }
-
