@@ -219,7 +219,9 @@ var twoRisksCards = []card.Card{
 		Meaning:     "Every stratum is compared within itself, and the comparisons are weighted into one effect. The test of no association over the strata stands beside it. It reads individual rows, with `strata` naming their column.",
 		Formula:     "With N = n1 + n2 in each stratum: OR = Σx1(n2 - x2)/N / Σx2(n1 - x1)/N; RR = Σx1n2/N / Σx2n1/N; RD = Σw(p1 - p2)/Σw, w = n1n2/N; rates with exposures for n. Wald limits on the analysis scale.",
 		Assumptions: "One common effect; independent subjects within the strata. Strata without both groups drop out, with a count.",
-		Source:      "Mantel and Haenszel 1959; variances of Robins, Breslow and Greenland 1986 (odds ratio), Greenland and Robins 1985 (ratios), Sato 1989 (risk difference); from memory"},
+		Source:      "Mantel and Haenszel 1959; variances of Robins, Breslow and Greenland 1986 (odds ratio), Greenland and Robins 1985 (ratios), Sato 1989 (risk difference); from memory",
+		Example: countExample("measure = \"risk-difference\"\n", twoGroupsNamed, "mantel-haenszel\"\nstrata  = \"clinic",
+			"data = { file = \"visits.csv\", event = \"event\", group = \"arm\" }\n")},
 }
 
 var twoRatesCards = []card.Card{

@@ -81,6 +81,37 @@ current,11.2,7.2
 current,11.8,6.6
 current,12.3,6.7
 current,11.1,7.4
+`, "pairs.csv": `morning,evening
+11.2,10.1
+12.9,12.6
+10.4,11.0
+13.1,11.9
+11.8,11.1
+12.2,10.3
+10.9,10.7
+14.0,12.4
+12.5,12.1
+11.6,9.9
+13.4,13.6
+10.1,9.8
+`, "visits.csv": `event,arm,clinic
+1,new,north
+0,new,north
+0,new,north
+0,new,north
+0,new,north
+1,current,north
+1,current,north
+0,current,north
+0,current,north
+1,new,south
+0,new,south
+0,new,south
+0,new,south
+1,current,south
+1,current,south
+0,current,south
+0,current,south
 `, "values.csv": "recovery\n50.9\n49.8\n51.7\n50.2\n52.4\n48.9\n51.1\n50.6\n"}
 }
 

@@ -4,7 +4,6 @@ import (
 	"bytes"
 	"slices"
 	"testing"
-	"testing/fstest"
 
 	"steelyard/protocol"
 	"steelyard/protocol/card"
@@ -15,10 +14,7 @@ import (
 // TestMeansCards: every method of means has one card, whose example is a
 // record without errors that names the method.
 func TestMeansCards(t *testing.T) {
-	files := fstest.MapFS{}
-	for name, text := range ExampleFiles() {
-		files[name] = &fstest.MapFile{Data: []byte(text)}
-	}
+	files := exampleFiles()
 	for _, c := range meansCards {
 		if c.Kind != card.Method && c.Kind != card.Measure || c.Title == "" || c.Meaning == "" || c.Formula == "" || c.Assumptions == "" || c.Source == "" {
 			t.Errorf("card %q is incomplete", c.Word)
