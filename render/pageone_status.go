@@ -361,6 +361,16 @@ func (c *composer) supported(primary []*result.Hypothesis, dense bool) (yes, no 
 	return yes, no
 }
 
+// anyJudged reports whether a claim has been decided or left open by results.
+func (c *composer) anyJudged(hs []*result.Hypothesis) bool {
+	for _, h := range hs {
+		if judged(h.Verdict) || h.Verdict == result.Described {
+			return true
+		}
+	}
+	return false
+}
+
 // supports prints the two lists under their headings.
 func (c *composer) supports(primary []*result.Hypothesis) {
 	yes, no := c.supported(primary, false)
@@ -369,7 +379,14 @@ func (c *composer) supports(primary []*result.Hypothesis) {
 		yes.to(c)
 	}
 	if len(no.items) > 0 {
-		c.heading(2, "What they do not support", "")
+		title := "What they do not support"
+		if len(yes.items) == 0 {
+			title = "What the results do not support"
+			if !c.anyJudged(primary) {
+				title = "Not judged yet"
+			}
+		}
+		c.heading(2, title, "")
 		no.to(c)
 	}
 }
