@@ -178,8 +178,8 @@ func (r *run) drawsRandom() bool {
 	return slices.ContainsFunc(r.res.Hypotheses, func(h result.Hypothesis) bool { return h.Judged.Method == "permutation" })
 }
 
-// number is a value as a user would type it.
-func number(v float64) string { return strconv.FormatFloat(v, 'g', -1, 64) }
+// number is a value as a user would type it, to six digits.
+func number(v float64) string { return strconv.FormatFloat(v, 'g', 6, 64) }
 
 // timeline gathers what happened, in order. Dates without a time of day come
 // before instants of the same day, and say that their order is not proved.
