@@ -176,7 +176,7 @@ func (c *composer) sourcesNote() string {
 
 // groupTable prints the numbers of each group as the entry gave them.
 func (c *composer) groupTable() {
-	t := newTable("The numbers by group", "Study", "Outcome", "Set", "Group", ">n", "#Mean", "#SD", "#Median", ">Events", ">Exposure", "#r", ">Missing")
+	t := newTable("The numbers by group", "Study", "Outcome", "Set", "Group", ">n", "#Mean", "#SD", "#Median", ">Events", ">Exposure", "#r", ">Missing or dropped")
 	for i := range c.res.Studies {
 		s := &c.res.Studies[i]
 		if s.Use == result.MaskedUse {
@@ -241,7 +241,7 @@ func (c *composer) flowTable() {
 // totalsTable prints what may be shown while results are masked.
 func (c *composer) totalsTable() {
 	c.small("Some results are masked: of these only totals over all groups are shown.")
-	t := newTable("Totals of masked results", "Study", "Outcome", ">n", "#SD, labels ignored", ">Events", ">Exposure", ">Missing")
+	t := newTable("Totals of masked results", "Study", "Outcome", ">n", "#SD, labels ignored", ">Events", ">Exposure", ">Missing or dropped")
 	for i := range c.res.Studies {
 		s := &c.res.Studies[i]
 		if s.Use != result.MaskedUse {

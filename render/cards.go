@@ -3,17 +3,21 @@ package render
 import (
 	"slices"
 
+	"steelyard/compute/combine"
 	"steelyard/compute/effect"
+	"steelyard/compute/family"
 	"steelyard/protocol/card"
 )
 
 // methodCards joins the cards of the packages whose methods a record can use.
-func methodCards() []card.Card { return effect.Cards }
+func methodCards() []card.Card {
+	return slices.Concat(effect.Cards, family.Cards, combine.Cards)
+}
 
 // findCard finds the card of a used word; nil when there is none. A method's
 // card must name the measure or none.
-func findCard(w usedWord) *card.Card {
-	for _, k := range methodCards() {
+func findCard(cards []card.Card, w usedWord) *card.Card {
+	for _, k := range cards {
 		if k.Kind != w.kind || k.Word != w.word {
 			continue
 		}

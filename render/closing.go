@@ -86,10 +86,10 @@ func (c *composer) cautions() {
 
 // methods lists the methods used with their published sources.
 func (c *composer) methods() {
-	used := c.usedWords()
+	used, cards := c.usedWords(), methodCards()
 	t := newTable("", "Word", "Method", "Rule", "Assumes", "Source")
 	for _, w := range used {
-		if k := findCard(w); k != nil {
+		if k := findCard(cards, w); k != nil {
 			t.row(w.word, k.Title, k.Formula, k.Assumptions, k.Source)
 		}
 	}

@@ -162,7 +162,7 @@ func groupParts(g *result.GroupNumbers) []string {
 		add(g.Analysed, "analysed")
 	}
 	if g.Missing > 0 {
-		p = append(p, number.Int(g.Missing)+number.Hard+"missing")
+		p = append(p, number.Int(g.Missing)+number.Hard+"missing or dropped")
 	}
 	return p
 }
