@@ -83,13 +83,36 @@ func (c *composer) numbers(primary []*result.Hypothesis) string {
 			}
 		}
 	}
-	if len(parts) > 4 {
-		return "Listed by study and group under What arrived."
+	planned := c.plannedSizes(primary)
+	switch {
+	case len(parts) > 4:
+		return strings.TrimSpace(planned + " Arrived: listed by study and group under What arrived.")
+	case len(parts) == 0:
+		return planned
 	}
-	if len(parts) == 0 {
+	return strings.TrimSpace(planned + " " + capital(strings.Join(parts, "; ")) + ".")
+}
+
+// plannedSizes are the planned numbers of the primary claims.
+func (c *composer) plannedSizes(primary []*result.Hypothesis) string {
+	var out []string
+	for i := range c.res.Sizes {
+		s := &c.res.Sizes[i]
+		for _, h := range primary {
+			if h.Name != s.Hypothesis || len(s.N) == 0 {
+				continue
+			}
+			var n []string
+			for _, x := range s.N {
+				n = append(n, number.Count(x))
+			}
+			out = append(out, h.Name+" "+strings.Join(n, " + "))
+		}
+	}
+	if len(out) == 0 {
 		return ""
 	}
-	return strings.Join(parts, "; ") + "."
+	return "Planned for analysis: " + strings.Join(out, "; ") + "."
 }
 
 // denseNumbers are the same in one line: "planned / analysed: new 24 / 23".
@@ -285,7 +308,16 @@ func (c *composer) changeCounts() string {
 		parts = append(parts, plural(n, "sealed deviation changed or gone", "sealed deviations changed or gone"))
 	}
 	if n := len(c.rec.Deviations); n > 0 {
-		parts = append(parts, plural(n, "deviation", "deviations"))
+		text, known := plural(n, "deviation", "deviations"), 0
+		for _, d := range c.rec.Deviations {
+			if d.ResultsKnown.V {
+				known++
+			}
+		}
+		if known > 0 {
+			text += " (" + number.Int(known) + number.Hard + "with results known)"
+		}
+		parts = append(parts, text)
 	}
 	return strings.Join(parts, "; ") + "."
 }

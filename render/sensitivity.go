@@ -15,7 +15,7 @@ func (c *composer) sensitivityOf(v voice) {
 		c.heading(3, "Sensitivity analysis "+s.Name+": "+kindText(s.Kind), "")
 		c.marginSensitivity(v, s)
 		if len(s.Judged) > 0 {
-			t := v.judgedTable("", "Under")
+			t := v.judgedTable("Verdict under each", "Under")
 			agree := 0
 			for k := range s.Judged {
 				j := &s.Judged[k]
