@@ -260,6 +260,9 @@ func groupsShown(checks []result.Check) []string {
 func shownFor(shows []result.Shown, what, group string) string {
 	for _, s := range shows {
 		if s.What == what && s.Group == group {
+			if s.What == "p" {
+				return number.P(result.P{P: s.Value, OK: true})
+			}
 			return number.Short(s.Value, 3)
 		}
 	}

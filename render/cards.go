@@ -3,15 +3,18 @@ package render
 import (
 	"slices"
 
+	"steelyard/compute/belief"
+	"steelyard/compute/claim"
 	"steelyard/compute/combine"
 	"steelyard/compute/effect"
 	"steelyard/compute/family"
+	"steelyard/compute/survival"
 	"steelyard/protocol/card"
 )
 
 // methodCards joins the cards of the packages whose methods a record can use.
 func methodCards() []card.Card {
-	return slices.Concat(effect.Cards, family.Cards, combine.Cards)
+	return slices.Concat(effect.Cards, survival.Cards, claim.Cards, family.Cards, combine.Cards, belief.Cards)
 }
 
 // findCard finds the card of a used word; nil when there is none. A method's

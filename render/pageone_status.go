@@ -90,7 +90,7 @@ func (c *composer) numbers(primary []*result.Hypothesis) string {
 	case len(parts) == 0:
 		return planned
 	}
-	return strings.TrimSpace(planned + " " + capital(strings.Join(parts, "; ")) + ".")
+	return strings.TrimSpace(planned + " " + strings.Join(parts, "; ") + ".")
 }
 
 // plannedSizes are the planned numbers of the primary claims.
