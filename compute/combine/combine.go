@@ -12,16 +12,20 @@ import (
 	"math"
 
 	"steelyard/compute/dist"
+	"steelyard/compute/numeric"
 )
 
 // Methods lists the methods by their words in the record.
 var Methods = []string{"fisher", "stouffer", "tippett", "pearson", "edgington", "logit", "cauchy", "harmonic"}
 
-// Combined is a combined one-sided p-value with the statistic it comes from.
+// Combined is a combined one-sided p-value with the statistic it comes from:
+// −2Σln p (fisher), −2Σln(1−p) (pearson), the weighted z (stouffer), the
+// smallest p (tippett), Σp (edgington), Σln((1−p)/p) (logit), the mean
+// cotangent (cauchy), Σ1/p (harmonic). It may be infinite.
 type Combined struct {
 	P         dist.Tail
 	Statistic float64
-	DF        float64 // 0: none
+	DF        float64 // of fisher and pearson; 0: none
 }
 
 // Combine puts k >= 1 independent one-sided p-values together. Weights serve
@@ -77,154 +81,135 @@ func endOf(method string) float64 {
 	return math.Inf(-1)
 }
 
-// fisher: -2 sum ln p is chi-square with 2k degrees of freedom (Fisher 1932,
-// from memory).
+// sumOf adds f over the p-values, compensated. Infinite terms stay infinite.
+func sumOf(p []dist.Tail, f func(dist.Tail) float64) float64 {
+	var s numeric.Acc
+	for _, t := range p {
+		v := f(t)
+		if math.IsInf(v, 0) {
+			return v
+		}
+		s.Add(v)
+	}
+	return s.Value()
+}
+
+// zero says whether some p is 0.
+func zero(p []dist.Tail) bool {
+	for _, t := range p {
+		if math.IsInf(t.LnP, -1) {
+			return true
+		}
+	}
+	return false
+}
+
+// fisher refers −2Σln p to chi-square with 2k degrees of freedom (Fisher
+// 1932, from memory).
 func fisher(p []dist.Tail) Combined {
-	var s float64
-	for _, t := range p {
-		s -= 2 * t.LnP
-	}
-	df := float64(2 * len(p))
-	return Combined{P: dist.ChiSquareUpper(s, df), Statistic: s, DF: df}
+	x := -2 * sumOf(p, func(t dist.Tail) float64 { return t.LnP })
+	df := 2 * float64(len(p))
+	return Combined{P: dist.ChiSquareUpper(x, df), Statistic: x, DF: df}
 }
 
-// pearson: -2 sum ln(1-p), lower tail (Pearson 1933, from memory).
+// pearson refers −2Σln(1−p) to the lower tail of the same law (Pearson 1933,
+// from memory).
 func pearson(p []dist.Tail) Combined {
-	var s float64
-	for _, t := range p {
-		s -= 2 * t.LnQ
+	k := float64(len(p))
+	x := -2 * sumOf(p, func(t dist.Tail) float64 { return t.LnQ })
+	if x < 1e-250 { // −Σln(1−p) is Σp; only the leading term of the tail counts
+		return Combined{P: lnPowerTail(lnSum(p), k), Statistic: x, DF: 2 * k}
 	}
-	df := float64(2 * len(p))
-	return Combined{P: dist.ChiSquareUpper(s, df).Complement(), Statistic: s, DF: df}
+	return Combined{P: dist.ChiSquareUpper(x, 2*k).Complement(), Statistic: x, DF: 2 * k}
 }
 
-// stouffer: weighted normal deviates (Stouffer et al. 1949, from memory).
+// lnSum is ln Σp, also where the sum is too small for a float.
+func lnSum(p []dist.Tail) float64 {
+	top := math.Inf(-1)
+	for _, t := range p {
+		top = max(top, t.LnP)
+	}
+	if math.IsInf(top, -1) {
+		return top
+	}
+	return top + math.Log(sumOf(p, func(t dist.Tail) float64 { return math.Exp(t.LnP - top) }))
+}
+
+// lnPowerTail is the Tail of x^k/k!.
+func lnPowerTail(lnx, k float64) dist.Tail {
+	if math.IsInf(lnx, -1) {
+		return dist.TailOf(0)
+	}
+	lg, _ := math.Lgamma(k + 1)
+	return dist.TailOfLn(min(0, k*lnx-lg))
+}
+
+// stouffer adds weighted normal deviates (Stouffer et al. 1949, from memory).
 func stouffer(p []dist.Tail, weights []float64) Combined {
-	var s, ss float64
+	if zero(p) {
+		return Combined{P: dist.TailOf(0), Statistic: math.Inf(1)}
+	}
+	var sum, square numeric.Acc
 	for i, t := range p {
 		w := 1.0
 		if weights != nil {
 			w = weights[i]
 		}
-		s += w * t.Normal()
-		ss += w * w
+		sum.Add(w * t.Normal())
+		square.Add(w * w)
 	}
-	z := s / math.Sqrt(ss)
+	z := sum.Value() / math.Sqrt(square.Value())
 	return Combined{P: dist.NormalUpper(z), Statistic: z}
 }
 
-// tippett: the smallest p (Tippett 1931, from memory).
+// tippett looks at the smallest p alone (Tippett 1931, from memory).
 func tippett(p []dist.Tail) Combined {
 	least := p[0]
 	for _, t := range p {
-		if t.LnP < least.LnP {
+		if t.LnP < least.LnP || t.LnP == least.LnP && t.LnQ > least.LnQ {
 			least = t
 		}
 	}
 	k := float64(len(p))
-	lnq := k * least.LnQ // ln of the chance that all k are larger
-	q := math.Exp(lnq)
-	out := dist.Tail{P: -math.Expm1(lnq), Q: q, LnQ: lnq}
-	out.LnP = math.Log(out.P)
-	if least.LnP < -600 {
+	lnq := k * least.LnQ
+	out := dist.Tail{P: -math.Expm1(lnq), Q: math.Exp(lnq), LnQ: lnq}
+	if out.P > 1e-290 {
+		out.LnP = math.Log(out.P)
+	} else {
 		out.LnP = math.Log(k) + least.LnP
+	}
+	if out.Q < 0.5 {
+		out.LnP = math.Log1p(-out.Q)
 	}
 	return Combined{P: out, Statistic: least.P}
 }
 
-// edgington: the sum of the p-values against the distribution of a sum of
-// uniform ones (Edgington 1972, from memory).
-func edgington(p []dist.Tail) Combined {
-	var s, c float64
-	for _, t := range p {
-		s += t.P
-		c += t.Q
-	}
-	k := len(p)
-	if s <= c {
-		ln := lnUniformSum(k, s)
-		return Combined{P: tailOfLn(ln), Statistic: s}
-	}
-	return Combined{P: tailOfLn(lnUniformSum(k, c)).Complement(), Statistic: s}
-}
-
-func tailOfLn(ln float64) dist.Tail {
-	if math.IsInf(ln, -1) {
-		return certain.Complement()
-	}
-	return dist.TailOfLn(math.Min(0, ln))
-}
-
-// lnUniformSum is ln P(U1 + … + Uk <= s) by the recursion whose terms are all
-// positive: F_n(x) = [x F_{n-1}(x) + (n-x) F_{n-1}(x-1)]/n; many
-// terms go by the contour.
-func lnUniformSum(k int, s float64) float64 {
-	switch {
-	case s <= 0:
-		return math.Inf(-1)
-	case s <= 1:
-		g, _ := math.Lgamma(float64(k) + 1)
-		return float64(k)*math.Log(s) - g
-	}
-	if k > manyUniforms {
-		return lnUniformSumContour(k, s)
-	}
-	f := make([]float64, int(math.Floor(s))+2)
-	for j := 0; s-float64(j) >= 0; j++ {
-		f[j] = 1
-	}
-	for n := 1; n <= k; n++ {
-		m := float64(n)
-		for j := 0; j < len(f)-1; j++ {
-			x := s - float64(j)
-			switch {
-			case x <= 0:
-				f[j] = 0
-			case x >= m:
-				f[j] = 1
-			default:
-				f[j] = (x*f[j] + (m-x)*f[j+1]) / m
-			}
-		}
-	}
-	return math.Log(f[0])
-}
-
-// cauchy: the mean of cot(pi p) is itself Cauchy (Liu & Xie 2020, from memory).
+// cauchy averages cotangents (Liu and Xie 2020, from memory).
 func cauchy(p []dist.Tail) Combined {
-	var t float64
-	least := 0.0
-	for _, x := range p {
-		least = math.Min(least, x.LnP)
-		switch {
-		case x.P > 0.5:
-			t -= cot(x.Q)
-		case x.P > 1e-290:
-			t += cot(x.P)
-		}
+	if zero(p) {
+		return Combined{P: dist.TailOf(0), Statistic: math.Inf(1)}
 	}
 	k := float64(len(p))
-	t /= k
-	if least < -660 { // beyond 1e-287 the sum is that of the smallest alone
-		var sum float64
-		for _, x := range p {
-			sum += math.Exp(least - x.LnP)
-		}
-		ln := least + math.Log(k) - math.Log(sum)
-		return Combined{P: dist.TailOfLn(ln), Statistic: math.Exp(math.Min(709, -ln)) / math.Pi}
+	least := 0.0
+	for _, t := range p {
+		least = min(least, t.LnP)
 	}
-	var up, down float64
-	if t > 0 {
-		up = math.Atan(1/t) / math.Pi
-		down = 0.5 + math.Atan(t)/math.Pi
-	} else {
-		up = 0.5 - math.Atan(t)/math.Pi
-		down = 0.5
-		if t < 0 {
-			down = math.Atan(-1/t) / math.Pi
-		}
+	if least < -660 { // 1/p may overflow: only the largest terms count
+		s := sumOf(p, func(t dist.Tail) float64 { return math.Exp(least - t.LnP) })
+		lnp := least + math.Log(k) - math.Log(s)
+		return Combined{P: dist.TailOfLn(lnp), Statistic: math.Exp(-lnp) / math.Pi}
 	}
-	return Combined{P: dist.Tail{P: up, Q: down, LnP: math.Log(up), LnQ: math.Log(down)}, Statistic: t}
+	t := sumOf(p, func(t dist.Tail) float64 {
+		if t.P > 0.5 {
+			return -1 / math.Tan(math.Pi*t.Q)
+		}
+		return 1 / math.Tan(math.Pi*t.P)
+	}) / k
+	switch {
+	case t > 0:
+		return Combined{P: dist.TailOf(math.Atan(1/t) / math.Pi), Statistic: t}
+	case t < 0:
+		return Combined{P: dist.TailOf(math.Atan(-1/t) / math.Pi).Complement(), Statistic: t}
+	}
+	return Combined{P: dist.TailOf(0.5)}
 }
-
-func cot(x float64) float64 { return 1 / math.Tan(math.Pi*x) }

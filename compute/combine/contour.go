@@ -8,176 +8,183 @@ import (
 	"steelyard/compute/numeric"
 )
 
-// logit: the sum of ln((1-p)/p) against the exact distribution of a sum of k
-// logistic variables (statistic of Mudholkar & George 1979, from memory; their
-// t approximation is not used).
-func logit(p []dist.Tail) Combined {
-	var x float64
-	for _, t := range p {
-		x += t.LnQ - t.LnP
-	}
-	if x < 0 {
-		return Combined{P: logisticSum(len(p), -x).Complement(), Statistic: x}
-	}
-	return Combined{P: logisticSum(len(p), x), Statistic: x}
-}
-
-// logisticSum is P(sum of k logistics > x) for x >= 0, by the trapezoidal rule
-// along the steepest vertical line in the plane of the moment generating
-// function (pi s/sin pi s)^k.
-func logisticSum(k int, x float64) dist.Tail {
-	n := float64(k)
-	// delta = 1 - c, where c solves k (1/c - pi cot pi c) - x - 1/c = 0.
-	f := func(lnd float64) float64 {
-		d := math.Exp(lnd)
-		c := 1 - d
-		return n*(1/c+math.Pi/math.Tan(math.Pi*d)) - x - 1/c
-	}
-	lo, hi := math.Log(math.Min(0.1, n/(n+x+1)/10)), math.Log(1-1e-9)
-	lnd, ok := numeric.Root(f, lo, hi, 1e-14)
-	if !ok {
-		lnd = math.Log(0.5)
-	}
-	d := math.Exp(lnd)
-	c := 1 - d
-	sin := math.Sin(math.Pi * d)
-	sigma := 1 / math.Sqrt(n*(math.Pi*math.Pi/(sin*sin)-1/(c*c))+1/(c*c))
+// lineIntegral is ln of (1/π)∫₀^∞ Re exp(g(c+iy)) dy by the trapezoidal rule
+// on the line through the saddle point c, where exp(g) is real and falls
+// away like a normal density with deviation sigma; step sigma/6.
+func lineIntegral(g func(s complex128) complex128, c, sigma float64) float64 {
 	h := sigma / 6
-	g := func(y float64) complex128 {
-		s := complex(c, y)
-		q := cmplx.Sin(complex(math.Pi*d, -math.Pi*y))
-		return -s*complex(x, 0) + complex(n, 0)*cmplx.Log(complex(math.Pi, 0)*s/q) - cmplx.Log(s)
-	}
-	top := real(g(0))
-	sum := 0.5
-	for i := 1; i < 1_000_000; i++ {
-		y := h * float64(i)
-		if math.Pi*y > 600 {
-			break
-		}
-		e := g(y)
-		size := math.Exp(real(e) - top)
-		sum += size * math.Cos(imag(e))
+	top := real(g(complex(c, 0)))
+	var sum numeric.Acc
+	sum.Add(0.5)
+	for j := 1.0; j < 1e5; j++ {
+		l := g(complex(c, j*h))
+		size := math.Exp(real(l) - top)
+		sum.Add(size * math.Cos(imag(l)))
 		if size < 1e-18 {
 			break
 		}
 	}
-	return tailOfLn(top + math.Log(sum*h/math.Pi))
+	return top + math.Log(sum.Value()*h/math.Pi)
 }
 
-// manyUniforms is how many uniforms are enough for the contour: its integrand
-// falls off like |y|^-k.
-const manyUniforms = 100
+// logit refers Σln((1−p)/p) to the sum of k logistic variables, by its
+// Laplace transform (πs/sin πs)^k. The use of the logit is Mudholkar and
+// George's (1979, from memory); their t approximation is not used.
+func logit(p []dist.Tail) Combined {
+	if zero(p) {
+		return Combined{P: dist.TailOf(0), Statistic: math.Inf(1)}
+	}
+	x := sumOf(p, func(t dist.Tail) float64 { return t.LnQ - t.LnP })
+	t := dist.TailOfLn(min(0, logisticTail(math.Abs(x), float64(len(p)))))
+	if x < 0 {
+		return Combined{P: t.Complement(), Statistic: x}
+	}
+	return Combined{P: t, Statistic: x}
+}
 
-// lnUniformSumContour is ln P(U1 + … + Uk <= x) for 0 < x <= k/2 and many
-// uniforms, along the steepest vertical line of e^(sx) ((1-e^-s)/s)^k / s.
-func lnUniformSumContour(k int, x float64) float64 {
-	n := float64(k)
+// logisticTail is ln P(sum of k logistics > x), x >= 0.
+func logisticTail(x, k float64) float64 {
+	// The saddle c in (0, 1) solves k(1/c − π cot πc) − x − 1/c = 0. It is
+	// looked for on the logit scale so that 1 − c keeps its digits.
+	pair := func(u float64) (c, e float64) {
+		if u < 0 {
+			w := math.Exp(u)
+			return w / (1 + w), 1 / (1 + w)
+		}
+		w := math.Exp(-u)
+		return 1 / (1 + w), w / (1 + w)
+	}
+	slope := func(u float64) float64 {
+		c, e := pair(u)
+		var cot float64 // of πc
+		if c < 0.5 {
+			cot = 1 / math.Tan(math.Pi*c)
+		} else {
+			cot = -1 / math.Tan(math.Pi*e)
+		}
+		return (k-1)/c - k*math.Pi*cot - x
+	}
+	u, ok := numeric.Root(slope, -700, 700, 1e-8)
+	if !ok {
+		u = 0
+	}
+	c, e := pair(u)
+	sin := math.Sin(math.Pi * min(c, e))
+	sigma := 1 / math.Sqrt(k*(math.Pi*math.Pi/(sin*sin)-1/(c*c))+1/(c*c))
+	g := func(s complex128) complex128 {
+		// sin πs = sin π(1−s); 1−s keeps its digits through e.
+		near := s
+		if c > 0.5 {
+			near = complex(e, -imag(s))
+		}
+		ratio := complex(math.Pi, 0) * s / cmplx.Sin(complex(math.Pi, 0)*near)
+		return complex(-x, 0)*s + complex(k, 0)*cmplx.Log(ratio) - cmplx.Log(s)
+	}
+	return lineIntegral(g, c, sigma)
+}
+
+// edgington refers Σp to the sum of k uniform variables (Edgington 1972, from
+// memory), from whichever end is nearer.
+func edgington(p []dist.Tail) Combined {
+	k := float64(len(p))
+	low := sumOf(p, func(t dist.Tail) float64 { return t.P })
+	if 2*low <= k {
+		return Combined{P: uniformLower(p, low), Statistic: low}
+	}
+	flipped := make([]dist.Tail, len(p))
+	for i, t := range p {
+		flipped[i] = t.Complement()
+	}
+	high := sumOf(flipped, func(t dist.Tail) float64 { return t.P })
+	return Combined{P: uniformLower(flipped, high).Complement(), Statistic: low}
+}
+
+// recursionLimit is where the recursion gives way to the integral.
+const recursionLimit = 64
+
+// uniformLower is P(sum of k uniforms <= x) for x = Σp <= k/2.
+func uniformLower(p []dist.Tail, x float64) dist.Tail {
+	k := len(p)
+	if x <= 1 {
+		return lnPowerTail(lnSum(p), float64(k))
+	}
+	if k < recursionLimit {
+		return dist.TailOf(min(1, uniformRecursion(x, k)))
+	}
+	return dist.TailOfLn(min(0, uniformIntegral(x, float64(k))))
+}
+
+// uniformRecursion is F_k(x): F_n(y) = [y·F_{n−1}(y) + (n−y)·F_{n−1}(y−1)]/n,
+// all terms positive. k below recursionLimit.
+func uniformRecursion(x float64, k int) float64 {
+	var f [recursionLimit]float64 // F_n(x − j)
+	terms := min(int(x)+1, len(f))
+	for j := range terms {
+		f[j] = 1
+	}
+	for n := 1; n <= k; n++ {
+		m := float64(n)
+		for j := range terms {
+			y := x - float64(j)
+			switch {
+			case y >= m:
+				f[j] = 1
+			case y <= 0:
+				f[j] = 0
+			default:
+				below := 0.0
+				if j+1 < terms {
+					below = f[j+1]
+				}
+				f[j] = (y*f[j] + (m-y)*below) / m
+			}
+		}
+	}
+	return f[0]
+}
+
+// uniformIntegral is ln P(sum of k uniforms <= x), x <= k/2, by the inverse
+// Laplace transform of ((1−e^−s)/s)^k/s along the line through its saddle
+// point; its cost does not depend on k.
+func uniformIntegral(x, k float64) float64 {
+	d := k/2 - x // distance below the middle, >= 0
 	slope := func(lnc float64) float64 {
 		c := math.Exp(lnc)
-		return n*(1/math.Expm1(math.Min(c, 709))-1/c) + x - 1/c
+		return k*(0.5/math.Tanh(c/2)-1/c) - d - 1/c
 	}
-	lnc, ok := numeric.Root(slope, math.Log(1e-8), math.Log((n+1)/x+1), 1e-14)
+	lnc, ok := numeric.Root(slope, -40, 60, 1e-8)
 	if !ok {
 		lnc = 0
 	}
 	c := math.Exp(lnc)
-	half := 2 * math.Sinh(math.Min(c, 1400)/2)
-	h := 1 / math.Sqrt(n*(1/(c*c)-1/(half*half))+1/(c*c)) / 6
-	g := func(y float64) complex128 {
-		s := complex(c, y)
-		return s*complex(x, 0) + complex(n, 0)*cmplx.Log((1-cmplx.Exp(-s))/s) - cmplx.Log(s)
-	}
-	top := real(g(0))
-	sum := 0.5
-	for i := 1; i < 1_000_000; i++ {
-		e := g(h * float64(i))
-		size := math.Exp(real(e) - top)
-		sum += size * math.Cos(imag(e))
-		if size < 1e-18 {
-			break
+	sinh := math.Sinh(min(c/2, 300))
+	sigma := 1 / math.Sqrt(k*(1/(c*c)-0.25/(sinh*sinh))+1/(c*c))
+	g := func(s complex128) complex128 {
+		// ln[sinh(s/2)/(s/2)] = s/2 + ln[(1−e^−s)/s]
+		var q complex128
+		if cmplx.Abs(s) < 0.5 {
+			q = lnSinhc(s / 2)
+		} else {
+			q = s/2 + cmplx.Log((1-cmplx.Exp(-s))/s)
 		}
+		return complex(-d, 0)*s + complex(k, 0)*q - cmplx.Log(s)
 	}
-	return top + math.Log(sum*h/math.Pi)
+	return lineIntegral(g, c, sigma)
 }
 
-// harmonic: the sum of 1/p against the exact law of a sum of k reciprocals of
-// uniforms, the law behind the Landau limit (Wilson 2019, from memory).
-func harmonic(p []dist.Tail) Combined {
-	n := float64(len(p))
-	least := 0.0
-	for _, t := range p {
-		least = math.Min(least, t.LnP)
+// lnSinhc is ln(sinh z/z) for small z.
+func lnSinhc(z complex128) complex128 {
+	w := z * z
+	// sinh z/z − 1 = w/6·(1 + w/20·(1 + w/42·(1 + …)))
+	s := complex(1, 0)
+	for n := 9.0; n >= 1; n-- {
+		s = 1 + w/complex((2*n+2)*(2*n+3), 0)*s
 	}
-	var x float64 // in units of exp(-least)
-	for _, t := range p {
-		x += math.Exp(least - t.LnP)
-	}
-	lnx := math.Log(x) - least
-	if lnx > math.Log(n)+45 { // the next term is below 1e-17 of this one
-		return Combined{P: dist.TailOfLn(math.Log(n) - lnx), Statistic: math.Exp(math.Min(lnx, 709))}
-	}
-	x = math.Exp(lnx)
-	if x <= n*(1+1e-15) {
-		return Combined{P: certain, Statistic: x}
-	}
-	up := reciprocalSum(n, x)
-	return Combined{P: dist.TailOf(math.Min(1, math.Max(0, up))), Statistic: x}
+	return log1p(w / 6 * s)
 }
 
-// reciprocalSum is P(sum of k reciprocals of uniforms > x) as the integral
-// (1/pi) of exp(-tx) Im[(e^t - t Ei(t) + i pi t)^k] dt/t.
-func reciprocalSum(n, x float64) float64 {
-	f := func(t float64) float64 {
-		if t == 0 {
-			return n * math.Pi
-		}
-		re := math.Exp(t) - t*dist.Ei(t)
-		if t > 30 { // e^t (1 - t e^-t Ei(t)), the bracket without cancelling
-			re = -math.Exp(t) * tailOfEi(t)
-		}
-		ln := math.Log(math.Hypot(re, math.Pi*t))
-		angle := n * math.Atan2(math.Pi*t, re)
-		return math.Exp(n*ln-t*x) * math.Sin(angle) / t
-	}
-	total, a, b := 0.0, 0.0, 5/x
-	for range 200 {
-		// The angle turns quickly for large k: break at its half turns.
-		parts := math.Ceil(n*(angleAt(b)-angleAt(a))/math.Pi) + 1
-		parts = math.Min(parts, 4000)
-		breaks := make([]float64, int(parts)+1)
-		for i := range breaks {
-			breaks[i] = a + (b-a)*float64(i)/parts
-		}
-		piece := numeric.Integrate(f, breaks, 1e-13)
-		total += piece
-		if math.Abs(piece) < 1e-17*math.Abs(total) || b > 600 {
-			break
-		}
-		a, b = b, 2*b
-	}
-	return total / math.Pi
-}
-
-func angleAt(t float64) float64 {
-	if t == 0 {
-		return 0
-	}
-	if t > 30 {
-		return math.Pi
-	}
-	return math.Atan2(math.Pi*t, math.Exp(t)-t*dist.Ei(t))
-}
-
-// tailOfEi is t e^-t Ei(t) - 1 for large t: 1/t + 2/t^2 + ….
-func tailOfEi(t float64) float64 {
-	sum, term := 0.0, 1.0
-	for n := 1.0; n < t; n++ {
-		term *= n / t
-		sum += term
-		if term < 1e-17*sum {
-			break
-		}
-	}
-	return sum
+// log1p is ln(1+z) for |z| < 1/2.
+func log1p(z complex128) complex128 {
+	re := 0.5 * math.Log1p(real(z)*(2+real(z))+imag(z)*imag(z))
+	return complex(re, math.Atan2(imag(z), 1+real(z)))
 }
