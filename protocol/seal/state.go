@@ -140,7 +140,7 @@ func (s *State) bind(rec *record.Record) {
 	worst := map[string]int{BeforeResults: 0, SameDay: 1, AfterResults: 2}
 	binding := len(s.Entries)
 	for i, r := range rec.Results {
-		b := bindOf(s.Entries, r)
+		b := bindOf(unaware(s.Entries, r), r)
 		s.Binds[i] = b
 		binding = min(binding, max(b.Seal, 1))
 		if worst[b.Order] > worst[s.Order] {
@@ -148,6 +148,18 @@ func (s *State) bind(rec *record.Record) {
 		}
 	}
 	s.Binding = &s.Entries[binding-1]
+}
+
+// unaware are the seals that did not know a result yet. One that holds its
+// digest came after it, whatever date the result bears.
+func unaware(seals []Entry, r *record.Result) []Entry {
+	name := Name{"result", r.Study.V, r.Outcome.V, r.Set.V, lookText(r.Look)}
+	for i, e := range seals {
+		if slices.ContainsFunc(e.Results, func(k Sealed) bool { return k.Name == name }) {
+			return seals[:i]
+		}
+	}
+	return seals
 }
 
 // bindOf is the last seal that precedes a result, else the last that may
