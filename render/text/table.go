@@ -90,9 +90,15 @@ func fit(cells [][]string, room int) ([]int, bool) {
 		if natural[i] < 14 && widest(cells, i) > 3*natural[i] {
 			return nil, false // a tower of single words reads worse than a list
 		}
+		if widest(cells, i) > mostLines*natural[i] {
+			return nil, false
+		}
 	}
 	return natural, true
 }
+
+// mostLines is how many lines a cell may take before rows become lists.
+const mostLines = 5
 
 // widest is the natural width of a column.
 func widest(cells [][]string, i int) int {
