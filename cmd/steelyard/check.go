@@ -50,18 +50,18 @@ func (a *app) check(cmd *cobra.Command, args []string, format string, strict boo
 	}
 	w := batch.Worker{Rooms: a.rooms, Check: true, Strict: strict, Stdin: a.in, Now: a.now}
 	var reports []report
-	failed := a.each(cmd, w, list, func(_ batch.Worker, r batch.Report) {
+	failed := a.each(cmd, w, list, func(_ batch.Worker, r batch.Report) error {
 		if r.Err != nil {
 			a.trouble(r.Err)
-			return
+			return nil
 		}
 		c, path := r.Compiled, shownPath(r.Record)
 		if collect != nil {
 			reports = append(reports, report{path, c.Loaded.Source, c.Diagnostics})
-			return
+			return nil
 		}
-		a.say.Print(term.Diagnostics(c.Diagnostics, c.Loaded.Source, path, a.say.OutColor()))
 		a.say.PrintErr([]byte(path + ": " + term.Summary(c.Diagnostics) + "\n"))
+		return a.say.Print(term.Diagnostics(c.Diagnostics, c.Loaded.Source, path, a.say.OutColor()))
 	})
 	if collect != nil {
 		out, err := collect(reports)

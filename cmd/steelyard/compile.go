@@ -124,9 +124,9 @@ func (a *app) compile(cmd *cobra.Command, args []string, f compileFlags) error {
 	if err := indexClash(w, list, dir); err != nil {
 		return err
 	}
-	failed := a.each(cmd, w, list, func(w batch.Worker, r batch.Report) {
-		a.showCompiled(w, r)
+	failed := a.each(cmd, w, list, func(w batch.Worker, r batch.Report) error {
 		x.add(dir, r)
+		return a.showCompiled(w, r)
 	})
 	path, err := x.write(dir)
 	if err != nil {
@@ -156,14 +156,18 @@ func (a *app) find(args []string, part string) ([]batch.Found, error) {
 }
 
 // each does the work on every record, several at once, shows the reports in
-// order, and returns the highest exit code.
-func (a *app) each(cmd *cobra.Command, w batch.Worker, list []batch.Found, show func(batch.Worker, batch.Report)) error {
+// order, and returns the highest exit code. What cannot be shown counts as an
+// output that cannot be written.
+func (a *app) each(cmd *cobra.Command, w batch.Worker, list []batch.Found, show func(batch.Worker, batch.Report) error) error {
 	code := batch.ExitDone
 	err := batch.Ordered(cmd.Context(), len(list), a.workers,
 		func(i int) batch.Report { return w.Do(list[i]) },
 		func(_ int, r batch.Report) {
 			code = max(code, r.Exit(w.Strict))
-			show(w, r)
+			if err := show(w, r); err != nil {
+				a.say.Trouble(err)
+				code = batch.ExitWorld
+			}
 		})
 	if err != nil {
 		a.say.Noticef("interrupted")
@@ -176,25 +180,26 @@ func (a *app) each(cmd *cobra.Command, w batch.Worker, list []batch.Found, show 
 }
 
 // showCompiled reports on one record: what it prints, or one line.
-func (a *app) showCompiled(w batch.Worker, r batch.Report) {
+func (a *app) showCompiled(w batch.Worker, r batch.Report) error {
 	if r.Compiled != nil {
 		list := r.Compiled.Diagnostics
 		a.say.PrintErr(term.Diagnostics(list, r.Compiled.Loaded.Source, shownPath(r.Record), a.say.ErrColor()))
 	}
 	if r.Printed != nil {
-		if err := a.say.Print(r.Printed); err != nil && r.Err == nil {
-			r.Err = err
+		if err := a.say.Print(r.Printed); err != nil {
+			return err
 		}
 	}
 	if r.Err != nil {
 		a.trouble(r.Err)
-		return
+		return nil
 	}
 	if line := outcome(r, w.Strict, true); w.Print == nil {
 		a.say.Sayf("%s: %s", shownPath(r.Record), line)
 	} else if a.say.ErrTerminal {
 		a.say.Noticef("%s: %s", shownPath(r.Record), line)
 	}
+	return nil
 }
 
 // trouble reports a fault of the world, or of the program with the place

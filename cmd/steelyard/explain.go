@@ -41,7 +41,7 @@ rule or formula, what must hold for it, where it is published, and an example.`,
 				}
 				writeCard(&b, c, a.say.Width)
 			}
-			return a.say.Print([]byte(b.String()))
+			return a.print([]byte(b.String()))
 		},
 	}
 }

@@ -51,7 +51,7 @@ func (a *app) writeNew(path, measure, claim string) error {
 		return err
 	}
 	if path == "-" {
-		return a.say.Print([]byte(text))
+		return a.print([]byte(text))
 	}
 	f, err := os.OpenFile(path, os.O_WRONLY|os.O_CREATE|os.O_EXCL, 0o666)
 	if errors.Is(err, fs.ErrExist) {

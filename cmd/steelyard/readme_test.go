@@ -44,9 +44,9 @@ func TestReadme(t *testing.T) {
 	for name := range named {
 		t.Errorf("the README names the command %s, which does not exist", name)
 	}
-	for _, m := range regexp.MustCompile(`examples/[\w.-]+`).FindAll(text, -1) {
-		if _, err := os.Stat(filepath.Join("..", "..", string(m))); err != nil {
-			t.Errorf("the README names %s: %v", m, err)
+	for _, m := range regexp.MustCompile(`(examples/[\w.-]+)|\]\(([\w./-]+)\)`).FindAllSubmatch(text, -1) {
+		if _, err := os.Stat(filepath.Join("..", "..", string(m[1])+string(m[2]))); err != nil {
+			t.Errorf("the README names a file: %v", err)
 		}
 	}
 }

@@ -48,3 +48,11 @@ cannot be read, or an output that cannot be written.`,
 
 // workers is how many records are worked on at once.
 func workers() int { return runtime.GOMAXPROCS(0) }
+
+// print writes what was asked for to standard output.
+func (a *app) print(text []byte) error {
+	if err := a.say.Print(text); err != nil {
+		return worldError{err}
+	}
+	return nil
+}

@@ -24,9 +24,9 @@ With --output it prints the schema of what compile --to json writes.`,
 		ValidArgsFunction: cobra.NoFileCompletions,
 		RunE: func(*cobra.Command, []string) error {
 			if output {
-				return a.say.Print(jsonout.OutputSchema())
+				return a.print(jsonout.OutputSchema())
 			}
-			return a.say.Print(protocol.Schema())
+			return a.print(protocol.Schema())
 		},
 	}
 	cmd.Flags().BoolVar(&output, "output", false, "the schema of the JSON output instead")
