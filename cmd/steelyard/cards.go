@@ -1,11 +1,18 @@
 package main
 
 import (
+	"maps"
 	"slices"
 	"strings"
 
+	"steelyard/compute"
+	"steelyard/compute/belief"
+	"steelyard/compute/claim"
+	"steelyard/compute/combine"
 	"steelyard/compute/effect"
 	"steelyard/compute/family"
+	"steelyard/compute/pool"
+	"steelyard/compute/survival"
 	"steelyard/protocol/card"
 	"steelyard/protocol/data"
 	"steelyard/protocol/read"
@@ -15,7 +22,15 @@ import (
 
 // cards joins the cards of all packages.
 func cards() []card.Card {
-	return slices.Concat(effect.Cards, family.Cards, read.Cards, data.Cards, seal.Cards, wording.Cards)
+	return slices.Concat(effect.Cards, survival.Cards, claim.Cards, compute.Cards, family.Cards, pool.Cards, combine.Cards, belief.Cards,
+		read.Cards, data.Cards, seal.Cards, wording.Cards)
+}
+
+// exampleFiles are the data files that examples name, with their text.
+func exampleFiles() map[string]string {
+	files := effect.ExampleFiles()
+	maps.Copy(files, survival.ExampleFiles())
+	return files
 }
 
 // kindName is a kind of card for readers.
@@ -31,6 +46,8 @@ func kindName(k card.Kind) string {
 		return "diagnostic"
 	case card.Procedure:
 		return "procedure"
+	case card.Term:
+		return "term"
 	}
 	panic("steelyard: unknown kind of card")
 }

@@ -12,14 +12,15 @@ const (
 	Method
 	Claim
 	Diagnostic
-	Procedure // multiplicity, combination, pooling, spending
+	Procedure // multiplicity, combination, pooling, spending, sensitivity
+	Term      // a word of the printed record: readings, verdicts, S-value
 )
 
 // Card explains one word.
 type Card struct {
 	Kind        Kind
 	Word        string   // as written in a record, or the diagnostic's code
-	Of          []string // methods: the measures that have it
+	Of          []string // methods: the measures that have it; procedures: the keys that take the word, where the word alone is not clear
 	Title       string   // a few words
 	Meaning     string   // what it says, in plain words
 	Formula     string   // the formula or the rule
