@@ -29,12 +29,7 @@ func sealReport(s *sealed, width int) []byte {
 	if s.before != nil {
 		sealChanges(b, s)
 	}
-	b.Row("witness", "A seal proves what was promised, and its time only to those who trust the clock. Give the digest of the entry to somebody outside, such as a registry, an ethics office or a time-stamping authority (--request), and write down who saw it:")
-	b.Line("[[witness]]")
-	b.Line("seal = %d", e.Number)
-	b.Line(`what = "…"`)
-	b.Line(`reference = "…"`)
-	b.Line("at = …")
+	b.Row("witness", "The time of a seal is only as good as the clock and the file. Give the digest of the entry to somebody outside (a registry, an ethics office, a time-stamping authority: --request) and record it as [[witness]] with seal = %d, what, reference and at.", e.Number)
 	return b.Bytes()
 }
 

@@ -66,11 +66,12 @@ func Lock(path string, wait time.Duration) (unlock func(), err error) {
 
 // holder is what a lock says about its holder, if it is as Lock writes it.
 func holder(text []byte) string {
-	pid, ok := strings.CutPrefix(string(text), "process ")
+	by := strings.TrimSpace(string(text))
+	pid, ok := strings.CutPrefix(by, "process ")
 	if _, err := strconv.Atoi(pid); !ok || err != nil {
 		return ""
 	}
-	return string(text)
+	return by
 }
 
 // sweep removes what writers of a file left beside it when they were killed.
