@@ -162,7 +162,8 @@ func (a *app) each(cmd *cobra.Command, w batch.Worker, list []batch.Found, show 
 	code := batch.ExitDone
 	err := batch.Ordered(cmd.Context(), len(list), a.workers,
 		func(i int) batch.Report { return w.Do(list[i]) },
-		func(_ int, r batch.Report) {
+		func(i int, r batch.Report) {
+			defer a.say.Progress(i+1, len(list))
 			code = max(code, r.Exit(w.Strict))
 			if err := show(w, r); err != nil {
 				a.say.Trouble(err)

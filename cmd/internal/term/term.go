@@ -32,6 +32,8 @@ type Speaker struct {
 	ErrTerminal bool // the error stream is a terminal
 	Color       bool // emphasis is allowed on terminals
 	Width       int  // columns, at most MaxWidth
+
+	progress bool // a line of progress stands on the terminal
 }
 
 // New looks at the two streams and at the environment (NO_COLOR, TERM,
@@ -83,13 +85,39 @@ func (s *Speaker) Sayf(format string, args ...any) {
 func (s *Speaker) PrintErr(text []byte) {
 	s.mu.Lock()
 	defer s.mu.Unlock()
+	s.clear()
 	s.err.Write(text)
+}
+
+// Progress shows how far long work has come, on one line that the next message
+// replaces. It is shown only where nobody sees the work's own lines: the error
+// stream is a terminal and standard output is not.
+func (s *Speaker) Progress(done, of int) {
+	if !s.ErrTerminal || s.OutTerminal {
+		return
+	}
+	s.mu.Lock()
+	defer s.mu.Unlock()
+	s.clear()
+	if done < of {
+		fmt.Fprintf(s.err, "%d of %d", done, of)
+		s.progress = true
+	}
+}
+
+// clear takes the line of progress away.
+func (s *Speaker) clear() {
+	if s.progress {
+		io.WriteString(s.err, "\r\x1b[K")
+		s.progress = false
+	}
 }
 
 // Noticef writes one line about the program's own doings to the error stream.
 func (s *Speaker) Noticef(format string, args ...any) {
 	s.mu.Lock()
 	defer s.mu.Unlock()
+	s.clear()
 	fmt.Fprintf(s.err, "steelyard: "+format+"\n", args...)
 }
 

@@ -88,3 +88,26 @@ func TestSmallWords(t *testing.T) {
 		}
 	}
 }
+
+func TestProgress(t *testing.T) {
+	var out, errs strings.Builder
+	s := New(&out, &errs, func(string) string { return "" })
+	s.Progress(1, 3)
+	if errs.Len() > 0 {
+		t.Errorf("progress where there is no terminal: %q", errs.String())
+	}
+	s.ErrTerminal = true
+	s.Progress(1, 3)
+	s.Noticef("slow")
+	s.Progress(2, 3)
+	s.Progress(3, 3)
+	if got, want := errs.String(), "1 of 3\r\x1b[Ksteelyard: slow\n2 of 3\r\x1b[K"; got != want {
+		t.Errorf("%q, want %q", got, want)
+	}
+	errs.Reset()
+	s.OutTerminal = true
+	s.Progress(1, 3)
+	if errs.Len() > 0 || out.Len() > 0 {
+		t.Errorf("progress beside the work's own lines: %q", errs.String())
+	}
+}
