@@ -197,7 +197,7 @@ func (c *composer) timelineFigure() *page.Figure {
 
 // eventTime reads a date or an instant.
 func eventTime(s string) (time.Time, bool) {
-	for _, layout := range []string{time.RFC3339Nano, "2006-01-02", "2006-01-02 15:04 -07:00", "2006-01-02 15:04:05 -07:00", "2006-01-02 15:04:05Z07:00"} {
+	for _, layout := range []string{time.RFC3339Nano, "2006-01-02", "2006-01-02 15:04 -07:00", "2006-01-02 15:04:05 -07:00", "2006-01-02 15:04:05Z07:00", "2006-01-02 15:04 UTC"} {
 		if t, err := time.Parse(layout, s); err == nil {
 			return t, true
 		}

@@ -18,6 +18,7 @@ type Shown struct {
 	// stated; "" where it falls on none.
 	LowEqual, HighEqual string
 
+	power     int // values are written × 10^power; 0 for plain decimals
 	low, high float64
 	hasLow    bool
 	hasHigh   bool
@@ -35,36 +36,56 @@ func (f Format) Interval(est, low, high result.Opt, points ...float64) Shown {
 	s := Shown{hasLow: low.OK && !math.IsNaN(low.V), hasHigh: high.OK && !math.IsNaN(high.V), f: f}
 	s.low, s.high = low.V, high.V
 	spread := f.spread(est, low, high)
-	d := max(f.Digits, decimals(f.Show(spread)))
+	s.power = f.power(est, low, high)
+	scale := math.Pow(10, -float64(s.power))
+	d := decimals(f.Show(spread) * scale)
+	if s.power == 0 {
+		d = max(d, f.Digits)
+	}
 	if f.Ratio {
 		d = max(d, 2)
 	}
 	for _, c := range append(append([]float64(nil), points...), f.Ends...) {
-		d = f.apart(d, s.hasLow, low.V, c, spread)
-		d = f.apart(d, s.hasHigh, high.V, c, spread)
+		d = f.apart(d, scale, s.hasLow, low.V, c, spread)
+		d = f.apart(d, scale, s.hasHigh, high.V, c, spread)
 	}
 	s.Decimals = d
 	if est.OK {
-		s.Estimate = f.estimate(est.V, d)
+		s.Estimate = s.estimate(est.V)
 	}
 	if s.hasLow {
-		s.Low, s.LowEqual = fixed(f.Show(low.V), d), f.onPoint(low.V, points, spread)
+		s.Low, s.LowEqual = s.At(low.V), f.onPoint(low.V, points, spread)
 	}
 	if s.hasHigh {
-		s.High, s.HighEqual = fixed(f.Show(high.V), d), f.onPoint(high.V, points, spread)
+		s.High, s.HighEqual = s.At(high.V), f.onPoint(high.V, points, spread)
 	}
 	return s
 }
 
+// power is the power of ten that keeps very small and very large values
+// readable: that of the largest finite one; 0 between 1e-5 and 1e12.
+func (f Format) power(os ...result.Opt) int {
+	most := 0.0
+	for _, o := range os {
+		if v := math.Abs(f.Show(o.V)); o.OK && v > most && !math.IsInf(v, 0) {
+			most = v
+		}
+	}
+	if most == 0 || most >= 1e-5 && most < 1e12 {
+		return 0
+	}
+	return max(-300, min(300, int(math.Floor(math.Log10(most)))))
+}
+
 // estimate words an estimate at the end of its range.
-func (f Format) estimate(v float64, d int) string {
+func (s Shown) estimate(v float64) string {
 	switch {
 	case math.IsInf(v, 1):
 		return "infinite"
 	case math.IsInf(v, -1):
 		return Minus + "infinite"
 	}
-	return fixed(f.Show(v), d)
+	return s.At(v)
 }
 
 // spread is the half-width that sets the decimals: of the shorter arm for
@@ -105,13 +126,18 @@ func (f Format) spread(est, low, high result.Opt) float64 {
 
 // apart raises the decimals until the limit, as printed, stands on the same
 // side of the point, as printed, as it does in full.
-func (f Format) apart(d int, ok bool, limit, point, spread float64) int {
+func (f Format) apart(d int, scale float64, ok bool, limit, point, spread float64) int {
 	if !ok || math.IsInf(limit, 0) || math.IsInf(point, 0) || math.IsNaN(point) || near(limit, point, spread) {
 		return d
 	}
-	p := printed(f.Show(point), pointDecimals(f.Point(point)))
+	p := f.Show(point) * scale
+	if scale == 1 {
+		p = printed(p, pointDecimals(f.Point(point)))
+	} else { // without the dust of the product
+		p, _ = strconv.ParseFloat(strconv.FormatFloat(p, 'g', 12, 64), 64)
+	}
 	for ; d < maxDecimals; d++ {
-		v := printed(f.Show(limit), d)
+		v := printed(f.Show(limit)*scale, d)
 		if v != p && (v < p) == (limit < point) {
 			break
 		}
@@ -190,4 +216,10 @@ func (s Shown) EstimateUnit() string {
 }
 
 // At writes another value to the same decimals, without unit.
-func (s Shown) At(v float64) string { return fixed(s.f.Show(v), s.Decimals) }
+func (s Shown) At(v float64) string {
+	v = s.f.Show(v)
+	if s.power == 0 || v == 0 || math.IsInf(v, 0) || math.IsNaN(v) {
+		return fixed(v, s.Decimals)
+	}
+	return fixed(v*math.Pow(10, -float64(s.power)), s.Decimals) + Hard + "×" + Hard + "10^" + dress(strconv.Itoa(s.power))
+}

@@ -52,6 +52,9 @@ func TestInterval(t *testing.T) {
 		{"ratio, two decimals at least", ratio, opt(31), opt(5), opt(193), []float64{1}, "31.00|5.00 to 193.00|"},
 		{"ratio near zero, which is no ratio", ratio, opt(0.5), opt(0.0004), opt(2), []float64{1}, "0.5000|0.0004 to 2.0000|"},
 		{"ratio without upper limit", ratio, opt(inf), opt(1.3), opt(inf), []float64{1}, "infinite|1.30 or more, no upper limit|"},
+		{"very small", Format{Digits: 2, Unit: "mol"}, opt(3.14159e-9), opt(2.9e-9), opt(3.4e-9), []float64{3e-9}, "3.14_×_10^-9|2.90_×_10^-9 to 3.40_×_10^-9_mol|"},
+		{"very small, near a margin", Format{Digits: -1, Unit: "mol"}, opt(3.14159e-9), opt(2.99996e-9), opt(3.4e-9), []float64{3e-9}, "3.14159_×_10^-9|2.99996_×_10^-9 to 3.40000_×_10^-9_mol|"},
+		{"very large", newtons, opt(3.14159e20), opt(2.9e20), opt(3.4e20), nil, "3.14_×_10^20|2.90_×_10^20 to 3.40_×_10^20_N|"},
 		{"digits stated", Format{Digits: 3, Unit: "mm"}, opt(-4.7), opt(-9.07986), opt(-0.32014), nil, "-4.700|-9.080 to -0.320_mm|"},
 		{"just below a derived margin, which prints as 0.8333", ratio, opt(0.9), opt(0.8333333), opt(0.99), []float64{1 / 1.2}, "0.900|0.833 to 0.990|"},
 	} {
@@ -72,6 +75,10 @@ func TestLimitsKeepTheirSide(t *testing.T) {
 	for range 20000 {
 		point := math.Round(r.NormFloat64()*100) / 100
 		width := math.Pow(10, r.Float64()*6-4)
+		if size := r.IntN(3); size > 0 {
+			point *= math.Pow(10, float64(20*size-30))
+			width *= math.Pow(10, float64(20*size-30))
+		}
 		low := point + r.NormFloat64()*width*math.Pow(10, -r.Float64()*5)
 		high := low + width
 		s := f.Interval(opt(low+width/2), opt(low), opt(high), point)
@@ -79,13 +86,14 @@ func TestLimitsKeepTheirSide(t *testing.T) {
 			continue
 		}
 		got, err := parse(s.Low)
+		ulp := 0.5000001 * math.Pow(10, float64(s.power-s.Decimals))
 		if err != nil {
 			t.Fatal(err)
 		}
 		if got == point || (got < point) != (low < point) {
 			t.Fatalf("limit %v printed %q against point %v", low, s.Low, point)
 		}
-		if math.Abs(got-low) > 0.5000001*math.Pow(10, -float64(s.Decimals)) {
+		if math.Abs(got-low) > ulp {
 			t.Fatalf("limit %v printed %q", low, s.Low)
 		}
 	}
@@ -93,7 +101,7 @@ func TestLimitsKeepTheirSide(t *testing.T) {
 
 // parse reads a written number back.
 func parse(s string) (float64, error) {
-	return strconv.ParseFloat(strings.NewReplacer(Minus, "-", Thin, "").Replace(s), 64)
+	return strconv.ParseFloat(strings.NewReplacer(Minus, "-", Thin, "", Hard+"×"+Hard+"10^", "e").Replace(s), 64)
 }
 
 func TestP(t *testing.T) {
