@@ -183,16 +183,24 @@ func (c *composer) smallest(v voice) {
 	if !h.SmallestLimit.OK && !h.SmallestMargin.OK {
 		return
 	}
-	var s string
-	switch {
-	case h.Claim == "equivalent" && h.SmallestMargin.OK:
-		s = "The claim would be established for any region wider than " + v.marginWords(h.SmallestMargin.V)
-	case h.SmallestLimit.OK:
-		s = "The claim would be established for any margin beyond " + v.shown(&h.Judged).At(h.SmallestLimit.V) + unitTail(v)
-	default:
-		s = "The claim would be established for any margin beyond " + v.marginWords(h.SmallestMargin.V)
+	what := "margin beyond "
+	switch h.Claim {
+	case "equivalent":
+		what = "region wider than "
+	case "minimum-effect":
+		what = "smallest effect nearer the null than "
+	case "benefit-too-small":
+		what = "smallest effect beyond "
+	case "below":
+		what = "limit above "
+	case "above":
+		what = "limit below "
 	}
-	c.para(s + ". This margin was found after the data; it is not a claim.")
+	where := v.shown(&h.Judged).At(h.SmallestLimit.V) + unitTail(v)
+	if h.Claim == "equivalent" && h.SmallestMargin.OK || !h.SmallestLimit.OK {
+		where = v.marginWords(h.SmallestMargin.V)
+	}
+	c.para("The claim would be established for any " + what + where + ". This value was found after the data; it is not a claim.")
 }
 
 // marginWords is a distance from the null, or a factor.

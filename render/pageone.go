@@ -211,6 +211,9 @@ func (v voice) answer(j *result.Judged) []page.Inline {
 	if p := decidingP(j); p.OK && judged(j.Verdict) && !v.brief {
 		parts = append(parts, pName(j)+number.PEquals(p, v.h.Alpha))
 	}
+	if len(parts) == 0 {
+		return page.T("No estimate and no interval.")
+	}
 	in := page.T(strings.Join(parts, "; ") + ".")
 	if a := v.aside(j); a != "" && (!v.brief || s.LowEqual+s.HighEqual != "") {
 		in = append(in, page.Text(" "+a))
