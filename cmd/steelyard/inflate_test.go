@@ -11,7 +11,8 @@ import (
 )
 
 // inflated shows the contents of a PDF's pages as a person can read them:
-// every drawing operator, with text in characters and typefaces by name.
+// every drawing operator, with text in characters and typefaces by name; the
+// distances of kerning are left out.
 // Typefaces, colour profile and attachments themselves are left out.
 func inflated(file []byte) ([]byte, error) {
 	p := parts{}
@@ -42,7 +43,8 @@ var (
 	base      = regexp.MustCompile(`/BaseFont/[A-Z]{6}\+([A-Za-z-]+)`)
 	unicodes  = regexp.MustCompile(`/ToUnicode (\d+) 0 R`)
 	pairs     = regexp.MustCompile(`<([0-9A-F]{4})> <([0-9A-F]{4})>\n`)
-	shown     = regexp.MustCompile(`(?s)/(F[0-9a-f]{20,}) ([0-9.]+) Tf|\(((?:\\.|[^\\()])*)\) Tj`)
+	literal   = regexp.MustCompile(`(?s)\(((?:\\.|[^\\()])*)\)`)
+	shown     = regexp.MustCompile(`(?s)/(F[0-9a-f]{20,}) ([0-9.]+) Tf|\((?:\\.|[^\\()])*\) Tj|\[(?:\((?:\\.|[^\\()])*\)|[-0-9. ]+)*\] TJ`)
 	escapes   = regexp.MustCompile(`(?s)\\.`)
 )
 
@@ -91,7 +93,11 @@ func (p parts) page(dict []byte) ([]byte, error) {
 			current = faces[string(m[1])]
 			return fmt.Appendf(nil, "/%s %s Tf", current.name, m[2])
 		}
-		return []byte("(" + current.decode(m[3]) + ") Tj")
+		var text string
+		for _, part := range literal.FindAllSubmatch(op, -1) {
+			text += current.decode(part[1])
+		}
+		return fmt.Appendf(nil, "(%s) %s", text, op[len(op)-2:])
 	}), nil
 }
 
