@@ -1,6 +1,7 @@
 package read
 
 import (
+	"bytes"
 	"errors"
 	"fmt"
 	"sort"
@@ -118,6 +119,7 @@ func refused(p *parser, pieces []piece, err error) *statement {
 		span = s.span
 	}
 	span.End = min(span.End, s.span.End)
+	span.End -= len(p.text[span.Start:span.End]) - len(bytes.TrimRight(p.text[span.Start:span.End], " \t\r\n"))
 	if s.kind == keyValue {
 		s.value = &record.Node{Kind: record.UnreadNode, Span: s.value.Span}
 	}
