@@ -1,6 +1,7 @@
 package main
 
 import (
+	"fmt"
 	"maps"
 	"slices"
 	"strings"
@@ -52,15 +53,75 @@ func kindName(k card.Kind) string {
 	panic("steelyard: unknown kind of card")
 }
 
-// cardsOf finds the cards of a word; letters of codes may be small.
+// cardsOf finds the cards of a word. Letters of codes may be small, and the
+// words of a reading may be joined by hyphens; readings of an outcome without
+// a better direction are those of one with it.
 func cardsOf(word string) []card.Card {
 	var found []card.Card
 	for _, c := range cards() {
-		if strings.EqualFold(c.Word, word) {
+		if plainWord(c.Word) == plainWord(word) {
 			found = append(found, c)
 		}
 	}
+	if found == nil {
+		if w := neutral.Replace(word); w != word {
+			return cardsOf(w)
+		}
+	}
 	return found
+}
+
+var neutral = strings.NewReplacer("higher", "better", "lower", "worse")
+
+func plainWord(w string) string {
+	return strings.ReplaceAll(strings.ReplaceAll(strings.ToLower(w), ",", ""), " ", "-")
+}
+
+// explained finds what the arguments of explain mean: one word, perhaps of
+// several parts, or a word and the measure or key that it belongs to, or its
+// kind, where it has several meanings. Nothing found is an error that names
+// what is near.
+func explained(args []string) ([]card.Card, error) {
+	whole := strings.Join(args, " ")
+	if found := cardsOf(whole); found != nil {
+		return found, nil
+	}
+	for i := len(args) - 1; i > 0; i-- {
+		word, of := strings.Join(args[:i], " "), strings.Join(args[i:], " ")
+		all := cardsOf(word)
+		if all == nil {
+			continue
+		}
+		var found []card.Card
+		var places []string
+		for _, c := range all {
+			if belongs(c, of) {
+				found = append(found, c)
+			}
+			places = append(append(places, kindName(c.Kind)), c.Of...)
+		}
+		if found == nil {
+			slices.Sort(places)
+			return nil, fmt.Errorf("%q has no meaning for %q; it has one for %s", word, of, strings.Join(slices.Compact(places), ", "))
+		}
+		return found, nil
+	}
+	err := fmt.Errorf("nothing is known of %q", whole)
+	if n := near(whole); n != nil {
+		err = fmt.Errorf("%w; near it: %s", err, strings.Join(n, ", "))
+	}
+	return nil, err
+}
+
+// belongs reports whether a card's word belongs to a measure, a key or the
+// last part of one, or is of a kind.
+func belongs(c card.Card, of string) bool {
+	if strings.EqualFold(kindName(c.Kind), of) {
+		return true
+	}
+	return slices.ContainsFunc(c.Of, func(o string) bool {
+		return strings.EqualFold(o, of) || slices.Contains(strings.Split(o, "."), strings.ToLower(of))
+	})
 }
 
 // words lists the words that have a card, each once, in order.
@@ -85,7 +146,7 @@ func near(word string) []string {
 	for _, w := range words() {
 		low := strings.ToLower(w)
 		switch d := distance(word, low); {
-		case strings.Contains(low, word) || strings.Contains(word, low):
+		case len(word) > 2 && strings.Contains(low, word) || len(low) > 2 && strings.Contains(word, low):
 			list = append(list, scored{w, 0})
 		case d <= max(1, len(word)/3):
 			list = append(list, scored{w, d})

@@ -2,6 +2,8 @@ package main
 
 import (
 	"fmt"
+	"maps"
+	"slices"
 	"strings"
 
 	"github.com/spf13/cobra"
@@ -11,14 +13,18 @@ import (
 
 func (a *app) explainCommand() *cobra.Command {
 	return &cobra.Command{
-		Use:   "explain WORD",
+		Use:   "explain WORD [OF]",
 		Short: "Explain a diagnostic code, measure, method, claim or procedure",
 		Long: `Explain prints what a word of the language, or the code of a diagnostic, means: its
-rule or formula, what must hold for it, where it is published, and an example.`,
+rule or formula, what must hold for it, where it is published, and an example. A word
+that several measures or keys have is explained for all of them; OF, a measure, a key or a
+kind such as method, chooses one.`,
 		Example: `  steelyard explain equivalent
   steelyard explain welch
+  steelyard explain exact odds-ratio
+  steelyard explain slightly better
   steelyard explain D110`,
-		Args: cobra.ExactArgs(1),
+		Args: cobra.MinimumNArgs(1),
 		ValidArgsFunction: func(_ *cobra.Command, args []string, _ string) ([]string, cobra.ShellCompDirective) {
 			if len(args) > 0 {
 				return nil, cobra.ShellCompDirectiveNoFileComp
@@ -26,12 +32,8 @@ rule or formula, what must hold for it, where it is published, and an example.`,
 			return words(), cobra.ShellCompDirectiveNoFileComp
 		},
 		RunE: func(_ *cobra.Command, args []string) error {
-			found := cardsOf(args[0])
-			if found == nil {
-				err := fmt.Errorf("nothing is known of %q", args[0])
-				if n := near(args[0]); n != nil {
-					err = fmt.Errorf("%w; near it: %s", err, strings.Join(n, ", "))
-				}
+			found, err := explained(args)
+			if err != nil {
 				return err
 			}
 			var b strings.Builder
@@ -73,6 +75,23 @@ func writeCard(b *strings.Builder, c card.Card, width int) {
 		b.WriteString("\n  Example:\n\n")
 		for _, line := range strings.Split(strings.TrimRight(c.Example, "\n"), "\n") {
 			b.WriteString(strings.TrimRight("    "+line, " ") + "\n")
+		}
+		writeFiles(b, c.Example)
+	}
+}
+
+// writeFiles prints the first lines of the data files that an example names.
+func writeFiles(b *strings.Builder, example string) {
+	const shown = 4
+	files := exampleFiles()
+	for _, name := range slices.Sorted(maps.Keys(files)) {
+		if !strings.Contains(example, `"`+name+`"`) {
+			continue
+		}
+		rows := strings.Split(strings.TrimRight(files[name], "\n"), "\n")
+		fmt.Fprintf(b, "\n  %s begins:\n\n", name)
+		for _, row := range rows[:min(shown, len(rows))] {
+			b.WriteString("    " + row + "\n")
 		}
 	}
 }
