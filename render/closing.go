@@ -1,7 +1,7 @@
 package render
 
 import (
-	"path/filepath"
+	"path"
 	"sort"
 	"strings"
 
@@ -21,7 +21,7 @@ func (c *composer) diagnostics() {
 	t := newTable("", "Place", "Kind", "Message", "Code")
 	for _, d := range c.res.Diagnostics {
 		file, line, column := c.in.Source.Place(d)
-		place := filepath.Base(file)
+		place := path.Base(file)
 		if line > 0 {
 			place += ":" + plainInt(line) + ":" + plainInt(column)
 		}
@@ -182,7 +182,7 @@ func (c *composer) reproduce() {
 		}
 	}
 	f.to(c, 1)
-	name := filepath.Base(c.in.Source.Name)
+	name := path.Base(c.in.Source.Name)
 	c.add(page.Verbatim{Lines: []string{"steelyard compile --to pdf,json " + name}})
 	c.small("The same record, seal, data and version of the program give the same numbers; on one type of processor, the same bytes.")
 }

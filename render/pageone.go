@@ -1,7 +1,7 @@
 package render
 
 import (
-	"path/filepath"
+	"path"
 	"strings"
 
 	"steelyard/compute/result"
@@ -294,7 +294,7 @@ func (c *composer) howToVerify() string {
 	if c.res.Masked || !c.attaches("record") {
 		return "To check this file: steelyard compile with the record of the digest above prints the same document. The record is not attached to this file."
 	}
-	name := strings.TrimSuffix(filepath.Base(c.in.Source.Name), ".toml")
+	name := strings.TrimSuffix(path.Base(c.in.Source.Name), ".toml")
 	if name == "" || name == "-" || name == "." {
 		name = "NAME"
 	}

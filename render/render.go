@@ -7,7 +7,7 @@
 package render
 
 import (
-	"path/filepath"
+	"path"
 	"slices"
 	"strings"
 
@@ -81,7 +81,7 @@ func (c *composer) document() *page.Document {
 	d.Keywords = c.keywords()
 	if !c.res.Masked && c.attaches("record") && len(c.in.Source.Text) > 0 {
 		d.Attachments = append(d.Attachments, page.Attachment{
-			Name: filepath.Base(c.in.Source.Name), Media: "application/toml", Description: "the record this document was made from",
+			Name: path.Base(c.in.Source.Name), Media: "application/toml", Description: "the record this document was made from",
 			Relation: "Source", Modified: dateText(r.Date), Bytes: c.in.Source.Text,
 		})
 	}
