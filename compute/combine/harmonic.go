@@ -73,27 +73,20 @@ func (h paretoSum) upper() float64 {
 		return math.Exp(ln-t*h.excess) * math.Sin(phase)
 	}
 	mid := -math.Log(h.k + h.excess)
-	step := 0.25
-	sum := f(mid) + walk(f, mid, step, step) + walk(f, mid, -step, -step)
-	for range 5 {
-		more := walk(f, mid, step/2, step) + walk(f, mid, -step/2, -step)
-		change := math.Abs(more - sum)
-		sum += more
-		step /= 2
-		if change < 1e-9*math.Abs(sum) {
-			break
-		}
+	both := func(first, step float64) float64 {
+		return walk(f, mid+first, step) + walk(f, mid+first-step, -step)
 	}
-	return sum * step / math.Pi
+	s, _ := numeric.Trapezoid(both, 0.5, 5)
+	return s / math.Pi
 }
 
-// walk adds f at mid+first, mid+first+step, … until the terms have died out.
-func walk(f func(float64) float64, mid, first, step float64) float64 {
+// walk adds f at first, first+step, … until the terms have died out.
+func walk(f func(float64) float64, first, step float64) float64 {
 	var sum numeric.Acc
 	largest := 0.0
 	quiet := 0
 	for j := 0.0; j < 4000 && quiet < 24; j++ {
-		v := f(mid + first + j*step)
+		v := f(first + j*step)
 		sum.Add(v)
 		largest = max(largest, math.Abs(v))
 		if math.Abs(v) <= 1e-18*largest {

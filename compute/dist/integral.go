@@ -13,8 +13,9 @@ const drop = 45
 // lnIntegral is ln ∫ exp(g(v)) dv over [lo, hi] for a unimodal log integrand
 // g; either end may be infinite. The peak is looked for from guess in steps
 // that begin at width; the mass around it is cut into panels that widen
-// outward and integrated adaptively to 1e-14 of the total.
-func lnIntegral(g func(float64) float64, lo, hi, guess, width float64) float64 {
+// outward, cut again at the turns (places where g bends sharply), and
+// integrated adaptively to 1e-14 of the total.
+func lnIntegral(g func(float64) float64, lo, hi, guess, width float64, turns ...float64) float64 {
 	m, top := climb(g, lo, hi, guess, width)
 	if math.IsInf(top, -1) {
 		return math.Inf(-1)
@@ -24,7 +25,7 @@ func lnIntegral(g func(float64) float64, lo, hi, guess, width float64) float64 {
 	var left, right [48]float64
 	nl := walkDown(g, m, lo, -width, top, &left)
 	nr := walkDown(g, m, hi, width, top, &right)
-	var breaks [97]float64
+	var breaks [128]float64
 	n := 0
 	for i := nl - 1; i >= 0; i-- {
 		breaks[n] = left[i]
@@ -33,41 +34,44 @@ func lnIntegral(g func(float64) float64, lo, hi, guess, width float64) float64 {
 	breaks[n] = m
 	n++
 	n += copy(breaks[n:], right[:nr])
+	first, last := breaks[0], breaks[n-1]
+	for _, v := range turns {
+		if !(v > first && v < last) || n == len(breaks) {
+			continue
+		}
+		i := n
+		for ; breaks[i-1] > v; i-- {
+			breaks[i] = breaks[i-1]
+		}
+		breaks[i] = v
+		n++
+	}
 	s := numeric.Integrate(f, breaks[:n], 1e-14)
 	return top + math.Log(s)
 }
 
 // lnTrapezoid is ln ∫ exp(g(v)) dv over the whole line by the trapezoidal
-// rule, which converges faster than any power of the step for a smooth
-// integrand that dies out on both sides: halving the step squares the error.
-// m is near the peak, width about its standard deviation. ok is false when
-// the integrand has features much narrower than that; use lnIntegral then.
+// rule. m is near the peak, width about its standard deviation. ok is false
+// when the integrand has features much narrower than that; use lnIntegral
+// then.
 func lnTrapezoid(g func(float64) float64, m, width float64) (ln float64, ok bool) {
 	top := g(m)
 	if math.IsInf(top, 0) {
 		return 0, false
 	}
-	h := width
-	sum := 1 + lattice(g, m, h, h, top) + lattice(g, m, -h, -h, top)
-	for range 3 {
-		more := lattice(g, m, h/2, h, top) + lattice(g, m, -h/2, -h, top)
-		// the step halves: old estimate h·sum, new one h/2·(sum+more)
-		change := math.Abs(more-sum) / (sum + more)
-		sum += more
-		h /= 2
-		if change < 2e-8 {
-			return top + math.Log(sum*h), true
-		}
+	both := func(first, step float64) float64 {
+		return lattice(g, m+first, step, top) + lattice(g, m+first-step, -step, top)
 	}
-	return 0, false
+	s, ok := numeric.Trapezoid(both, 1.3*width, 3)
+	return top + math.Log(s), ok && s > 0
 }
 
-// lattice adds exp(g − top) at m+first, m+first+step, … until the terms are
-// small and falling.
-func lattice(g func(float64) float64, m, first, step, top float64) float64 {
+// lattice adds exp(g − top) at first, first+step, … until the terms are small
+// and falling.
+func lattice(g func(float64) float64, first, step, top float64) float64 {
 	s, last := 0.0, math.Inf(-1)
 	for k := 0.0; k < 1000; k++ {
-		l := g(m+first+k*step) - top
+		l := g(first+k*step) - top
 		e := math.Exp(l)
 		s += e
 		if l < last && e < 1e-18*(1+s) {
@@ -88,19 +92,13 @@ func lnHalfLine(g func(float64) float64, a, scale float64) (ln float64, ok bool)
 	if math.IsInf(top, 0) {
 		return 0, false
 	}
-	const first = -3.75
-	h := 0.25
-	sum := halfLattice(g, a, scale, top, first, h)
-	for range 4 {
-		more := halfLattice(g, a, scale, top, first+h/2, h)
-		change := math.Abs(more-sum) / (sum + more)
-		sum += more
-		h /= 2
-		if change < 2e-8 {
-			return top + math.Log(sum*h*math.Abs(scale)), true
-		}
+	both := func(first, step float64) float64 {
+		const left = -3.9 // exp(left − e^−left) is 5e-24
+		start := left + math.Mod(first-left, step)
+		return halfLattice(g, a, scale, top, start, step)
 	}
-	return 0, false
+	s, ok := numeric.Trapezoid(both, 0.4, 4)
+	return top + math.Log(s*math.Abs(scale)), ok && s > 0
 }
 
 // halfLattice adds the transformed integrand at first, first+step, …

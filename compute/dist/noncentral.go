@@ -83,10 +83,34 @@ func (k nctKernel) side(upper bool) float64 {
 		}
 	}
 	width := 1 / math.Sqrt(max(curve, 0.5*k.nu*u*u, 1e-4))
+	// Φ turns at u = delta/t over a length of 1/|delta| in ln u. Where that is
+	// inside the mass and much sharper than the rest, panels are laid there.
+	if q := delta / t; q > 0 && 1/math.Abs(delta) < width {
+		turn := math.Log(q)
+		if g(turn) > g(v)-drop {
+			if 1/math.Abs(delta) < width/4 {
+				return lnIntegral(g, math.Inf(-1), math.Inf(1), v, 2*width, turnsOf(t, delta)...)
+			}
+			width = 1 / math.Abs(delta)
+		}
+	}
 	if ln, ok := lnTrapezoid(g, v, width); ok {
 		return ln
 	}
-	return lnIntegral(g, math.Inf(-1), math.Inf(1), v, 2*width)
+	return lnIntegral(g, math.Inf(-1), math.Inf(1), v, 2*width, turnsOf(t, delta)...)
+}
+
+// turnsOf are the places in ln u where t·u − delta is 0, ±1, ±3, ±8.
+func turnsOf(t, delta float64) []float64 {
+	var out [7]float64
+	n := 0
+	for _, k := range [...]float64{-8, -3, -1, 0, 1, 3, 8} {
+		if u := (delta + k) / t; u > 0 {
+			out[n] = math.Log(u)
+			n++
+		}
+	}
+	return out[:n:n]
 }
 
 // peak solves t·u·λ(t·u − delta) + nu − nu·u² = 0 in v = ln u, λ = φ/Φ.

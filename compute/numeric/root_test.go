@@ -158,3 +158,35 @@ func TestQuadratureRules(t *testing.T) {
 		}
 	}
 }
+
+// Both integrands have a closed form; the second has a wave that single
+// halvings can miss.
+func TestTrapezoid(t *testing.T) {
+	lattice := func(f func(float64) float64) func(first, step float64) float64 {
+		return func(first, step float64) float64 {
+			s := f(first)
+			for k := 1.0; k < 5000; k++ {
+				s += f(first+k*step) + f(first-k*step)
+			}
+			return s
+		}
+	}
+	for name, c := range map[string]struct {
+		f     func(float64) float64
+		width float64
+		want  float64
+	}{
+		"normal":  {func(x float64) float64 { return math.Exp(-x * x / 2) }, 1.3, math.Sqrt(2 * math.Pi)},
+		"shifted": {func(x float64) float64 { return math.Exp(-(x - 0.3) * (x - 0.3) / 2) }, 2, math.Sqrt(2 * math.Pi)},
+		"sech":    {func(x float64) float64 { return 1 / math.Cosh(x-0.37) }, 4, math.Pi},
+	} {
+		got, ok := Trapezoid(lattice(c.f), c.width, 4)
+		if !ok || math.Abs(got/c.want-1) > 1e-13 {
+			t.Errorf("%s: %v %v, want %v", name, got, ok, c.want)
+		}
+	}
+	spike := func(x float64) float64 { return math.Exp(-x * x * 1e8) }
+	if _, ok := Trapezoid(lattice(spike), 1, 3); ok {
+		t.Error("a spike between the points is not noticed")
+	}
+}
