@@ -1,7 +1,10 @@
 package compute
 
 import (
+	"io/fs"
 	"maps"
+	"os"
+	"path"
 	"slices"
 	"strings"
 	"testing"
@@ -23,6 +26,35 @@ import (
 // roomCards joins the cards of every package of this room.
 func roomCards() []card.Card {
 	return slices.Concat(claim.Cards, effect.Cards, survival.Cards, family.Cards, pool.Cards, combine.Cards, belief.Cards, Cards)
+}
+
+// unjoined lists the packages below root that have cards which the text of
+// cards_test.go does not import.
+func unjoined(root fs.FS, joined string) (list []string, err error) {
+	err = fs.WalkDir(root, ".", func(name string, d fs.DirEntry, err error) error {
+		if err != nil || d.IsDir() || path.Base(name) != "cards.go" || name == "cards.go" {
+			return err
+		}
+		if dir := path.Dir(name); !strings.Contains(joined, `"steelyard/compute/`+dir+`"`) {
+			list = append(list, dir)
+		}
+		return nil
+	})
+	return list, err
+}
+
+func TestEveryPackageOfCardsIsJoined(t *testing.T) {
+	src, err := os.ReadFile("cards_test.go")
+	if err != nil {
+		t.Fatal(err)
+	}
+	list, err := unjoined(os.DirFS("."), string(src))
+	if err != nil || list != nil {
+		t.Errorf("not joined: %v, %v", list, err)
+	}
+	if list, _ := unjoined(os.DirFS("."), ""); !slices.Contains(list, "survival") {
+		t.Errorf("the check finds only %v", list)
+	}
 }
 
 // exampleFiles are the data files that the examples name.
