@@ -3,7 +3,8 @@ package compute
 import (
 	"slices"
 
-	"steelyard/compute/effect"
+	"steelyard/compute/claim"
+	"steelyard/compute/pool"
 	"steelyard/compute/result"
 	"steelyard/protocol/record"
 )
@@ -15,29 +16,38 @@ const smallEnough = 200
 // costly are the methods whose work grows fast with the numbers.
 var costly = []string{"unconditional", "boschloo", "permutation", "wilcoxon-exact", "signed-rank-exact"}
 
-// alternatives decides the claim again under other choices: with left-out
-// results kept, and by the other valid methods of the measure.
+// byMethod begins the reason of an alternative by another method.
+const byMethod = "method:"
+
+// alternatives decides the claim again under other choices: the least
+// favourable values of a combination, left-out results kept, and the other
+// valid methods of the measure or models of the pool.
 func (r *run) alternatives(t *trial) []result.Judged {
+	if r.plain {
+		return nil
+	}
 	var out []result.Judged
 	o := r.rec.OutcomeNamed(t.h.Outcome.V)
+	if t.deciding >= 0 && t.bySet[t.deciding].worst != nil {
+		at := t.bySet[t.deciding]
+		at.a, at.worst, at.because = *at.worst, nil, "worst-case"
+		out = append(out, t.judged(r, at))
+	}
 	if r.leftOut(t.h, o) {
-		for i := range max(1, len(t.bySet)) {
-			set := ""
-			if i < len(t.bySet) {
-				set = t.bySet[i].set
-			}
-			at := r.attempt(t.h, o, t.question, set, true)
-			at.because = "left-out-kept"
-			out = append(out, t.judged(at))
+		for _, at := range t.bySet {
+			alt := r.again(t, at.set, "left-out-kept", r.entriesOf(t.h, o, at.set, true))
+			out = append(out, t.judged(r, alt))
 		}
 	}
-	return append(out, r.otherMethods(t, o)...)
+	return append(append(out, r.otherMethods(t, o)...), r.otherModels(t)...)
 }
 
-func (t *trial) judged(at attempt) result.Judged {
-	j := t.numbers(at)
-	j.Verdict = t.verdictOf(at)
-	return j
+// again analyses other entries in the same way.
+func (r *run) again(t *trial, set, because string, found []entry) attempt {
+	o := r.rec.OutcomeNamed(t.h.Outcome.V)
+	at := attempt{set: set, because: because, spec: r.specOf(t.h, o, t.question.Error())}
+	r.gather(&at, t.h, t.question, found)
+	return at
 }
 
 func (r *run) leftOut(h *record.Hypothesis, o *record.Outcome) bool {
@@ -53,43 +63,81 @@ func (r *run) otherMethods(t *trial, o *record.Outcome) []result.Judged {
 		return nil
 	}
 	decided := t.bySet[t.deciding]
-	entries := r.entriesOf(t.h, o, decided.set)
-	if len(entries) != 1 || decided.inf == nil || decided.spec.strata != "" || len(decided.spec.adjust) > 0 {
-		return nil
-	}
-	in := r.input(entries[0], decided.spec)
-	if in.Given != nil {
+	entries := r.entriesOf(t.h, o, decided.set, false)
+	if len(entries) != 1 || decided.inf == nil || entries[0].res.Effect != nil {
 		return nil
 	}
 	var out []result.Judged
 	for _, word := range decided.spec.measure.Methods {
-		if word == decided.inf.Word || !r.offers(word, in, decided) {
+		if word == decided.inf.Word || !offers(word, decided) {
 			continue
 		}
-		at := attempt{set: decided.set, because: "method:" + word, spec: decided.spec, studies: decided.studies}
+		at := attempt{set: decided.set, because: byMethod + word, spec: decided.spec}
 		at.spec.method, at.spec.stated = word, true
 		r.gather(&at, t.h, t.question, entries)
 		if at.problem == nil && at.inf != nil && at.inf.Word == word {
-			out = append(out, t.judged(at))
+			out = append(out, t.judged(r, at))
 		}
 	}
 	return out
 }
 
-// offers reports whether a method may be run beside the planned one.
-func (r *run) offers(word string, in effect.Input, decided attempt) bool {
+// offers reports whether a method may be run beside the planned one. With
+// covariates or strata only the methods that respect them may.
+func offers(word string, decided attempt) bool {
+	adjusted := decided.spec.strata != "" || len(decided.spec.adjust) > 0
 	switch word {
-	case "linear", "linear-hc3", "mantel-haenszel":
+	case "linear", "linear-hc3":
+		return adjusted
+	case "mantel-haenszel":
 		return false
 	case "any", "normal":
 		return false // another distribution is another plan
 	}
+	if adjusted && decided.spec.measure.Word != "hazard-ratio" {
+		return false
+	}
 	return decided.inf.N <= smallEnough || !slices.Contains(costly, word)
 }
 
-func (r *run) entriesOf(h *record.Hypothesis, o *record.Outcome, set string) []entry {
+// otherModels decides a claim on pooled evidence by every estimator of the
+// variance between studies with either interval, and by the common effect.
+func (r *run) otherModels(t *trial) []result.Judged {
+	if t.deciding < 0 || t.bySet[t.deciding].pool == nil || t.out.Claim == "describe" {
+		return nil
+	}
+	decided := t.bySet[t.deciding]
+	p := decided.pool
+	var out []result.Judged
+	for _, o := range models() {
+		word := p.word(o)
+		f, problem := p.fitOf(o, p.studies)
+		if word == decided.inf.Word || problem != nil {
+			continue
+		}
+		at := attempt{set: decided.set, because: byMethod + word, spec: decided.spec, studies: decided.studies}
+		at.inf = p.inference(o, f, t.question.Error())
+		at.a = claim.Assess(at.inf, t.question)
+		out = append(out, t.judged(r, at))
+	}
+	return out
+}
+
+// models are the models that stand beside the planned one.
+func models() []pool.Options {
+	out := []pool.Options{{}}
+	for _, between := range []pool.Between{pool.REML, pool.PauleMandel, pool.DerSimonianLaird, pool.SidikJonkman} {
+		for _, interval := range []pool.Interval{pool.HartungKnapp, pool.Normal} {
+			out = append(out, pool.Options{Random: true, Between: between, Interval: interval, Guard: true})
+		}
+	}
+	return out
+}
+
+// entriesOf are the entries that a hypothesis reads in a set.
+func (r *run) entriesOf(h *record.Hypothesis, o *record.Outcome, set string, withLeftOut bool) []entry {
 	var found []entry
-	for _, e := range r.entries(o.Name, set, false) {
+	for _, e := range r.entries(o.Name, set, withLeftOut) {
 		if h.Counts(e.res.Study.V) {
 			found = append(found, e)
 		}

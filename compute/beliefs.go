@@ -2,7 +2,6 @@ package compute
 
 import (
 	"math"
-	"sort"
 
 	"steelyard/compute/belief"
 	"steelyard/compute/effect"
@@ -54,19 +53,24 @@ func priorOf(p *record.Prior, m *record.Measure) belief.Prior {
 // Bayes factor.
 func (r *run) move(out *result.Prior, prior belief.Prior, p *record.Prior, o *record.Outcome) {
 	out.After = out.Before
-	for i, e := range r.growth(o) {
-		after := prior.Update(e.Y, e.V)
-		b := r.believed(after, o, e.study)
-		out.Path = append(out.Path, b)
-		out.After = b
-		if i == len(r.growth(o))-1 {
-			if p.NullShare.Stated {
-				out.BayesFactor = result.Some(math.Exp(prior.LnBayesFactor(e.Y, e.V)))
-			}
-			if far := prior.Conflict(e.Y, e.V); far > 2 {
-				r.note(p.At, "", result.Note{Code: "S222", Message: disagreement, Args: []any{p.Name, far}})
-			}
+	grown := r.growth(o)
+	for _, e := range grown {
+		out.After = r.believed(prior.Update(e.Y, e.V), o, e.study)
+		out.Path = append(out.Path, out.After)
+	}
+	if len(grown) == 0 {
+		return
+	}
+	last := grown[len(grown)-1]
+	if p.NullShare.Stated {
+		ln := prior.LnBayesFactor(last.Y, last.V)
+		out.LnBayesFactor = opt(ln)
+		if bf := math.Exp(ln); bf > 0 && !math.IsInf(bf, 0) {
+			out.BayesFactor = result.Some(bf)
 		}
+	}
+	if far := prior.Conflict(last.Y, last.V); far > 2 {
+		r.note(p.At, "", result.Note{Code: "S222", Message: disagreement, Args: []any{p.Name, far}})
 	}
 }
 
@@ -77,42 +81,29 @@ type grown struct {
 }
 
 // growth is the pooled evidence after each study, by date then record order:
-// the planned model when the outcome is pooled, the common one otherwise.
+// the planned model when the outcome is pooled, the common one otherwise. One
+// study alone stands by its own method, whose error is made normal.
 func (r *run) growth(o *record.Outcome) []grown {
-	entries := r.entries(o.Name, r.sets()[0], false)
-	sort.SliceStable(entries, func(i, j int) bool { return entries[i].res.Day().Compare(entries[j].res.Day()) < 0 })
-	opt := pool.Options{}
-	plan := r.rec.PoolingOf(o.Name)
-	if plan != nil {
-		opt = (&poolRun{plan: plan}).planned()
-	} else {
-		plan = &record.Pooling{Continuity: record.Number{V: 0.5}}
+	p := r.poolFor(o, r.sets()[0])
+	if len(p.studies) == 0 {
+		return nil
 	}
-	sp := r.studySpec(o)
 	a := (1 - r.level) / 2
-	u := o.SystematicU.V
-	var studies []pool.Study
+	order := p.byDate()
 	var out []grown
-	for _, e := range entries {
-		if e.res.P != nil {
-			continue
-		}
-		in := r.input(e, sp)
-		in.SystematicU = 0
-		one, _, problem := r.onScale(sp, plan, in)
-		if problem != nil {
-			continue
-		}
-		if len(entries) == 1 {
-			if inf, bad := r.analyse(sp, in); bad == nil && inf.DF.OK {
-				se := belief.NormalError(math.Sqrt(one.V), inf.DF.V, a)
-				one.V = se * se
+	for i, f := range p.grown(p.options(p.random()), order) {
+		if i == 0 {
+			f = pool.Pooled{Mu: order[0].Y, SE: math.Sqrt(order[0].V), DF: math.Inf(1)}
+			if inf, problem := r.analyse(p.spec, order[0].entry, true); problem == nil && inf.DF.OK {
+				f.DF = inf.DF.V
 			}
 		}
-		studies = append(studies, one.Study)
-		f := pool.Fit(studies, opt)
-		se := belief.NormalError(f.SE, f.DF, a)
-		out = append(out, grown{pool.Study{Y: f.Mu, V: se*se + u*u}, e.res.Study.V})
+		if !(f.SE > 0) || math.IsInf(f.SE, 0) {
+			continue
+		}
+		w := p.wald(f)
+		se := belief.NormalError(w.SE, w.DF, a)
+		out = append(out, grown{pool.Study{Y: w.Y, V: se * se}, order[i].name})
 	}
 	return out
 }

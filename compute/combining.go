@@ -17,7 +17,6 @@ const (
 	onlyTheNull   = "p-values can be combined for a claim about the null only, not for %s, which has a margin or limit"
 	noSizes       = "weights by sample size need an n for every study; %s has none"
 	zeroP         = "study %s gives p = 0; write relation = \"<\" and the bound"
-	noneKnown     = "no study gives a p-value with a direction; only the least favourable line can be computed"
 	notCombined   = "%s"
 )
 
@@ -30,6 +29,7 @@ type contribution struct {
 	worstUp   dist.Tail
 	worstDown dist.Tail
 	known     bool
+	missing   bool
 	direction int // +1 above the null, -1 below, 0 unknown
 }
 
@@ -72,13 +72,18 @@ func (r *run) combined(at *attempt, h *record.Hypothesis, q claim.Question, foun
 		first = worst
 	}
 	at.a, at.worst = first.a, &worst.a
+	if !at.planned {
+		return
+	}
 	for _, line := range []struct {
 		c    combinedLine
 		k    int
 		name string
 	}{{first, k1, "as-reported"}, {worst, k2, "worst-case"}} {
 		if line.k > 0 {
-			r.res.Combined = append(r.res.Combined, line.c.result(h, method, q, line.k, line.name, parts))
+			c := line.c.result(h, method, q, line.k, line.name, parts)
+			c.Set = at.set
+			r.res.Combined = append(r.res.Combined, c)
 		}
 	}
 }
@@ -94,7 +99,7 @@ func (r *run) contributions(at *attempt, h *record.Hypothesis, found []entry) ([
 			}
 			c.fromReport(p)
 		} else {
-			inf, problem := r.analyse(at.spec, r.input(e, at.spec))
+			inf, problem := r.analyse(at.spec, e, false)
 			if problem != nil {
 				return nil, problem
 			}
@@ -104,7 +109,7 @@ func (r *run) contributions(at *attempt, h *record.Hypothesis, found []entry) ([
 	}
 	for _, m := range r.rec.Missing {
 		if m.Outcome.V == at.spec.outcome.Name && h.Counts(m.Study.V) {
-			out = append(out, contribution{study: m.Study.V, worstUp: combine.Missing(), worstDown: combine.Missing()})
+			out = append(out, contribution{study: m.Study.V, missing: true, worstUp: combine.Missing(), worstDown: combine.Missing()})
 		}
 	}
 	return out, nil
@@ -120,15 +125,23 @@ func (c *contribution) fromReport(p *record.PValue) {
 	}
 	c.up, c.known, c.worstUp = r.OneSided(true)
 	c.down, _, c.worstDown = r.OneSided(false)
-	c.n = p.N.V
+	c.n, c.direction = p.N.V, directionOf(r)
+}
+
+// directionOf is the side of the null on which a reported result lies, 0 where
+// it is not said. With one side tested, a p below one half lies on that side.
+func directionOf(r combine.Reported) int {
+	side := map[string]int{"above": 1, "below": -1}[r.Direction]
 	if r.Sides == 2 {
-		switch r.Direction {
-		case "above":
-			c.direction = 1
-		case "below":
-			c.direction = -1
-		}
+		return side
 	}
+	switch {
+	case r.P < 0.5 && r.Relation != ">":
+		return side
+	case r.P > 0.5 && r.Relation != "<":
+		return -side
+	}
+	return 0
 }
 
 func (c *contribution) fromInference(inf *effect.Inference, null float64) {
@@ -151,6 +164,10 @@ func weightsOf(plan *record.Combination, parts []contribution) ([]float64, *resu
 	}
 	var w []float64
 	for _, c := range parts {
+		if c.missing { // enters with p = 1, whose weight does not matter
+			w = append(w, 1)
+			continue
+		}
 		if !(c.n > 0) {
 			return nil, &result.Note{Code: "S113", Message: noSizes, Args: []any{c.study}}
 		}

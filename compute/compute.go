@@ -7,6 +7,8 @@
 package compute
 
 import (
+	"steelyard/compute/effect"
+	"steelyard/compute/family"
 	"steelyard/compute/result"
 	"steelyard/protocol"
 	"steelyard/protocol/diag"
@@ -24,7 +26,9 @@ func Run(in *protocol.Loaded, engine string) *result.Result {
 		return r.res
 	}
 	r.studies()
+	r.totals()
 	r.decide()
+	r.pooledEvidence()
 	r.sensitivities()
 	r.beliefs()
 	r.sealedPlan()
@@ -49,11 +53,18 @@ type run struct {
 	seed  uint64
 	level float64
 	notes diag.List
-	tried []*trial // one per hypothesis, in order
+	tried []*trial        // one per hypothesis, in order
+	pools []*poolRun      // every pool of a planned analysis, in order
+	plans []family.Family // the families as they were adjusted
+
+	inputs map[inputKey]effect.Input
+	made   map[madeKey]made
+	plain  bool // verdicts and their numbers alone: the sealed plan beside the present one
 }
 
 func newRun(in *protocol.Loaded, engine string) *run {
-	r := &run{in: in, rec: in.Record, res: &result.Result{Engine: engine}, level: in.Record.Plan.Level.V}
+	r := &run{in: in, rec: in.Record, res: &result.Result{Engine: engine}, level: in.Record.Plan.Level.V,
+		inputs: map[inputKey]effect.Input{}, made: map[madeKey]made{}}
 	if r.level == 0 {
 		r.level = 0.95
 	}

@@ -55,16 +55,19 @@ func (r *run) sets() []string {
 // studies fills the list of entries, each with its own analysis at the
 // descriptive level.
 func (r *run) studies() {
-	for _, set := range r.sets() {
-		for i, res := range r.rec.Results {
-			use := result.Analysed
-			if res.LeaveOut.Stated {
-				use = result.LeftOut
-			}
+	sets := r.sets()
+	for i, res := range r.rec.Results {
+		use := result.Analysed
+		if res.LeaveOut.Stated {
+			use = result.LeftOut
+		}
+		for _, set := range sets {
 			r.study(data.Key{Entry: i, Set: set}, res, use)
 		}
-		for i, res := range r.rec.Earlier {
-			r.study(data.Key{Entry: -1 - i, Set: set}, res, result.EarlierUse)
+	}
+	for i, res := range r.rec.Earlier {
+		for _, set := range sets {
+			r.study(keyOfEarlier(i, set), res, result.EarlierUse)
 		}
 	}
 	for _, m := range r.rec.Missing {
@@ -84,38 +87,43 @@ func (r *run) study(key data.Key, res *record.Result, use result.Use) {
 	if res.Data != nil {
 		s.File = res.Data.File.V
 	}
-	sp := r.studySpec(o)
-	if res.P != nil {
-		s.BareP = &result.BareP{Value: res.P.Value.V, Sides: int(res.P.Sides.V), Direction: res.P.Direction.V,
-			Relation: res.P.Relation.V, N: result.Opt{V: res.P.N.V, OK: res.P.N.Stated}}
+	if p := res.P; p != nil {
+		s.BareP = &result.BareP{Value: p.Value.V, Sides: int(p.Sides.V), Direction: p.Direction.V,
+			Relation: p.Relation.V, N: result.Opt{V: p.N.V, OK: p.N.Stated}}
+		s.Groups = withFlow(nil, res)
 	} else {
-		in := r.input(e, sp)
-		s.Groups = groupNumbers(in, e, o)
-		inf, problem := r.analyse(sp, in)
-		if problem != nil {
-			s.Analysis.Notes = []result.Note{*problem}
-			if use == result.Analysed {
-				s.Use, s.Why = result.NotComputed, Text(*problem)
-			}
-		} else {
-			low, high := inf.Method.Limits((1 - r.level) / 2)
-			s.Analysis = analysisOf(sp, inf, r.level, low, high)
-			t := inf.Method.Test(in.Null)
-			s.P = twoSided(t)
-			if in.Time != nil && in.Given == nil && len(o.Groups.V) == 2 {
-				s.Survival = r.curvesOf(in, [2]string{o.Groups.V[0].V, o.Groups.V[1].V})
-			}
-		}
+		r.analysedStudy(&s, e, o)
 	}
 	r.res.Studies = append(r.res.Studies, s)
 }
 
+// analysedStudy adds an entry's own numbers and analysis.
+func (r *run) analysedStudy(s *result.Study, e entry, o *record.Outcome) {
+	sp := r.studySpec(o, e.res)
+	in := r.input(e, sp)
+	s.Groups = groupNumbers(in, e, o)
+	inf, problem := r.analyse(sp, e, false)
+	if problem != nil {
+		s.Analysis.Notes = []result.Note{*problem}
+		if s.Use == result.Analysed {
+			s.Use, s.Why = result.NotComputed, Text(*problem)
+		}
+		return
+	}
+	low, high := inf.Method.Limits((1 - r.level) / 2)
+	s.Analysis = analysisOf(sp, inf, r.level, low, high)
+	s.P = twoSided(inf.Method.Test(in.Null))
+	if in.Time != nil && in.Given == nil && len(o.Groups.V) == 2 {
+		s.Survival = r.curvesOf(in, [2]string{o.Groups.V[0].V, o.Groups.V[1].V})
+	}
+}
+
 // studySpec is how an entry of an outcome is shown: by the method that the
-// first hypothesis on the outcome names, else by the default.
-func (r *run) studySpec(o *record.Outcome) spec {
+// first hypothesis on the outcome that reads it names, else by the default.
+func (r *run) studySpec(o *record.Outcome, res *record.Result) spec {
 	a := (1 - r.level) / 2
 	for _, h := range r.rec.Plan.Hypotheses {
-		if h.Outcome.V == o.Name {
+		if h.Outcome.V == o.Name && (res == nil || h.Counts(res.Study.V)) {
 			return r.specOf(h, o, a)
 		}
 	}
@@ -168,19 +176,6 @@ func formOf(r *record.Result) string {
 func groupNumbers(in effect.Input, e entry, o *record.Outcome) []result.GroupNumbers {
 	var out []result.GroupNumbers
 	m := record.MeasureOf(o.Measure.V)
-	counts := slices.Contains([]string{"proportion", "risk-difference", "risk-ratio", "odds-ratio"}, m.Word)
-	of := func(name string, g effect.Group) result.GroupNumbers {
-		n := result.GroupNumbers{Name: name, N: opt(g.N)}
-		switch {
-		case counts:
-			n.Events = opt(g.Events)
-		case g.Exposure > 0:
-			n.Events, n.Exposure = opt(g.Events), opt(g.Exposure)
-		case g.SD > 0 || g.Mean != 0:
-			n.Mean, n.SD = opt(g.Mean), opt(g.SD)
-		}
-		return n
-	}
 	switch {
 	case in.Given != nil:
 		if in.Given.N.OK {
@@ -189,24 +184,79 @@ func groupNumbers(in effect.Input, e entry, o *record.Outcome) []result.GroupNum
 	case m.Shape == record.TwoGroups:
 		for i, g := range []effect.Group{in.First, in.Second} {
 			if len(o.Groups.V) == 2 {
-				out = append(out, of(o.Groups.V[i].V, g))
+				out = append(out, oneGroup(m, o.Groups.V[i].V, g))
 			}
 		}
 	case m.Shape == record.Paired:
-		p := in.Pairs
-		n := p.N
-		if sum := p.Both + p.FirstOnly + p.SecondOnly + p.Neither; n == 0 {
-			n = sum
-		}
-		g := result.GroupNumbers{N: opt(n)}
-		if m.Word != "paired-risk-difference" {
-			g.Mean, g.SD = opt(p.Mean), opt(p.SD)
-		}
-		out = append(out, g)
+		out = append(out, pairNumbers(m, in.Pairs))
 	default:
-		out = append(out, of("", in.Sample))
+		out = append(out, oneGroup(m, "", in.Sample))
 	}
 	return withFlow(withDropped(out, e), e.res)
+}
+
+// oneGroup are the numbers of a group that its measure is made of.
+func oneGroup(m *record.Measure, name string, g effect.Group) result.GroupNumbers {
+	n := result.GroupNumbers{Name: name, N: opt(g.N)}
+	switch m.Word {
+	case "proportion", "risk-difference", "risk-ratio", "odds-ratio", "hazard-ratio", "restricted-mean-difference":
+		n.Events = opt(g.Events)
+	case "rate", "rate-difference", "rate-ratio":
+		n.Events, n.Exposure = opt(g.Events), opt(g.Exposure)
+		if g.N == 0 {
+			n.N = result.Opt{}
+		}
+	case "correlation", "rank-correlation":
+		n.R = opt(g.R)
+	case "sd", "sd-ratio":
+		n.SD = opt(g.SD)
+	case "median-shift", "superiority-probability":
+		n.Median = median(g.Values)
+	case "geometric-mean-ratio":
+		if g.Values != nil {
+			n.Mean, n.SD = opt(g.Mean), opt(g.SD)
+		}
+	default:
+		n.Mean, n.SD = opt(g.Mean), opt(g.SD)
+	}
+	return n
+}
+
+func pairNumbers(m *record.Measure, p effect.Pairs) result.GroupNumbers {
+	n := p.N
+	if sum := p.Both + p.FirstOnly + p.SecondOnly + p.Neither; n == 0 {
+		n = sum
+	}
+	g := result.GroupNumbers{N: opt(n)}
+	switch m.Word {
+	case "paired-risk-difference":
+	case "paired-sd-ratio":
+		g.R = opt(p.R)
+	case "paired-median-shift":
+		g.Median = median(differences(p))
+	default:
+		g.Mean, g.SD = opt(p.Mean), opt(p.SD)
+	}
+	return g
+}
+
+func differences(p effect.Pairs) []float64 {
+	d := make([]float64, len(p.First))
+	for i := range d {
+		d[i] = p.First[i] - p.Second[i]
+	}
+	return d
+}
+
+// median is the middle of values, the mean of two middle ones.
+func median(x []float64) result.Opt {
+	n := len(x)
+	if n == 0 {
+		return result.Opt{}
+	}
+	s := slices.Clone(x)
+	slices.Sort(s)
+	return opt((s[(n-1)/2] + s[n/2]) / 2)
 }
 
 func withDropped(out []result.GroupNumbers, e entry) []result.GroupNumbers {

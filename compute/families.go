@@ -24,6 +24,7 @@ func (r *run) families() {
 	for i, f := range plans {
 		input[i] = r.familyOf(f)
 	}
+	r.plans = input
 	results, faults := family.Adjust(input)
 	for _, f := range faults {
 		r.note(plans[f.Family].At, plans[f.Family].Name, result.Note{Code: "S115", Message: "%s", Args: []any{f.Rule.String()}})
@@ -84,7 +85,7 @@ func (r *run) adjusted(f *record.Family, in family.Family, res family.Result) {
 	pending := true
 	for i, m := range res.Members {
 		t := r.trial(names[i])
-		if _, blocked := t.blocked(); !blocked {
+		if bad, blocked := t.blocked(); !blocked || bad.problem != nil {
 			pending = false
 		}
 		own := in.Members[i].P
@@ -105,6 +106,27 @@ func (r *run) adjusted(f *record.Family, in family.Family, res family.Result) {
 		out.Path = append(out.Path, result.PathStep{Hypothesis: names[s.Member], Level: s.Level, P: s.P.P, Rejected: s.Rejected})
 	}
 	r.res.Families = append(r.res.Families, out)
+}
+
+// inFamily adjusts other p-values of a trial as its family adjusted its own:
+// all other members stay as they are. Without a family, or in one whose
+// members stand alone, nothing changes.
+func (r *run) inFamily(t *trial, p, against dist.Tail) (dist.Tail, dist.Tail) {
+	f := r.rec.FamilyOf(t.h.Name)
+	if !t.adjusted || f == nil {
+		return p, against
+	}
+	k := slices.Index(r.rec.Plan.Families, f)
+	i := slices.Index(record.Texts(f.Members), t.h.Name)
+	changed := slices.Clone(r.plans)
+	changed[k].Members = slices.Clone(changed[k].Members)
+	changed[k].Members[i].P, changed[k].Members[i].Against = p, against
+	results, _ := family.Adjust(changed)
+	if results[k].Members == nil {
+		return certain, certain
+	}
+	m := results[k].Members[i]
+	return m.P, m.Against
 }
 
 // undecided leaves every member of a family with a fault open.

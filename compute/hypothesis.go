@@ -10,6 +10,13 @@ import (
 	"steelyard/protocol/record"
 )
 
+// The messages of this file.
+const (
+	severalResults = "%d results are given and `evidence` does not say how they count together"
+	bareP          = "a p-value alone gives no estimate and no interval; it can only join a combination"
+	nullOnly       = "the method %s tests the null only and cannot decide a claim at another value"
+)
+
 // trial is one hypothesis on its way to a verdict.
 type trial struct {
 	h        *record.Hypothesis
@@ -33,11 +40,8 @@ type attempt struct {
 	empty   bool // no results
 	studies []string
 	spec    spec
-}
-
-// analyse asks the measure's method.
-func (r *run) analyse(s spec, in effect.Input) (*effect.Inference, *result.Note) {
-	return r.method(s, in)
+	planned bool     // a planned analysis: its pools and combinations are recorded
+	pool    *poolRun // pooled evidence
 }
 
 // hypothesis tries one claim in every set it names.
@@ -50,7 +54,8 @@ func (r *run) hypothesis(h *record.Hypothesis) {
 		sets = record.Texts(h.Sets)
 	}
 	for _, set := range sets {
-		at := r.attempt(h, o, q, set, false)
+		at := attempt{set: set, spec: r.specOf(h, o, q.Error()), planned: true}
+		r.gather(&at, h, q, r.entriesOf(h, o, set, false))
 		t.bySet = append(t.bySet, at)
 		if at.problem != nil {
 			r.note(h.At, h.Name, *at.problem)
@@ -122,42 +127,32 @@ func (r *run) hypothesisHead(h *record.Hypothesis, o *record.Outcome, q claim.Qu
 	return out
 }
 
-// attempt analyses a hypothesis in one set.
-func (r *run) attempt(h *record.Hypothesis, o *record.Outcome, q claim.Question, set string, withLeftOut bool) attempt {
-	at := attempt{set: set, spec: r.specOf(h, o, q.Error())}
-	var found []entry
-	for _, e := range r.entries(o.Name, set, withLeftOut) {
-		if h.Counts(e.res.Study.V) {
-			found = append(found, e)
-			at.studies = append(at.studies, e.res.Study.V)
-		}
-	}
-	r.gather(&at, h, q, found)
-	return at
-}
-
-// gather turns the entries into one inference by the stated evidence.
+// gather turns entries into one inference by the stated evidence.
 func (r *run) gather(at *attempt, h *record.Hypothesis, q claim.Question, found []entry) {
+	for _, e := range found {
+		at.studies = append(at.studies, e.res.Study.V)
+	}
 	switch {
 	case len(found) == 0:
 		at.empty = true
-	case h.Evidence.V == "pooled" && len(found) > 1:
+		return
+	case h.Evidence.V == "pooled":
 		at.inf, at.problem = r.pooled(at, h, found)
 	case h.Evidence.V == "combined":
 		r.combined(at, h, q, found)
 		return
 	case len(found) > 1:
-		at.problem = &result.Note{Code: "S111", Message: "%d results are given and `evidence` does not say how they count together", Args: []any{len(found)}}
+		at.problem = &result.Note{Code: "S111", Message: severalResults, Args: []any{len(found)}}
 	case found[0].res.P != nil:
-		at.problem = &result.Note{Code: "S113", Message: "a p-value alone gives no estimate and no interval; it can only join a combination"}
+		at.problem = &result.Note{Code: "S113", Message: bareP}
 	default:
-		at.inf, at.problem = r.analyse(at.spec, r.input(found[0], at.spec))
+		at.inf, at.problem = r.analyse(at.spec, found[0], false)
 	}
 	if at.inf == nil {
 		return
 	}
 	if at.inf.NullOnly && !q.AtNullOnly() {
-		at.problem = &result.Note{Code: "S104", Message: "the method %s tests the null only and cannot decide a claim at another value", Args: []any{at.inf.Word}}
+		at.problem = &result.Note{Code: "S104", Message: nullOnly, Args: []any{at.inf.Word}}
 		at.inf = nil
 		return
 	}
@@ -170,8 +165,8 @@ func (r *run) gather(at *attempt, h *record.Hypothesis, q claim.Question, found 
 func (t *trial) decide() {
 	for i, at := range t.bySet {
 		switch {
-		case at.empty || at.problem != nil || !at.judged():
-			if at.judgedOrDescribed() && t.deciding < 0 {
+		case !at.judged():
+			if at.done() && t.deciding < 0 {
 				t.deciding = i
 			}
 		case t.deciding < 0 || at.a.P.LnP > t.bySet[t.deciding].a.P.LnP:
@@ -180,9 +175,8 @@ func (t *trial) decide() {
 	}
 }
 
-func (at attempt) done() bool              { return !at.empty && at.problem == nil }
-func (at attempt) judged() bool            { return at.done() && at.a.Judged }
-func (at attempt) judgedOrDescribed() bool { return at.done() }
+func (at attempt) done() bool   { return !at.empty && at.problem == nil }
+func (at attempt) judged() bool { return at.done() && at.a.Judged }
 
 // blocked returns the first set that keeps the claim from being decided.
 func (t *trial) blocked() (attempt, bool) {
@@ -214,28 +208,16 @@ func (t *trial) numbers(at attempt) result.Judged {
 	if at.inf != nil {
 		j.Analysis = analysisOf(at.spec, at.inf, a.Level, a.Low, a.High)
 		j.Analysis.Notes = append(append([]result.Note{}, at.inf.Notes...), a.Notes...)
-		j.IntervalDecides = a.Judged
+		j.IntervalDecides = a.Judged && !at.inf.NullOnly
 		j.Reading = a.Reading
 	}
 	j.Tests = a.Tests
 	if a.Judged {
 		j.P = result.P{P: a.P.P, Ln: a.P.LnP, OK: true}
 		j.SValue = result.Some(claim.SValue(a.P.LnP))
-		j.SmallestMargin, j.SmallestLimit = a.SmallestMargin, a.SmallestLimit
+		j.SmallestMargin, j.SmallestLimit, j.SmallestLow = a.SmallestMargin, a.SmallestLimit, a.SmallestLow
 	}
 	return j
-}
-
-// verdictOf settles one attempt on its own, without families.
-func (t *trial) verdictOf(at attempt) result.Verdict {
-	if !at.done() {
-		if at.empty {
-			return result.Pending
-		}
-		return result.Open
-	}
-	p, against := at.pair()
-	return at.a.Verdict(p.P, against.P, t.question.Alpha, t.out.Role == "exploratory")
 }
 
 // curvePoints is the length of a p-value function; costly methods get few.

@@ -2,6 +2,8 @@ package compute
 
 import (
 	"math"
+	"slices"
+	"strings"
 
 	"steelyard/compute/effect"
 	"steelyard/compute/numeric"
@@ -29,10 +31,32 @@ type spec struct {
 	a       float64 // one-sided error of the claim
 }
 
-// input turns an entry into numbers for the measure.
+// inputKey names the numbers of an entry: what they depend on beside the
+// entry itself.
+type inputKey struct {
+	data.Key
+	adjust, strata string
+}
+
+// key names the numbers of an entry under a spec.
+func (s spec) key(e entry) inputKey { return inputKey{e.key, strings.Join(s.adjust, "\x00"), s.strata} }
+
+// input turns an entry into numbers for the measure, once. Its slices are
+// shared and must not be written to.
 func (r *run) input(e entry, s spec) effect.Input {
+	k := s.key(e)
+	in, ok := r.inputs[k]
+	if !ok {
+		in = r.freshInput(e, s)
+		r.inputs[k] = in
+	}
+	in.A = s.a
+	return in
+}
+
+func (r *run) freshInput(e entry, s spec) effect.Input {
 	o := s.outcome
-	in := effect.Input{Seed: r.seed, A: s.a, DesignEffect: 1, Null: nullOf(o), Horizon: o.Horizon.V,
+	in := effect.Input{Seed: r.seed, DesignEffect: 1, Null: nullOf(o), Horizon: o.Horizon.V,
 		SystematicU: o.SystematicU.V, AnySpread: o.Distribution.V == "any", Crossover: o.Design.V == "crossover"}
 	if len(o.Spec.V) == 2 {
 		in.Spec = [2]float64{o.Spec.V[0].V, o.Spec.V[1].V}
@@ -107,14 +131,22 @@ func (r *run) fromData(in *effect.Input, e entry, s spec) {
 	switch s.measure.Shape {
 	case record.OneSample:
 		in.Sample = sampleOf(v)
+		if r.clusterMeans(e, s) {
+			means, _ := clusterMeans(v, false)
+			in.Sample = valueGroup(means)
+		}
 		if len(v.First) > 0 {
-			in.Pairs = pairsOfData(v)
+			in.Pairs = pairsOfData(v.First, v.Second)
 			in.Sample.N, in.Sample.R = in.Pairs.N, in.Pairs.R
 		}
 	case record.TwoGroups:
 		in.First, in.Second = r.groupsOf(e, s)
 	case record.Paired:
-		in.Pairs = pairsOfData(v)
+		first, second := v.First, v.Second
+		if r.clusterMeans(e, s) {
+			first, second = meansOf(v.First, v), meansOf(v.Second, v)
+		}
+		in.Pairs = pairsOfData(first, second)
 	case record.Given:
 	}
 	for _, name := range s.adjust {
@@ -177,7 +209,7 @@ func (r *run) groupsOf(e entry, s spec) (first, second effect.Group) {
 	values := v.Value
 	group := v.Group
 	if r.clusterMeans(e, s) {
-		values, group = clusterMeans(v)
+		values, group = clusterMeans(v, s.measure.Word == "geometric-mean-ratio")
 	}
 	var split [2][]float64
 	for i, x := range values {
@@ -207,21 +239,19 @@ func (r *run) groupsOf(e entry, s spec) (first, second effect.Group) {
 }
 
 // clusterMeans reports whether an entry's data are analysed as cluster means:
-// measures of means and the risk difference (methods.md 0).
+// measures of means, as far as their methods look at nothing but the groups,
+// and the risk difference (methods.md 0). A standardized difference is not: it
+// is measured in standard deviations of individuals.
 func (r *run) clusterMeans(e entry, s spec) bool {
-	if e.vec == nil || e.vec.Cluster == nil {
+	if e.vec == nil || e.vec.Cluster == nil || len(s.adjust) > 0 || s.strata != "" {
 		return false
 	}
-	switch s.measure.Word {
-	case "mean-difference", "risk-difference", "ratio-of-means", "standardized-mean-difference":
-		return true
-	}
-	return false
+	return slices.Contains([]string{"mean", "mean-difference", "risk-difference", "ratio-of-means", "geometric-mean-ratio", "paired-mean-difference"}, s.measure.Word)
 }
 
-// clusterMeans averages the values, or the events, of each cluster. A cluster
-// lies in one group: its first row's.
-func clusterMeans(v *data.Vectors) (means []float64, group []uint8) {
+// clusterMeans averages the values, or the events, of each cluster; of a
+// ratio of geometric means, their logarithms. A cluster lies in one group.
+func clusterMeans(v *data.Vectors, logs bool) (means []float64, group []uint8) {
 	x := v.Value
 	if x == nil {
 		x = v.Event
@@ -230,36 +260,52 @@ func clusterMeans(v *data.Vectors) (means []float64, group []uint8) {
 	count := make([]float64, v.Clusters)
 	group = make([]uint8, v.Clusters)
 	for i, c := range v.Cluster {
-		if count[c] == 0 {
+		if count[c] == 0 && v.Group != nil {
 			group[c] = v.Group[i]
 		}
-		sum[c] += x[i]
+		y := x[i]
+		if logs {
+			y = math.Log(y)
+		}
+		sum[c] += y
 		count[c]++
 	}
+	kept := 0
 	for c := range sum {
-		if count[c] > 0 {
-			sum[c] /= count[c]
+		if count[c] == 0 {
+			continue
 		}
+		m := sum[c] / count[c]
+		if logs {
+			m = math.Exp(m)
+		}
+		means, group[kept] = append(means, m), group[c]
+		kept++
 	}
-	return sum, group
+	return means, group[:kept]
 }
 
-func pairsOfData(v *data.Vectors) effect.Pairs {
-	p := effect.Pairs{N: float64(len(v.First)), First: v.First, Second: v.Second}
-	d := make([]float64, len(v.First))
+// meansOf averages a column over clusters.
+func meansOf(x []float64, v *data.Vectors) []float64 {
+	means, _ := clusterMeans(&data.Vectors{Value: x, Cluster: v.Cluster, Clusters: v.Clusters}, false)
+	return means
+}
+
+func pairsOfData(first, second []float64) effect.Pairs {
+	p := effect.Pairs{N: float64(len(first)), First: first, Second: second}
+	d := make([]float64, len(first))
 	for i := range d {
-		d[i] = v.First[i] - v.Second[i]
+		d[i] = first[i] - second[i]
 	}
 	m := numeric.MomentsOf(d)
-	a, b := numeric.MomentsOf(v.First), numeric.MomentsOf(v.Second)
+	a, b := numeric.MomentsOf(first), numeric.MomentsOf(second)
 	p.Mean, p.SD = m.Mean, m.SD
 	p.FirstMean, p.FirstSD, p.SecondMean, p.SecondSD, p.HasParts = a.Mean, a.SD, b.Mean, b.SD, true
-	// s_d^2 = s1^2 + s2^2 - 2 r s1 s2
 	if a.SD > 0 && b.SD > 0 {
-		p.R = math.Max(-1, math.Min(1, covarianceOf(v.First, v.Second, a.Mean, b.Mean)/(a.SD*b.SD)))
+		p.R = math.Max(-1, math.Min(1, covarianceOf(first, second, a.Mean, b.Mean)/(a.SD*b.SD)))
 	}
-	for i, x := range v.First {
-		switch y := v.Second[i]; {
+	for i, x := range first {
+		switch y := second[i]; {
 		case x == 1 && y == 1:
 			p.Both++
 		case x == 1 && y == 0:

@@ -9,22 +9,98 @@ import (
 	"steelyard/compute/survival"
 )
 
+// The messages of this file.
+const (
+	needsAlone     = "%s needs independent individuals; with clusters give a result of the analysis that respects them, as an effect"
+	noRoomForU     = "the method %s has no place for systematic_u"
+	sharesCompared = "the method %s needs independent individuals; the shares of clusters are compared by welch"
+)
+
+// madeKey names an inference: what it depends on.
+type madeKey struct {
+	inputKey
+	method string
+	stated bool
+	a, u   float64
+}
+
+// made is a method's answer.
+type made struct {
+	inf     *effect.Inference
+	problem *result.Note
+}
+
+// analyse asks the measure's method about an entry, once. pooling says that
+// the systematic error enters later, once for all studies.
+func (r *run) analyse(s spec, e entry, pooling bool) (*effect.Inference, *result.Note) {
+	in := r.input(e, s)
+	if pooling {
+		in.SystematicU = 0
+	}
+	k := madeKey{s.key(e), s.method, s.stated, s.a, in.SystematicU}
+	m, ok := r.made[k]
+	if !ok {
+		m.inf, m.problem = r.method(s, in, r.clusterMeans(e, s))
+		r.made[k] = m
+	}
+	return m.inf, m.problem
+}
+
 // method dispatches an analysis to its package.
-func (r *run) method(s spec, in effect.Input) (*effect.Inference, *result.Note) {
+func (r *run) method(s spec, in effect.Input, clustered bool) (*effect.Inference, *result.Note) {
 	if in.Given == nil && in.Time != nil {
-		t := timesOf(in)
-		switch s.measure.Word {
-		case "hazard-ratio":
-			return survival.HazardRatio(s.method, t)
-		case "restricted-mean-difference":
-			return survival.RestrictedMeanDifference(t)
-		}
+		return timeToEvent(s, in)
+	}
+	if clustered && in.Given == nil && s.measure.Word == "risk-difference" {
+		return clusterShares(s, in)
 	}
 	word := s.method
 	if in.Given != nil && !s.stated {
 		word = ""
 	}
 	return effect.Analyse(s.measure.Word, word, in)
+}
+
+// timeToEvent analyses times. Clusters have no place there; a systematic
+// error has one only where the statistic is an estimate over its error.
+func timeToEvent(s spec, in effect.Input) (*effect.Inference, *result.Note) {
+	if in.DesignEffect != 1 {
+		return nil, &result.Note{Code: "S104", Message: needsAlone, Args: []any{s.measure.Word}}
+	}
+	inf, problem := (*effect.Inference)(nil), (*result.Note)(nil)
+	switch s.measure.Word {
+	case "hazard-ratio":
+		inf, problem = survival.HazardRatio(s.method, timesOf(in))
+	case "restricted-mean-difference":
+		inf, problem = survival.RestrictedMeanDifference(timesOf(in))
+	}
+	if problem != nil || in.SystematicU == 0 {
+		return inf, problem
+	}
+	w, ok := inf.Method.(effect.Wald)
+	if !ok {
+		return nil, &result.Note{Code: "S104", Message: noRoomForU, Args: []any{inf.Word}}
+	}
+	w = w.WithSystematic(in.SystematicU)
+	inf.Method, inf.SE, inf.V = w, result.Some(w.SE), result.Some(w.SE*w.SE)
+	return inf, nil
+}
+
+// clusterShares compares the shares of clusters as values (methods.md 0).
+func clusterShares(s spec, in effect.Input) (*effect.Inference, *result.Note) {
+	inf, problem := effect.Analyse("mean-difference", "welch", in)
+	if problem != nil {
+		return nil, problem
+	}
+	if w, ok := inf.Method.(effect.Wald); ok {
+		w.Low, w.High = s.measure.Low, s.measure.High
+		inf.Method = w
+	}
+	inf.Events = result.Some(in.First.Events + in.Second.Events)
+	if s.stated {
+		inf.Notes = append(inf.Notes, result.Note{Code: "S206", Message: sharesCompared, Args: []any{s.method}})
+	}
+	return inf, nil
 }
 
 // timesOf is what the survival methods read.

@@ -77,6 +77,7 @@ func (r *run) sealedPlan() {
 		return
 	}
 	old := newRun(r.in.Sealed, r.res.Engine)
+	old.plain = true
 	old.decide()
 	for _, was := range old.res.Hypotheses {
 		i := slices.IndexFunc(r.res.Hypotheses, func(h result.Hypothesis) bool { return h.Name == was.Name })

@@ -45,45 +45,61 @@ func missing(e entry, o *record.Outcome) [2]float64 {
 func (r *run) tippingPoint(out *result.Sensitivity, s *record.Sensitivity, t *trial) {
 	at := t.bySet[t.deciding]
 	o := r.rec.OutcomeNamed(t.h.Outcome.V)
-	entries := r.entriesOf(t.h, o, at.set)
-	if len(entries) != 1 || entries[0].res.Effect != nil {
+	entries := r.entriesOf(t.h, o, at.set, false)
+	simple := len(entries) == 1 && entries[0].res.Effect == nil && entries[0].res.P == nil && at.pool == nil && o.Cluster == nil && o.Design.V != "crossover"
+	word := at.spec.measure.Word
+	means := slices.Contains([]string{"mean", "mean-difference", "paired-mean-difference"}, word)
+	counts := slices.Contains([]string{"risk-difference", "risk-ratio", "odds-ratio"}, word) && at.spec.strata == ""
+	if !simple || !means && !counts {
 		r.note(s.At, "", result.Note{Code: "S104", Message: noTipping, Args: []any{s.Name}})
 		return
 	}
 	m := missing(entries[0], o)
 	if m == [2]float64{} {
-		r.note(s.At, "", result.Note{Code: "S101", Message: nothingMissing, Args: []any{s.Name}})
+		r.note(s.At, "", result.Note{Code: "S104", Message: nothingMissing, Args: []any{s.Name}})
 		return
 	}
 	in := r.input(entries[0], at.spec)
-	verdict := t.verdictOf(at)
-	out.Tipping = &result.Tipping{Missing: m, Verdict: verdict}
-	switch at.spec.measure.Word {
-	case "mean", "mean-difference", "paired-mean-difference":
-		out.Tipping.Shift = tippingShift(at, t.question, in, m)
-	case "risk-difference", "risk-ratio", "odds-ratio":
-		i, j, ok := r.tippingSplit(at, t, in, m, verdict)
-		if ok {
-			out.Tipping.Events = [2]result.Opt{result.Some(i), result.Some(j)}
-		}
-	default:
-		out.Tipping = nil
-		r.note(s.At, "", result.Note{Code: "S104", Message: noTipping, Args: []any{s.Name}})
+	now := t.judged(r, at).Verdict
+	out.Tipping = &result.Tipping{Missing: m, Verdict: tipped(now, t.out.Role == "exploratory")}
+	if means {
+		out.Tipping.Shift = tippingShift(at, t.question, in, m, now)
+		return
 	}
+	g := r.splits(at, t, in, m)
+	if i, j, ok := g.nearest(now); ok {
+		out.Tipping.Events = [2]result.Opt{result.Some(i), result.Some(j)}
+		out.Tipping.Verdict = g.verdict(i, j)
+	}
+}
+
+// tipped is the verdict on the other side of the limit that decides.
+func tipped(now result.Verdict, exploratory bool) result.Verdict {
+	switch {
+	case now != result.Open:
+		return result.Open
+	case exploratory:
+		return result.Suggested
+	}
+	return result.Established
 }
 
 // tippingShift is the difference d by which the missing of each group would
 // have to fall short of those seen, against the claim, for the limit that
 // decides to reach its point: gap / (m1/(n1+m1) + m2/(n2+m2)). Negative: they
-// would have to be better for an open claim to be established.
-func tippingShift(at attempt, q claim.Question, in effect.Input, m [2]float64) result.Opt {
+// would have to be better, for an open claim to be established or for a
+// contradicted one to be open.
+func tippingShift(at attempt, q claim.Question, in effect.Input, m [2]float64, now result.Verdict) result.Opt {
 	gap := math.Inf(1)
 	for _, test := range at.a.Tests {
 		d := test.Null - at.a.High
-		if test.Alternative == "greater" || test.Alternative == "two-sided" && at.a.Low > q.Null {
+		if test.Alternative == "greater" || test.Alternative == "two-sided" && in.Null < at.inf.Estimate {
 			d = at.a.Low - test.Null
 		}
 		gap = math.Min(gap, d)
+	}
+	if now == result.Contradicted {
+		gap = claim.Contradicted(q, at.a.Low, at.a.High)
 	}
 	n := [2]float64{in.First.N, in.Second.N}
 	switch at.spec.measure.Shape {
@@ -94,47 +110,75 @@ func tippingShift(at attempt, q claim.Question, in effect.Input, m [2]float64) r
 	case record.TwoGroups, record.Given:
 	}
 	share := m[0]/(n[0]+m[0]) + m[1]/(n[1]+m[1])
-	if math.IsInf(gap, 0) || share == 0 {
+	if math.IsInf(gap, 0) || math.IsNaN(gap) || share == 0 {
 		return result.Opt{}
 	}
 	return result.Some(gap / share)
 }
 
-// tippingSplit finds the split (i, j) of events among the missing at which
-// the verdict differs from the present one, nearest to the proportions
-// observed: each row of the grid is bisected from its ends.
-func (r *run) tippingSplit(at attempt, t *trial, in effect.Input, m [2]float64, verdict result.Verdict) (float64, float64, bool) {
-	p1, p2 := in.First.Events/in.First.N, in.Second.Events/in.Second.N
-	same := func(i, j float64) bool {
-		x := in
-		x.First.N, x.First.Events = in.First.N+m[0], in.First.Events+i
-		x.Second.N, x.Second.Events = in.Second.N+m[1], in.Second.Events+j
-		x.Event, x.Group = nil, nil
-		inf, problem := r.analyse(at.spec, x)
-		if problem != nil {
-			return false
-		}
-		a := claim.Judge(inf, t.question)
-		return a.Verdict(a.P.P, a.Against.P, t.question.Alpha, t.out.Role == "exploratory") == verdict
-	}
-	best, bi, bj := math.Inf(1), 0.0, 0.0
-	consider := func(i, j float64) {
-		if j < 0 || j > m[1] || same(i, j) {
+// grid is the verdict at every split of events among the missing.
+type grid struct {
+	m, seen [2]float64
+	verdict func(i, j float64) result.Verdict
+}
+
+// splits makes the grid of a result of counts: i events among the first
+// group's missing, j among the second's.
+func (r *run) splits(at attempt, t *trial, in effect.Input, m [2]float64) grid {
+	known := map[[2]float64]result.Verdict{}
+	return grid{m: m, seen: [2]float64{in.First.Events / in.First.N, in.Second.Events / in.Second.N},
+		verdict: func(i, j float64) result.Verdict {
+			if v, ok := known[[2]float64{i, j}]; ok {
+				return v
+			}
+			x := in
+			x.First.N, x.First.Events = in.First.N+m[0], in.First.Events+i
+			x.Second.N, x.Second.Events = in.Second.N+m[1], in.Second.Events+j
+			x.Event, x.Group = nil, nil
+			v := result.Open // what cannot be computed stays open
+			if inf, problem := r.method(at.spec, x, false); problem == nil {
+				a := claim.Judge(inf, t.question)
+				p, against := r.inFamily(t, a.P, a.Against)
+				v = a.Verdict(p.P, against.P, t.question.Alpha, t.out.Role == "exploratory")
+			}
+			known[[2]float64{i, j}] = v
+			return v
+		}}
+}
+
+// nearest finds the split whose verdict differs from the present one and whose
+// shares lie nearest to those observed. Each row is bisected from the share
+// observed to both ends; a small grid is gone through.
+func (g grid) nearest(now result.Verdict) (i, j float64, ok bool) {
+	best := math.Inf(1)
+	consider := func(x, y float64) {
+		if g.verdict(x, y) == now {
 			return
 		}
-		d := square(share(i, m[0])-p1) + square(share(j, m[1])-p2)
-		if d < best {
-			best, bi, bj = d, i, j
+		if d := g.distance(x, y); d < best {
+			best, i, j = d, x, y
 		}
 	}
-	for _, i := range rows(m[0]) {
-		mid := math.Round(p2 * m[1])
-		consider(i, mid)
-		for _, end := range []float64{0, m[1]} {
-			consider(i, bisect(mid, end, func(j float64) bool { return same(i, j) }))
+	for _, x := range rows(g.m[0]) {
+		if (g.m[0]+1)*(g.m[1]+1) <= wholeGrid {
+			for y := 0.0; y <= g.m[1]; y++ {
+				consider(x, y)
+			}
+			continue
+		}
+		mid := math.Round(g.seen[1] * g.m[1])
+		for _, end := range []float64{0, g.m[1]} {
+			consider(x, bisect(mid, end, func(y float64) bool { return g.verdict(x, y) == now }))
 		}
 	}
-	return bi, bj, !math.IsInf(best, 1)
+	return i, j, !math.IsInf(best, 1)
+}
+
+// wholeGrid is the largest grid that is gone through split by split.
+const wholeGrid = 400
+
+func (g grid) distance(i, j float64) float64 {
+	return square(share(i, g.m[0])-g.seen[0]) + square(share(j, g.m[1])-g.seen[1])
 }
 
 // rows are the rows of the grid that are looked at: all of them up to 400,

@@ -59,8 +59,9 @@ type Assessment struct {
 	Reading        result.Reading
 	Level          float64
 	Low, High      float64
-	SmallestMargin result.Opt // distance, or factor on the log scale
-	SmallestLimit  result.Opt // the same as a value of the effect
+	SmallestMargin result.Opt // in the grammar of a margin: distance, or factor of a ratio
+	SmallestLimit  result.Opt // the same as a value of the effect; of a region, its upper end
+	SmallestLow    result.Opt // equivalent: the lower end of the smallest region
 	Notes          []result.Note
 }
 
@@ -115,28 +116,62 @@ func (q Question) AtNullOnly() bool {
 	return false
 }
 
+// tester asks a method for its test at a point once: some tests are costly.
+type tester struct {
+	method effect.Method
+	points [4]float64
+	tests  [4]effect.Test
+	n      int
+}
+
+func (m *tester) test(c float64) effect.Test {
+	for i := range m.n {
+		if m.points[i] == c {
+			return m.tests[i]
+		}
+	}
+	t := m.method.Test(c)
+	if m.n < len(m.points) {
+		m.points[m.n], m.tests[m.n] = c, t
+		m.n++
+	}
+	return t
+}
+
 // Judge computes the claim's tests alone: what a verdict needs.
 func Judge(inf *effect.Inference, q Question) Assessment {
+	return judge(&tester{method: inf.Method}, q)
+}
+
+func judge(m *tester, q Question) Assessment {
 	a := Assessment{Judged: q.Claim != "describe"}
 	switch q.Claim {
 	case "describe":
 	case "differs":
-		a.differs(inf.Method.Test(q.Null), q)
+		a.differs(m.test(q.Null), q)
 	default:
-		a.oneSided(inf, q)
+		a.oneSided(m, q)
 	}
 	return a
 }
 
+// Read is the reading alone.
+func Read(inf *effect.Inference, q Question) result.Reading {
+	return reading(&tester{method: inf.Method}, q, inf.NullOnly)
+}
+
 // Assess computes the claim's tests, interval, reading and smallest margin.
 func Assess(inf *effect.Inference, q Question) Assessment {
-	a := Judge(inf, q)
+	m := &tester{method: inf.Method}
+	a := judge(m, q)
 	e := q.Error()
 	a.Level = 1 - 2*e
 	a.Low, a.High = inf.Method.Limits(e)
-	a.Reading = reading(inf, q, e)
-	a.smallest(q)
-	a.agree(inf, q, e)
+	a.Reading = reading(m, q, inf.NullOnly)
+	if !inf.NullOnly { // a borrowed interval has no margin of the test's
+		a.smallest(q)
+	}
+	a.agree(m, q)
 	if n, ok := contradictionError(inf, q); ok {
 		a.Notes = append(a.Notes, n)
 	}
@@ -169,10 +204,10 @@ func OfTails(q Question, up, down dist.Tail) Assessment {
 // TwoSided is the doubled smaller tail of a test, capped at 1.
 func TwoSided(t effect.Test) dist.Tail { return dist.TwoSided(t.Up, t.Down) }
 
-func (a *Assessment) oneSided(inf *effect.Inference, q Question) {
+func (a *Assessment) oneSided(m *tester, q Question) {
 	s := sidesOf(q)
 	for i, one := range s.For {
-		t := inf.Method.Test(one.point)
+		t := m.test(one.point)
 		p := one.of(t)
 		a.Tests = append(a.Tests, row(t, one, p))
 		if i == 0 || p.LnP > a.P.LnP {
@@ -181,11 +216,28 @@ func (a *Assessment) oneSided(inf *effect.Inference, q Question) {
 	}
 	a.CanContradict = true
 	for i, one := range s.Against {
-		t := inf.Method.Test(one.point)
+		t := m.test(one.point)
 		if p := one.of(t); i == 0 || p.LnP < a.Against.LnP {
 			a.Against, a.AgainstStep = p, t.Step
 		}
 	}
+}
+
+// Contradicted is how far the interval would have to move toward the claim for
+// it not to be contradicted, as a number below zero; what it takes at least
+// where either side contradicts.
+func Contradicted(q Question, low, high float64) float64 {
+	gap := math.Inf(-1)
+	for _, s := range sidesOf(q).Against {
+		d := high - s.point
+		if s.greater {
+			d = s.point - low
+		}
+		if d < 0 {
+			gap = math.Max(gap, d)
+		}
+	}
+	return gap
 }
 
 func (s side) of(t effect.Test) dist.Tail {
@@ -210,14 +262,15 @@ func row(t effect.Test, s side, p dist.Tail) result.Test {
 }
 
 // reading counts the points that the data exclude from below and from above.
-func reading(inf *effect.Inference, q Question, e float64) result.Reading {
-	r := result.Reading{HasRegion: q.HasRegion && !q.OneSided && !inf.NullOnly, OK: true}
+func reading(m *tester, q Question, nullOnly bool) result.Reading {
+	e := q.Error()
+	r := result.Reading{HasRegion: q.HasRegion && !q.OneSided && !nullOnly, OK: true}
 	points := []float64{q.Null}
 	if r.HasRegion {
 		points = []float64{q.Low, q.Null, q.High}
 	}
 	for _, c := range points {
-		t := inf.Method.Test(c)
+		t := m.test(c)
 		if t.Below(t.Up, e) {
 			r.Above++
 		}
@@ -246,7 +299,7 @@ func (a *Assessment) smallest(q Question) {
 		}
 		a.SmallestLimit = result.Some(limit)
 		d := sign * (limit - q.Null)
-		if q.Scale == record.Log && q.Null == 1 {
+		if q.Ratio() {
 			d = math.Exp(sign * (effect.To(q.Scale, limit) - null))
 			a.SmallestMargin = result.Some(math.Max(1, d))
 			return
@@ -271,26 +324,49 @@ func (a *Assessment) smallest(q Question) {
 	case "above":
 		a.SmallestLimit = finite(q.Scale, a.Low)
 	case "equivalent":
-		a.smallestRegion(q, null)
+		a.smallestRegion(q)
 	case "differs", "superior", "describe":
 	}
 }
 
-// smallestRegion widens the region k-fold until it holds the interval.
-func (a *Assessment) smallestRegion(q Question, null float64) {
-	g := func(x float64) float64 { return effect.To(q.Scale, x) }
+// smallestRegion widens the region k-fold about the null until it holds the
+// interval: on the analysis scale, or on the effect's own where the region is
+// a distance from the null there, so that the result is a distance too.
+func (a *Assessment) smallestRegion(q Question) {
+	s := q.Scale
+	if q.Symmetric() && !q.Ratio() {
+		s = record.Identity
+	}
+	g := func(x float64) float64 { return effect.To(s, x) }
+	null := g(q.Null)
 	k := math.Max((null-g(a.Low))/(null-g(q.Low)), (g(a.High)-null)/(g(q.High)-null))
 	if math.IsInf(k, 0) || math.IsNaN(k) {
 		return
 	}
 	k = math.Max(0, k)
-	high := effect.From(q.Scale, null+k*(g(q.High)-null))
-	a.SmallestLimit = result.Some(high)
-	if q.Scale == record.Log && q.Null == 1 {
+	low, high := effect.From(s, null-k*(null-g(q.Low))), effect.From(s, null+k*(g(q.High)-null))
+	a.SmallestLow = result.Some(math.Max(low, q.RangeLow))
+	a.SmallestLimit = result.Some(math.Min(high, q.RangeHigh))
+	switch {
+	case !q.Symmetric():
+	case q.Ratio():
 		a.SmallestMargin = result.Some(high)
-		return
+	default:
+		a.SmallestMargin = result.Some(high - q.Null)
 	}
-	a.SmallestMargin = result.Some(high - q.Null)
+}
+
+// Ratio reports whether a margin is a factor.
+func (q Question) Ratio() bool { return q.Scale == record.Log && q.Null == 1 }
+
+// Symmetric reports whether the region is a distance, or for ratios a factor,
+// from the null; a pair of limits need not be.
+func (q Question) Symmetric() bool {
+	down, up := q.Null-q.Low, q.High-q.Null
+	if q.Ratio() {
+		down, up = -math.Log(q.Low), math.Log(q.High)
+	}
+	return math.Abs(down-up) <= 1e-9*math.Max(math.Abs(down), math.Abs(up))
 }
 
 func finite(s record.Scale, x float64) result.Opt {
@@ -302,9 +378,14 @@ func finite(s record.Scale, x float64) result.Opt {
 
 // agree raises S204 where a verdict's p-value and the interval stand on
 // different sides of a point.
-func (a *Assessment) agree(inf *effect.Inference, q Question, e float64) {
-	for _, s := range append(sidesOf(q).For, sidesOf(q).Against...) {
-		t := inf.Method.Test(s.point)
+func (a *Assessment) agree(m *tester, q Question) {
+	e := q.Error()
+	both := sidesOf(q)
+	if q.Claim == "differs" {
+		both.For = []side{{q.Null, true}, {q.Null, false}}
+	}
+	for i, s := range append(both.For, both.Against...) {
+		t := m.test(s.point)
 		limit, excluded := a.High, s.point > a.High
 		if s.greater {
 			limit, excluded = a.Low, s.point < a.Low
@@ -313,7 +394,8 @@ func (a *Assessment) agree(inf *effect.Inference, q Question, e float64) {
 		if near && !t.Step {
 			continue
 		}
-		if t.Below(s.of(t), e) != excluded {
+		said := i > 0 && len(a.Notes) > 0 && a.Notes[len(a.Notes)-1].Args[0] == any(s.point)
+		if t.Below(s.of(t), e) != excluded && !said {
 			a.Notes = append(a.Notes, result.Note{Code: "S204", Message: disagree, Args: []any{s.point}})
 		}
 	}

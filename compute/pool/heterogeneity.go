@@ -39,6 +39,17 @@ func HeterogeneityOf(studies []Study, tau2, a float64) Heterogeneity {
 	return h
 }
 
+// HeterogeneityAbout is Q with its test about a mean that was estimated
+// otherwise, such as from fourfold tables, with inverse-variance weights.
+func HeterogeneityAbout(studies []Study, mu float64) Heterogeneity {
+	h := Heterogeneity{DF: float64(len(studies) - 1)}
+	for _, s := range studies {
+		h.Q += (s.Y - mu) * (s.Y - mu) / s.V
+	}
+	h.P, h.H2 = dist.ChiSquareUpper(h.Q, h.DF), h.Q/h.DF
+	return h
+}
+
 // LeaveOneOut refits the model without each study in turn; O(k^2), each fit
 // started from the full one.
 func LeaveOneOut(studies []Study, o Options) []Pooled {

@@ -255,7 +255,8 @@ type Judged struct {
 	PAdjusted       P
 	SValue          Opt
 	SmallestMargin  Opt // in the grammar of margin
-	SmallestLimit   Opt // the same as a value of the effect
+	SmallestLimit   Opt // the same as a value of the effect; of a region, its upper end
+	SmallestLow     Opt // equivalent: the lower end of the smallest region
 	Verdict         Verdict
 	Reason          *Note // why the claim could not be decided
 	Reading         Reading
@@ -280,6 +281,12 @@ type Hypothesis struct {
 	Assumptions  []Check
 	Alternatives []Judged
 	WhatNext     *WhatNext
+	// MethodsTried counts the alternatives by other methods, MethodsAgree those
+	// of them with the verdict of the planned one.
+	MethodsAgree, MethodsTried int
+	// Excludes names a claim on the same outcome of which and this one at most
+	// one can be wrong; said in place of an adjustment. "" where there is none.
+	Excludes string
 }
 
 // CurvePoint is one point of a p-value function: two-sided p at a null value.
@@ -361,13 +368,13 @@ type SmallStudy struct {
 
 // Combined is a combination of p-values.
 type Combined struct {
-	Hypothesis, Method, Toward, Case string
-	K                                int
-	Statistic                        Opt
-	DF                               Opt
-	P                                P
-	Studies                          []string
-	Tally                            *Tally
+	Hypothesis, Set, Method, Toward, Case string
+	K                                     int
+	Statistic                             Opt
+	DF                                    Opt
+	P                                     P
+	Studies                               []string
+	Tally                                 *Tally
 }
 
 // Tally counts directions.
@@ -425,7 +432,8 @@ type Size struct {
 type Prior struct {
 	Name, Outcome, Label, Why string
 	Before, After             Belief
-	BayesFactor               Opt
+	BayesFactor               Opt // for the null; absent beyond the numbers a computer holds
+	LnBayesFactor             Opt // its natural logarithm
 	Path                      []Belief
 }
 
@@ -458,7 +466,7 @@ type Tipping struct {
 	Missing [2]float64
 	Shift   Opt // means: how far those missing must differ
 	Events  [2]Opt
-	Verdict Verdict // beyond
+	Verdict Verdict // of the hypothesis beyond the tipping point
 }
 
 // Event is one entry of the timeline.
