@@ -16,8 +16,9 @@ type batch struct {
 
 // source tells that something may have changed.
 type source interface {
-	// follow replaces the folders that are followed; dirs are sorted.
-	follow(dirs []string) error
+	// follow replaces the folders that are followed; dirs are sorted. It
+	// reports whether there are more than before.
+	follow(dirs []string) (more bool, err error)
 	changes() <-chan batch
 	close()
 }
@@ -50,20 +51,24 @@ func (e *events) close() {
 	e.done.Wait()
 }
 
-func (e *events) follow(dirs []string) error {
+func (e *events) follow(dirs []string) (more bool, err error) {
 	now := e.notify.WatchList()
 	for _, dir := range now {
 		if _, wanted := slices.BinarySearch(dirs, dir); !wanted {
 			e.notify.Remove(dir) // may be gone already
 		}
 	}
+	slices.Sort(now)
 	for _, dir := range dirs {
 		// Adding again is how a folder that was replaced is followed again.
 		if err := e.notify.Add(dir); err != nil && existing(dir) == dir {
-			return err
+			return more, err
+		}
+		if _, known := slices.BinarySearch(now, dir); !known {
+			more = true
 		}
 	}
-	return nil
+	return more, nil
 }
 
 // gather collects notices and hands them over when none has come for a while,
@@ -139,7 +144,7 @@ func newPoll(every time.Duration) *poll {
 	return p
 }
 
-func (p *poll) follow([]string) error { return nil }
+func (p *poll) follow([]string) (more bool, err error) { return false, nil }
 
 func (p *poll) changes() <-chan batch { return p.out }
 

@@ -11,6 +11,7 @@ package watch
 import (
 	"context"
 	"crypto/sha256"
+	"io"
 	"io/fs"
 	"os"
 	"path/filepath"
@@ -60,10 +61,11 @@ type record struct {
 	doubt  time.Time // since when it is empty or absent; zero: it is not
 }
 
-// state is what the disk says of one file. The digest is kept of records
-// only, for file systems whose times are coarse.
+// state is what the disk says of one file. Two writes can bear the same time,
+// so that of a file written a moment ago the digest is kept too.
 type state struct {
 	info fs.FileInfo // nil: absent
+	size int64
 	sum  [32]byte
 }
 
@@ -96,14 +98,16 @@ func (w *Watcher) add(path string) {
 func (w *Watcher) Run(ctx context.Context, h Handler) error {
 	src := w.source()
 	defer func() { src.close() }()
-	follow := func() {
-		if err := src.follow(w.folders()); err != nil {
+	follow := func() (more bool) {
+		more, err := src.follow(w.folders())
+		if err != nil {
 			if w.opt.Notice != nil {
 				w.opt.Notice(err)
 			}
 			src.close()
 			src = newPoll(w.opt.Every)
 		}
+		return more
 	}
 	// A folder is followed before it is looked into, so that nothing appears
 	// unseen in between.
@@ -115,12 +119,12 @@ func (w *Watcher) Run(ctx context.Context, h Handler) error {
 		if ctx.Err() != nil {
 			return nil
 		}
-		follow()
-		if list = w.changed(h); len(list) > 0 {
-			continue // it changed while it was made
+		d, again := w.doubtful()
+		if follow() && (!again || w.opt.Quiet < d) {
+			d, again = w.opt.Quiet, true // what happened there before it was followed
 		}
 		var wait <-chan time.Time
-		if d, any := w.doubtful(); any {
+		if again {
 			wait = time.After(d)
 		}
 		select {
@@ -150,11 +154,13 @@ func (w *Watcher) source() source {
 }
 
 // make makes records. Their state is taken before, so that a change while
-// they are made is not lost.
+// they are made is not lost. The state of a file that is named for the first
+// time can only be taken afterwards; one written meanwhile counts as changed.
 func (w *Watcher) make(ctx context.Context, h Handler, list []*record) {
 	if len(list) == 0 {
 		return
 	}
+	start := time.Now().Add(-tick)
 	paths := make([]string, len(list))
 	for i, r := range list {
 		paths[i] = r.path
@@ -164,8 +170,11 @@ func (w *Watcher) make(ctx context.Context, h Handler, list []*record) {
 		r := list[i]
 		r.others = others
 		for _, path := range others {
-			if _, known := r.seen[path]; !known {
-				r.seen[path] = lookAt(path) // named for the first time
+			if _, known := r.seen[path]; known {
+				continue
+			}
+			if s := look(path, state{}); s.info == nil || s.info.ModTime().Before(start) {
+				r.seen[path] = s
 			}
 		}
 	}
@@ -173,38 +182,44 @@ func (w *Watcher) make(ctx context.Context, h Handler, list []*record) {
 
 // look is the present state of all that the record depends on.
 func (r *record) look() map[string]state {
-	now := map[string]state{r.path: digested(r.path, r.seen[r.path])}
+	now := map[string]state{r.path: look(r.path, r.seen[r.path])}
 	for _, path := range r.others {
-		now[path] = lookAt(path)
+		now[path] = look(path, r.seen[path])
 	}
 	return now
 }
 
-func lookAt(path string) state {
+// Times of files are trusted when they are older than coarse; of a younger
+// file, unless it is huge, the contents are compared. A file may bear a time
+// that lies up to a tick before it was written.
+const (
+	coarse = 3 * time.Second
+	huge   = 64 << 20
+	tick   = 10 * time.Millisecond
+)
+
+// look is the present state of a file, whose contents are not read again when
+// its time alone shows that it is as before.
+func look(path string, before state) state {
 	info, err := os.Stat(path)
 	if err != nil || info.IsDir() {
 		return state{}
 	}
-	return state{info: info}
-}
-
-// coarse is how far apart two writes may be and bear the same time.
-const coarse = 3 * time.Second
-
-// digested is the state with the digest of the file, which is not read again
-// when its time alone shows that it is as it was.
-func digested(path string, before state) state {
-	s := lookAt(path)
-	if s.info == nil || !s.info.Mode().IsRegular() || s.info.Size() > 1<<24 {
+	s := state{info: info, size: info.Size(), sum: before.sum}
+	if !info.Mode().IsRegular() || info.Size() > huge || same(s, before) && time.Since(info.ModTime()) > coarse {
 		return s
 	}
-	s.sum = before.sum
-	if same(s, before) && time.Since(s.info.ModTime()) > coarse {
+	f, err := os.Open(path)
+	if err != nil {
 		return s
 	}
-	if text, err := os.ReadFile(path); err == nil {
-		s.sum = sha256.Sum256(text)
+	defer f.Close()
+	sum := sha256.New()
+	n, err := io.Copy(sum, f)
+	if err != nil {
+		return s
 	}
+	s.size, s.sum = n, [32]byte(sum.Sum(nil)) // as read: it may just have been cut
 	return s
 }
 
@@ -212,7 +227,7 @@ func same(a, b state) bool {
 	if a.info == nil || b.info == nil {
 		return a.info == nil && b.info == nil
 	}
-	return os.SameFile(a.info, b.info) && a.info.Size() == b.info.Size() &&
+	return os.SameFile(a.info, b.info) && a.size == b.size &&
 		a.info.ModTime().Equal(b.info.ModTime()) && a.sum == b.sum
 }
 
@@ -226,7 +241,7 @@ func (w *Watcher) changed(h Handler) (list []*record) {
 			differs = differs || !same(s, r.seen[path])
 		}
 		self := now[r.path]
-		blank := self.info == nil || self.info.Size() == 0
+		blank := self.info == nil || self.size == 0
 		switch {
 		case !blank:
 			r.doubt = time.Time{}

@@ -140,6 +140,7 @@ func start(t *testing.T, opt Options, b *bench, records ...string) {
 		opt.Roots = []string{b.dir}
 	}
 	opt.Notice = func(err error) { t.Logf("notice: %v", err) }
+	time.Sleep(2 * tick) // the files are older than the watch
 	ctx, cancel := context.WithCancel(context.Background())
 	ended := make(chan error)
 	go func() { ended <- New(opt, records).Run(ctx, b) }()
