@@ -72,6 +72,8 @@ The methods were designed on paper before they were written. Where the code does
   limit that falls on a tied point could establish. The normal form does take half.
 - *Which form of a rank test* was used is said by S206. ‹signed-rank-exact› with ties keeps the distribution without ties and
   breaks them against the claim; there is no conditional form for pairs.
+- *‹signed-rank-normal›* takes the differences equal to c out of the variance (Pratt's way); the first formula left them in, which
+  was safe but too wide.
 - *Unconditional tests* of two risks order tables by the score without N/(N - 1); the factor changes no order, so no p-value.
   Boundaries of regions are bisected where that asks for fewer tables than walking.
 - *Noncentral t* is integrated in ln u by the trapezoidal rule where the integrand is smooth, else by Gauss–Legendre panels; below

@@ -109,9 +109,9 @@ var rankCards = []card.Card{
 		Source:      "Wilcoxon 1945, from memory", Example: pairedShiftExample("signed-rank-exact")},
 	{Kind: card.Method, Word: "signed-rank-normal", Of: []string{"paired-median-shift"}, Title: "signed-rank test by its normal approximation",
 		Meaning:     "The sum of signed ranks against its mean and standard deviation given the ties, without a continuity correction.",
-		Formula:     "z(c) = (V(c) - n(n+1)/4)/√(n(n+1)(2n+1)/24 - Σ(t³ - t)/48), ties t of the distances from c; a difference equal to c counts half to either side.",
+		Formula:     "z(c) = (V(c) - n(n+1)/4)/√([n(n+1)(2n+1) - m(m+1)(2m+1)]/24 - Σ(t³ - t)/48), ties t of the distances from c; the m differences equal to c keep the lowest ranks and count half to either side.",
 		Assumptions: "As for `signed-rank`, and some ten pairs.",
-		Source:      "Wilcoxon 1945; Lehmann 1975, Nonparametrics; from memory", Example: pairedShiftExample("signed-rank-normal")},
+		Source:      "Wilcoxon 1945; Pratt 1959; Lehmann 1975, Nonparametrics; from memory", Example: pairedShiftExample("signed-rank-normal")},
 
 	{Kind: card.Measure, Word: "superiority-probability", Title: "probability that the first group's value is higher",
 		Meaning:     "Of one value drawn from each group, how often the first is the higher one; ties count half. One half says that neither tends to be higher. It is the area under the curve of a diagnostic test.",

@@ -111,8 +111,9 @@ func absoluteTies(d []float64, c, tol float64) bool {
 }
 
 // signedRankSpread is the standard deviation of the sum of the ranks above c,
-// with ties of the distances from it; NaN asks for the spread between Walsh
-// averages, where only equal differences are tied.
+// with ties of the distances from it. Differences equal to c keep the lowest
+// ranks and have no sign to turn (Pratt 1959, from memory). NaN asks for the
+// spread between Walsh averages, where only equal differences are tied.
 func signedRankSpread(d []float64, c, tol float64) float64 {
 	n := float64(len(d))
 	a := d
@@ -127,5 +128,6 @@ func signedRankSpread(d []float64, c, tol float64) float64 {
 		ties += t * (t*t - 1)
 		i = next
 	}
-	return math.Sqrt(math.Max(0, n*(n+1)*(2*n+1)/24-ties/48))
+	zeros := n - float64(len(a))
+	return math.Sqrt(math.Max(0, (n*(n+1)*(2*n+1)-zeros*(zeros+1)*(2*zeros+1))/24-ties/48))
 }
