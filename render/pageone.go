@@ -24,6 +24,7 @@ func (c *composer) pageOne() {
 		c.add(c.verdictBlock(h, dense))
 	}
 	c.small(c.otherClaims(len(primary)))
+	c.small(c.noFamily())
 	c.arrivalFacts(primary, rows)
 	c.pageOneCaution(rows)
 	c.small(c.howToVerify())
@@ -288,6 +289,19 @@ func (c *composer) otherClaims(shown int) string {
 	}
 	return "Also in this record: " + strings.Join(parts, "; ") + "."
 }
+
+// noFamily is the warning that several primary claims share no error level.
+func (c *composer) noFamily() string {
+	for _, d := range c.res.Diagnostics {
+		if d.Code == severalPrimary {
+			return "Warning: " + fullStop(d.Message)
+		}
+	}
+	return ""
+}
+
+// severalPrimary is the code of the one diagnostic that page one prints.
+const severalPrimary = "R319"
 
 // howToVerify says how this file is checked.
 func (c *composer) howToVerify() string {

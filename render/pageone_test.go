@@ -6,6 +6,7 @@ import (
 
 	"steelyard/compute/result"
 	"steelyard/protocol"
+	"steelyard/protocol/diag"
 	"steelyard/render"
 	"steelyard/render/internal/fixture"
 	"steelyard/render/number"
@@ -36,6 +37,20 @@ func TestPageOne(t *testing.T) {
 	} {
 		if !strings.Contains(flat, want) {
 			t.Errorf("page one lacks %q", want)
+		}
+	}
+}
+
+// Several primary claims in no family are a warning on page one.
+func TestPageOneWarns(t *testing.T) {
+	in, res := fixture.Peel()
+	res.Diagnostics = append(res.Diagnostics, diag.Warning("R319", diag.Span{}, "H1 and H2 are both primary and in no family"))
+	for _, b := range render.Compose(in, res).Blocks {
+		if _, ok := b.(page.PageBreak); ok {
+			t.Fatal("page one is silent")
+		}
+		if strings.Contains(words(b), "Warning: H1 and H2 are both primary and in no family.") {
+			return
 		}
 	}
 }
