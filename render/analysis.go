@@ -40,6 +40,9 @@ func (c *composer) analysis(h *result.Hypothesis) {
 	if h.Claim == "describe" && h.Verdict == result.Described {
 		c.describeNote(v)
 	}
+	if h.Excludes != "" && judged(h.Verdict) {
+		c.small("Of " + h.Name + " and " + h.Excludes + " at most one can be wrong, unless the truth lies exactly on the limit; this stands in place of an adjustment.")
+	}
 	c.numbersOf(v)
 	c.testTable(v)
 	c.add2(c.beamFull(h))
@@ -197,7 +200,10 @@ func (c *composer) smallest(v voice) {
 		what = "limit below "
 	}
 	where := v.shown(&h.Judged).At(h.SmallestLimit.V) + unitTail(v)
-	if h.Claim == "equivalent" && h.SmallestMargin.OK || !h.SmallestLimit.OK {
+	switch {
+	case h.Claim == "equivalent" && h.SmallestLow.OK && h.SmallestLimit.OK:
+		where = v.shown(&h.Judged).At(h.SmallestLow.V) + " to " + where
+	case h.Claim == "equivalent" && h.SmallestMargin.OK || !h.SmallestLimit.OK:
 		where = v.marginWords(h.SmallestMargin.V)
 	}
 	c.para("The claim would be established for any " + what + where + ". This value was found after the data; it is not a claim.")
@@ -337,6 +343,9 @@ func (c *composer) alternatives(v voice) {
 	}
 	if len(t.Rows) > 0 {
 		v.judgedRow(t, "the analysis that decides", &v.h.Judged).Strong = true
+	}
+	if h := v.h; h.MethodsTried > 0 {
+		t.note(number.Int(h.MethodsAgree) + " of " + plural(h.MethodsTried, "other method gives", "other methods give") + " the same verdict. The planned method decides.")
 	}
 	t.to(c)
 }

@@ -34,8 +34,11 @@ func (c *composer) beliefs() {
 		t.note("Mean and SD on the analysis scale" + scaleText(o) + ".")
 		t.to(c)
 		c.add2(c.beliefFigure(p, o))
-		if p.BayesFactor.OK {
+		switch {
+		case p.BayesFactor.OK:
 			c.para("Bayes factor of the stated null over the rest of this belief: " + number.Significant(p.BayesFactor.V, 3) + ".")
+		case p.LnBayesFactor.OK:
+			c.para("Natural logarithm of the Bayes factor of the stated null over the rest of this belief: " + number.Significant(p.LnBayesFactor.V, 3) + ".")
 		}
 	}
 	c.beliefRange()

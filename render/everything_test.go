@@ -85,7 +85,7 @@ var (
 		".Before.Study", ".After.Study", // the path names each result
 		".Broken", ".Hypotheses[].Studies[]", // only of a broken chain; of pooled evidence the sentence names them
 		".Removed[].Assumptions[].Assumption", ".Removed[].Assumptions[].Shows[].What", ".Removed[].Judged.Analysis.Method", // its sentence is printed,
-		".Removed[].MarginWhy", ".Removed[].Studies[]", // as it is no claim of the plan now
+		".Removed[].MarginWhy", ".Removed[].Excludes", ".Removed[].Studies[]", // as it is no claim of the plan now
 	}
 	notInJSON = []string{
 		".Code", ".Because", ".Sort", ".Form", ".MeasureLabel", ".Dropped[].Group", ".Dropped[].Why", ".Changes[].Old", ".Changes[].New",

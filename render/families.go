@@ -14,13 +14,13 @@ func (c *composer) combined() {
 	}
 	c.heading(1, "Combined p-values", "combined")
 	c.para("A combination of p-values can show an effect in at least one study. It says nothing of an average effect or of its size.")
-	t := newTable("", "Hypothesis", "Method", "Case", ">Studies", "#Statistic", "#df", "#p", "Toward")
+	t := newTable("", "Hypothesis", "Set", "Method", "Case", ">Studies", "#Statistic", "#df", "#p", "Toward")
 	for _, x := range c.res.Combined {
 		kind := "as reported"
 		if x.Case == "worst-case" {
 			kind = "least favourable values for what is not fully known"
 		}
-		t.row(x.Hypothesis, x.Method, kind, number.Int(x.K), number.Statistic(x.Statistic), number.DF(x.DF), number.P(x.P), x.Toward)
+		t.row(x.Hypothesis, x.Set, x.Method, kind, number.Int(x.K), number.Statistic(x.Statistic), number.DF(x.DF), number.P(x.P), x.Toward)
 	}
 	t.to(c)
 	for _, x := range c.res.Combined {

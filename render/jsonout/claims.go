@@ -37,6 +37,11 @@ func hypothesisObject(res *result.Result, h *result.Hypothesis) *object {
 	if h.WhatNext != nil {
 		o.put("what_next", nextObject(h.WhatNext))
 	}
+	if h.MethodsTried > 0 {
+		o.integer("methods_agree", h.MethodsAgree)
+		o.integer("methods_tried", h.MethodsTried)
+	}
+	o.text("excludes", h.Excludes)
 	o.some("by_set", judgements(res, h, h.BySet))
 	o.some("alternatives", judgements(res, h, h.Alternatives))
 	return o
@@ -74,6 +79,7 @@ func judgedNumbers(o *object, res *result.Result, h *result.Hypothesis, j *resul
 	o.opt("s_value", j.SValue)
 	o.opt("smallest_margin", j.SmallestMargin)
 	o.opt("smallest_limit", j.SmallestLimit)
+	o.opt("smallest_low", j.SmallestLow)
 }
 
 // verdict adds the verdict with its reason and reading.

@@ -79,6 +79,7 @@ func floats(v []float64) []any {
 func combinedObject(c *result.Combined) *object {
 	o := &object{}
 	o.str("hypothesis", c.Hypothesis)
+	o.text("set", c.Set)
 	o.str("method", c.Method)
 	o.integer("k", c.K)
 	o.opt("statistic", c.Statistic)
@@ -180,6 +181,9 @@ func priorObject(p *result.Prior) *object {
 	o.put("before", beliefObject(&p.Before))
 	o.put("after", beliefObject(&p.After))
 	o.opt("bayes_factor", p.BayesFactor)
+	if !p.BayesFactor.OK {
+		o.opt("ln_bayes_factor", p.LnBayesFactor)
+	}
 	o.list("path", each(p.Path, beliefObject))
 	return o
 }

@@ -97,7 +97,7 @@ func analysisFields() []field {
 func judgedFields() []field {
 	test := fields(joinFields(must("null", number()), must("alternative", oneOf("greater", "less", "two-sided")), may("statistic", text()), may("value", number()), may("df", number()), withLn("p"))...)
 	return joinFields(may("set", text()), may("n", number()), may("events", number()), analysisFields(), may("notes", array(text())),
-		may("tests", array(test)), withLn("p"), withLn("p_adjusted"), may("s_value", number()), may("smallest_margin", number()), may("smallest_limit", number()),
+		may("tests", array(test)), withLn("p"), withLn("p_adjusted"), may("s_value", number()), may("smallest_margin", number()), may("smallest_limit", number()), may("smallest_low", number()),
 		must("verdict", oneOf(verdictWords...)), may("reason", text()), may("reading", text()), may("reading_words", text()))
 }
 

@@ -41,7 +41,7 @@ func hypothesisSchema() *object {
 	return fields(joinFields(must("name", text()), must("outcome", text()), must("claim", text()), may("role", oneOf("primary", "secondary", "exploratory")), may("statement", text()), may("alpha", number()),
 		may("margin", pair), may("margin_why", text()), may("limit", number()), may("evidence", oneOf(evidenceWords...)), may("studies", array(text())), judgedFields(),
 		must("post_hoc", yesNo()), must("sentence", text()), must("interval_decides", yesNo()), may("descriptive", fields(analysisFields()...)),
-		may("curve", array(pair)), may("assumptions", array(check)), may("what_next", next), may("by_set", other), may("alternatives", other))...)
+		may("curve", array(pair)), may("assumptions", array(check)), may("what_next", next), may("methods_agree", integer()), may("methods_tried", integer()), may("excludes", text()), may("by_set", other), may("alternatives", other))...)
 }
 
 func pooledSchema() *object {
@@ -58,7 +58,7 @@ func pooledSchema() *object {
 
 func combinedSchema() *object {
 	tally := fields(joinFields(must("toward", integer()), must("with_direction", integer()), withLn("p"))...)
-	return fields(joinFields(must("hypothesis", text()), must("method", text()), must("k", integer()), may("statistic", number()), may("df", number()), withLn("p"),
+	return fields(joinFields(must("hypothesis", text()), may("set", text()), must("method", text()), must("k", integer()), may("statistic", number()), may("df", number()), withLn("p"),
 		may("toward", text()), must("case", oneOf("as-reported", "worst-case")), may("studies", array(text())), may("tally", tally))...)
 }
 
@@ -79,7 +79,7 @@ func lookSchema() *object {
 
 func priorSchema() *object {
 	belief := fields(may("study", text()), must("mean", number()), must("sd", number()), must("benefit", number()), must("inside", number()), must("harm", number()), may("null_share", number()))
-	return fields(must("name", text()), must("outcome", text()), may("label", text()), must("before", belief), must("after", belief), may("bayes_factor", number()), must("path", array(belief)))
+	return fields(must("name", text()), must("outcome", text()), may("label", text()), must("before", belief), must("after", belief), may("bayes_factor", number()), may("ln_bayes_factor", number()), must("path", array(belief)))
 }
 
 func deviationSchema() *object {
