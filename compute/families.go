@@ -92,6 +92,9 @@ func (r *run) adjusted(f *record.Family, in family.Family, res family.Result) {
 		if f.Procedure.V != "all" || len(f.After.V) > 0 {
 			t.adjusted = true
 			t.p, t.against = m.P, m.Against
+			if m.Tested {
+				t.level = m.Level
+			}
 		}
 		one := result.Member{Hypothesis: names[i], P: pOf(own), PAdjusted: pOf(m.P), Rejected: m.Established}
 		if m.Tested {

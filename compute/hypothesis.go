@@ -27,6 +27,7 @@ type trial struct {
 	// p decides, against contradicts: after sets and families.
 	p, against dist.Tail
 	adjusted   bool
+	level      float64 // the level of its own p in the family; 0: its own
 }
 
 // attempt is one analysis of a hypothesis: in one set, or an alternative.

@@ -115,7 +115,11 @@ func (t *trial) next(at attempt) *result.WhatNext {
 	if t.out.Verdict != result.Open {
 		return nil
 	}
-	return claim.Next(at.inf, t.question, at.a)
+	q := t.question
+	if t.level > 0 { // the share of the level that the family left to this claim
+		q.Alpha = t.level
+	}
+	return claim.Next(at.inf, q, at.a)
 }
 
 // count says how many of the other methods come to the same verdict.

@@ -31,12 +31,16 @@ func Next(inf *effect.Inference, q Question, a Assessment) *result.WhatNext {
 		}
 	}
 	z := dist.NormalQuantile(q.Error())
-	now := 1 / inf.V.V
-	perSubject := now / inf.N
+	have := 1 / inf.V.V
+	perSubject := have / inf.N
+	if inf.DF.OK { // as a normal estimate, the present one carries a little less
+		r := z / dist.TQuantile(q.Error(), inf.DF.V)
+		have *= r * r
+	}
 	sizes := [2]*[2]result.Opt{{}, {}}
 	for i, power := range powers {
-		sizes[0][i] = subjects(g, z, power, 0, now, perSubject)
-		sizes[1][i] = subjects(g, z, power, now, now, perSubject)
+		sizes[0][i] = subjects(g, z, power, 0, perSubject)
+		sizes[1][i] = subjects(g, z, power, have, perSubject)
 	}
 	w.NewStudyN80, w.NewStudyN90 = sizes[0][0], sizes[0][1]
 	w.AddedN80, w.AddedN90 = sizes[1][0], sizes[1][1]
@@ -62,9 +66,9 @@ func gaps(q Question, y float64) []float64 {
 
 // subjects is the smallest whole number whose added information reaches the
 // power, beside the information already there.
-func subjects(gaps []float64, z, power, have, now, perSubject float64) result.Opt {
+func subjects(gaps []float64, z, power, have, perSubject float64) result.Opt {
 	enough := func(added float64) bool { return reached(gaps, z, have, added) >= power }
-	hi := now
+	hi := perSubject
 	for range 200 {
 		if enough(hi) {
 			lo := 0.0
@@ -76,7 +80,7 @@ func subjects(gaps []float64, z, power, have, now, perSubject float64) result.Op
 					lo = mid
 				}
 			}
-			return result.Some(math.Ceil(hi/perSubject - 1e-9))
+			return result.Some(math.Max(1, math.Ceil(hi/perSubject-1e-9)))
 		}
 		hi *= 2
 	}
