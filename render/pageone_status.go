@@ -150,7 +150,7 @@ func (c *composer) denseNumbers() string {
 		for _, k := range used {
 			n = append(n, number.CountOpt(pick(t)[k]))
 		}
-		s += " " + t.Group + " " + strings.Join(n, " / ")
+		s += " " + strings.TrimSpace(t.Group+" "+strings.Join(n, " / "))
 	}
 	return s + "."
 }
