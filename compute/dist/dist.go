@@ -55,8 +55,13 @@ func tailLn(lnp float64) Tail {
 	if lnp >= 0 {
 		return sure
 	}
-	p := math.Exp(lnp)
-	return Tail{P: p, Q: -math.Expm1(lnp), LnP: lnp, LnQ: math.Log1p(-p)}
+	t := Tail{P: math.Exp(lnp), Q: -math.Expm1(lnp), LnP: lnp}
+	if t.P > 0.5 {
+		t.LnQ = math.Log(t.Q)
+	} else {
+		t.LnQ = math.Log1p(-t.P)
+	}
+	return t
 }
 
 // tailOfLogs is the Tail of two probabilities that add to 1 up to rounding,
@@ -83,11 +88,7 @@ func TailOfLn(lnp float64) Tail {
 	if math.IsInf(lnp, -1) {
 		return impossible
 	}
-	t := tailLn(lnp)
-	if t.P > 0.5 && t.Q > 0 {
-		t.LnQ = math.Log(t.Q)
-	}
-	return t
+	return tailLn(lnp)
 }
 
 // double is twice the probability, at most 1.

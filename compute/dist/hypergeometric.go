@@ -195,33 +195,43 @@ func (h Hypergeometric) split(x float64) (above, below float64) {
 	return math.Log(up), h.lnWeight(x-1, m) + math.Log(s)
 }
 
-// lnWeight is ln[weight(x)/weight(m)]: by the product of ratios when few, by
-// binomial probabilities otherwise.
+// lnWeight is ln[weight(x)/weight(m)].
 func (h Hypergeometric) lnWeight(x, m float64) float64 {
-	if math.Abs(x-m) <= 64 {
-		w := 0.0
-		p := 1.0
-		for j := min(x, m); j < max(x, m); j++ {
-			p *= h.ratio(j)
-			if p < 1e-250 || p > 1e250 {
-				w += math.Log(p)
-				p = 1
-			}
-		}
-		w += math.Log(p)
-		if x < m {
-			return -w
-		}
-		return w
-	}
 	// With p1, p2 of odds ratio ψ the weight is proportional to the product
-	// of two binomial probabilities; odds1 puts the mean near m.
+	// of two binomial probabilities; o1 puts the mean near m. Few steps, and
+	// odds too extreme for probabilities, go by the ratios.
 	o1 := (m + 0.5) / (h.N1 - m + 0.5)
 	o2 := o1 / h.Psi
+	if math.Abs(x-m) <= 64 || o2 < 1e-100 || o2 > 1e100 {
+		return h.lnRatios(x, m)
+	}
 	p1, q1 := o1/(1+o1), 1/(1+o1)
 	p2, q2 := o2/(1+o2), 1/(1+o2)
 	return BinomialLnPMF(x, h.N1, p1, q1) - BinomialLnPMF(m, h.N1, p1, q1) +
 		BinomialLnPMF(h.S-x, h.N2, p2, q2) - BinomialLnPMF(h.S-m, h.N2, p2, q2)
+}
+
+// lnRatios is lnWeight as a product of ratios, one a step.
+func (h Hypergeometric) lnRatios(x, m float64) float64 {
+	w := 0.0
+	p := 1.0
+	for j := min(x, m); j < max(x, m); j++ {
+		r := h.ratio(j)
+		if r < 1e-50 || r > 1e50 {
+			w += math.Log(r)
+			continue
+		}
+		p *= r
+		if p < 1e-250 || p > 1e250 {
+			w += math.Log(p)
+			p = 1
+		}
+	}
+	w += math.Log(p)
+	if x < m {
+		return -w
+	}
+	return w
 }
 
 // tailOfRatio is the Tail of e^a/(e^a + e^b).

@@ -96,7 +96,7 @@ func checkTail(t Tail) string {
 		}
 	}
 	// near 1 the logarithm must come from the small side
-	if t.Q < 1e-3 && t.Q > 0 && relative(t.LnP, math.Log1p(-t.Q)) > 1e-12 {
+	if t.Q < 1e-3 && t.Q > 1e-300 && relative(t.LnP, math.Log1p(-t.Q)) > 1e-12 {
 		return fmt.Sprintf("LnP %v with Q %v", t.LnP, t.Q)
 	}
 	return ""

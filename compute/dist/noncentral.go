@@ -28,6 +28,15 @@ func NoncentralTUpper(t, nu, delta float64) Tail {
 		return TUpper(t, nu)
 	case t == 0:
 		return NormalUpper(-delta)
+	case math.Abs(delta) > 1e8*math.Sqrt(1+nu) && t*delta > 0:
+		// The normal variable no longer counts beside delta: T > t when
+		// u < delta/t (delta > 0), or u > delta/t.
+		q := delta / t
+		tail := ChiSquareUpper(nu*q*q, nu)
+		if delta > 0 {
+			return tail.Complement()
+		}
+		return tail
 	}
 	k := nctKernel{t: t, nu: nu, delta: delta}
 	k.lead = 0.5*math.Log(nu/math.Pi) - stirling(nu/2)
@@ -70,6 +79,9 @@ func (k nctKernel) side(upper bool) float64 {
 	}
 	// The peak: where the derivative, falling in u, changes sign.
 	v := k.peak(t, delta)
+	if top := g(v); top < -1e13 {
+		return top // the rest is below the rounding of the logarithm
+	}
 	u := math.Exp(v)
 	curve := 2 * k.nu * u * u
 	if z := t*u - delta; z < 30 {
@@ -113,17 +125,25 @@ func turnsOf(t, delta float64) []float64 {
 	return out[:n:n]
 }
 
-// peak solves t·u·λ(t·u − delta) + nu − nu·u² = 0 in v = ln u, λ = φ/Φ.
+// peak solves t·u·λ(t·u − delta) + nu − nu·u² = 0 in v = ln u, λ = φ/Φ. The
+// left side is positive below the root and negative above it; the root lies
+// above 0 when t > 0 and below 0 when t < 0.
 func (k nctKernel) peak(t, delta float64) float64 {
 	slope := func(v float64) float64 {
 		u := math.Exp(v)
-		return (t*u*hazard(delta-t*u)+k.nu)/u/u - k.nu
+		return t*u*hazard(delta-t*u) + k.nu - k.nu*u*u
 	}
-	v, ok := numeric.Invert(slope, 0, 0.5, -300, 300)
-	if !ok {
-		return 0
+	a, step := 0.0, math.Copysign(0.25, t)
+	for math.Abs(a) < 300 {
+		b := a + step
+		if (slope(b) > 0) != (t > 0) {
+			v, _ := numeric.Root(slope, min(a, b), max(a, b), 1e-9)
+			return v
+		}
+		a = b
+		step *= 2
 	}
-	return v
+	return a
 }
 
 // hazard is φ(z)/P(Z > z).

@@ -82,6 +82,9 @@ func NormalQuantileLn(lnp float64) float64 {
 	case lnp > -600:
 		return NormalQuantile(math.Exp(lnp))
 	}
+	if lnp < -1e100 {
+		return math.Sqrt2 * math.Sqrt(-lnp)
+	}
 	z := math.Sqrt(-2 * (lnp + halfLn2Pi + 0.5*math.Log(-2*lnp)))
 	for range 8 {
 		f := lnNormalFar(z) - lnp

@@ -16,6 +16,8 @@ func Ei(t float64) float64 {
 		panic("dist: Ei is built for t >= 0")
 	case t == 0:
 		return math.Inf(-1)
+	case t > 720:
+		return math.Inf(1)
 	case t < 40:
 		return euler + math.Log(t) + eiSeries(t)
 	}
@@ -47,7 +49,7 @@ func eiSeries(t float64) float64 {
 	for n := 1.0; ; n++ {
 		term *= t / n
 		sum += term / n
-		if term < 1e-18*sum {
+		if term <= 1e-18*sum {
 			return sum
 		}
 	}
