@@ -32,6 +32,7 @@ func Run(in *protocol.Loaded, engine string) *result.Result {
 	r.sensitivities()
 	r.beliefs()
 	r.sealedPlan()
+	r.conclusion()
 	r.finish()
 	return r.res
 }

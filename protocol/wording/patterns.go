@@ -1,124 +1,107 @@
 package wording
 
-// patterns are the phrases, class by class; see parse for how they are
-// written. This file is a table, long because English is. Words that also have
-// an innocent use ("as well as", "the same lots") stand only with the
-// neighbours that make them a claim.
-var patterns = compile(map[Class][]string{
-	NoEffect: {
-		"no|zero|without|little any? meaningful|real|measurable|detectable|discernible|visible|apparent|noticeable|overall|beneficial|additional|clinical|practical|whatsoever? effect|effects|difference|differences|benefit|benefits|impact|influence|advantage|improvement|association|relationship|correlation|disadvantage",
-		"no change in",
-		"not|n't have|has|had any|an? effect|effects|impact|influence|benefit|bearing",
-		"does|did|do|has not work|worked|help|helped|matter",
-		"doesn't|didn't|don't work|help|matter|differ|affect|influence",
-		"does|did|do|will not differ|affect|influence|alter|matter",
-		"has|have not affected|influenced|altered",
-		"makes|made|make|making no|little difference|odds",
-		"ineffective|ineffectual|useless|futile",
-		"is|are|was|were not effective|efficacious|useful|beneficial",
-		"is|are|was|were not different|any? different",
-		"isn't|aren't|wasn't|weren't effective|different|efficacious|useful|beneficial",
-		"unaffected by?",
-		"does|did|achieves|achieved nothing",
-		"null hypothesis? is|was true|accepted|confirmed",
-		"accept|accepted|accepts|accepting the null hypothesis?",
-		"fails|failed to work|help",
-		"absence|lack of an|any|a|the? effect|difference|benefit|association",
-	},
-	NotSignificant: {
-		"no|not|without|n't _1 statistically? significant|significantly _2 difference|differences|effect|effects|benefit|change|association|improvement|different|better|worse|higher|lower|increase|reduction|correlation|greater|fewer|more|less|shorter|longer",
-		"no|not|non|without|n't statistically? significant|significance",
-		"not|n't reach|attain|achieve statistical? significance",
-		"insignificant|nonsignificant",
-		"no|little|without evidence|indication|sign|signs|hint of|for|that _4 effect|difference|differences|benefit|association|harm|improvement|differ|differs|impact|advantage|change|effects",
-		"failed|fails|fail|failing|unable to show|find|detect|demonstrate|reach|identify a|an|any|the? clear|significant|real|statistical? effect|difference|benefit|significance|association|advantage|improvement",
-		"not|n't|never show|find|detect|see|observe|demonstrate|found|shown|seen|detected a|an|any|the? clear|significant|real|meaningful? effect|difference|benefit|association|advantage|differences|effects|improvement",
-		"no clear|real|overall? effect|difference|differences|benefit|association|change was|were|could found|detected|seen|observed|shown|demonstrated|be",
-		"effect|difference|differences|benefit|association|improvement|advantage was|were|is|has|could not been|be? shown|found|detected|seen|observed|demonstrated|established|proven",
-	},
-	Proof: {
-		"prove|proves|proved|proven|proving", "proof of|that?", "conclusive|conclusively|definitive|definitively|irrefutable|irrefutably|incontrovertible|unequivocal|unequivocally|indisputable|undeniable|undeniably",
-		"beyond any|a|all? reasonable? doubt|dispute|question", "no|without|leaves|leave any|a|no|little? doubt|question that|about?",
-		"certainly|undoubtedly|unquestionably|indisputably", "without fail", "certainty",
-		"confirm|confirms|confirmed|confirming that?", "establishes|established that", "guarantee|guarantees|guaranteed",
-		"settles|settled|settle the|this question|matter|debate", "clearly|plainly|obviously show|shows|showed|demonstrate|demonstrates|demonstrated that?",
-		"we now know that?", "it is now? a? fact|known|clear|evident|obvious that?", "clear|overwhelming|compelling evidence that|for|of",
-		"100|100% sure|certain",
-	},
-	Difference: {
-		"differ|differs|differed|differing", "is|are|was|were clearly|markedly|statistically|quite|really? different",
-		"significantly _1 different|higher|lower|greater|fewer|more|less|reduced|increased|improved|shorter|longer|faster|slower|stronger|weaker|better|worse|heavier|lighter|reduces|increases|improves",
-		"significant _1 difference|differences|effect|effects|increase|decrease|reduction|improvement|benefit|change|association|correlation", "statistically significant", "reached|reaches|attained statistical? significance",
-		"there is|was|are|were a|an clear|real|marked|genuine|true? difference|effect|benefit|association|increase|decrease|reduction|improvement",
-		"a|the|real|true|clear|marked|an effect|difference|benefit|association|improvement was|is shown|found|seen|observed|demonstrated|detected|real|confirmed|established",
-		"it|treatment|method|drug|gel|product|die|approach|programme|program|process|course|intervention|vaccine|coating|training|diet works|worked",
-		"is|are|was|were|proved|be highly|very|clearly|truly? effective|efficacious|beneficial",
-		"reduces|reduced|lowers|lowered|increases|increased|improves|improved|shortens|shortened|prolongs|prolonged|strengthens|strengthened|weakens|weakened|worsens|worsened|relieves|relieved|eases|eased|prevents|prevented|halves|halved|doubles|doubled|cures|cured the|all|its|their|peel? pain|symptoms|mortality|yield|yields|strength|wear|scrap|defects|risk|risks|recovery|healing|scores|infections|relapse|relapses|survival|errors|output|quality|growth|throughput|sleep|stays|falls|costs|returns|injuries|injury|deaths|waste|accuracy|attendance",
-		"does|did|do|can|will|doesn't|didn't _5 reduce|lower|increase|improve|shorten|prolong|strengthen|weaken|worsen|relieve|ease|prevent|halve|double|raise the|all|its|their? pain|symptoms|mortality|yield|yields|strength|wear|scrap|defects|risk|risks|recovery|healing|scores|infections|relapse|relapses|survival|errors|output|quality|growth|sleep|stays|falls|costs|returns|injuries|deaths|waste|accuracy|attendance",
-		"prevents|prevented|relieves|relieved the|all",
-		"has|have|had|having a|an clear|marked|real|strong|positive|negative|beneficial|favourable|considerable? effect|impact|influence on|upon?",
-		"is|are|was|were associated|correlated with",
-		"shows|showed|show|demonstrates|demonstrated|demonstrate|reveals|revealed|found|find a|an clear|real|marked|positive|negative|significant? difference|effect|benefit|association|improvement|reduction|increase",
-	},
-	Superiority: {
-		"better|stronger|safer|faster|preferable than|to?", "superior|superiority to|over?", "outperform~", "beats|beat|surpass~|excels the?", "outdo|outdoes|outdid",
-		"more|less effective|efficacious|reliable|accurate|precise|powerful|durable|potent|harmful|painful than?",
-		"higher|lower|greater|longer|shorter|fewer|larger|smaller|quicker|worse|weaker|slower|cheaper|lighter|heavier than", "inferior|inferiority to?", "advantage over", "improvement on|over",
-		"the best|preferred treatment|choice|option|method|product|supplier|adhesive|machine|material|process", "should be preferred|favoured|favored", "favours|favors|favoured|favored the", "the winner",
-	},
-	Relevance: {
-		"clinically|practically|biologically|economically|technically relevant|meaningful|important|significant|worthwhile",
-		"clinical|practical|biological|economic relevance|importance|significance|benefit",
-		"large|substantial|considerable|dramatic|huge|major|important|meaningful|relevant|remarkable|impressive|striking|worthwhile|profound|sizeable effect|effects|benefit|benefits|improvement|reduction|increase|difference|differences|gain|gains|advantage|saving|savings",
-		"substantially|dramatically|considerably|markedly|greatly|vastly|remarkably|strikingly reduced|reduces|increased|increases|improved|improves|lowered|lowers|better|higher|lower|longer|shorter|stronger|faster|fewer|raised|raises|worse",
-		"large|big|great enough to matter", "is|was|are|were worthwhile|substantial|considerable|dramatic|huge", "matters to|for? patients|customers|users|practice|production?",
-		"much|far better|stronger|faster|superior|safer than?",
-	},
-	Equivalence: {
-		"equivalent|equivalence|bioequivalent|bioequivalence|interchangeable|interchangeably|exchangeable to|with?",
-		"as good|strong|effective|safe|fast|accurate|reliable|precise|durable|efficacious|potent as", "equally good|strong|effective|safe|fast|accurate|well|reliable|precise|durable|efficacious|potent",
-		"the same as", "exactly|practically|virtually|essentially|basically the? same|equal|identical", "the same effect|effects|result|results|strength|quality|performance|yield|outcome|outcomes|accuracy",
-		"is|are|was|were identical|indistinguishable|alike", "identical to|with", "indistinguishable from", "is|are|was|were similar|comparable to|with?",
-		"comparable|similar effect|effects|efficacy|effectiveness|performance|strength|outcomes|yield|accuracy|safety", "comparable|similar to",
-		"on par with?", "on a par with?", "no different from|than", "may|can|could be substituted|exchanged|swapped for", "agree|agrees|agreed well|closely|perfectly", "every bit as", "works|work|performs|perform|performed|worked|does|do|did _1 as well as", "is|are|was|were _1 the same",
-		"too small to matter|care|notice", "trivial|negligible|immaterial", "no|without relevant|meaningful|important|appreciable difference|differences|effect", "of no|little practical|clinical? importance|relevance|consequence",
-	},
-	Noninferiority: {
-		"noninferior|noninferiority to?", "non|not inferior|inferiority to?", "no|not|never _1 worse|weaker|slower|poorer than?", "isn't|wasn't|aren't|weren't any? worse|inferior|weaker than?",
-		"at least as|equally good|strong|effective|safe|fast|accurate|well|reliable|durable|precise as?", "not|no less effective|safe|reliable|accurate|strong|durable|precise than?",
-		"no|without relevant|meaningful|important|appreciable|any? loss of|in efficacy|effectiveness|strength|quality|performance|accuracy",
-	},
-	Trend: {
-		"trend|trended|trending|trends toward|towards|to|for|in", "a|clear|positive|negative|favourable|favorable|downward|upward trend",
-		"approached|approaching|approaches|nearing|near|bordering|borders|verging|close|short on|to|of? statistical? significance|significant",
-		"nearly|almost|marginally|borderline|barely|narrowly|just|weakly|virtually|quasi statistically? significant", "borderline|marginal|near|almost statistical? significance", "tended|tends|tendency|tendencies to|toward|towards",
-		"missed|misses|missing just|narrowly|barely? statistical? significance", "just|narrowly|barely missed|misses|failed|fell short|to? of|reach? statistical? significance", "fell|fails|failed just|narrowly short|to of|reach? statistical? significance",
-		"not quite statistically? significant", "would have been|reached|become statistically? significant|significance", "numerically|directionally better|higher|lower|greater|superior|favourable|favorable|fewer|more|less|longer|shorter", "promising|encouraging",
-	},
-	Causation: {
-		"cause|causes|caused|causing", "effect|gain|improvement|difference|change|reduction|increase|decrease|rise|fall|drop is|was|are|were due|owing|attributable to", "attributed|attributable|ascribed to", "leads|led|lead|leading to", "resulted|resulting in", "responsible for",
-		"brings|brought|bringing about", "causal|causally|causation", "triggers|triggered|induces|induced a|an|the", "makes|made patients|people|them|units|parts|pupils|students|samples better|stronger|healthier|faster|safer|weaker|worse", "thanks to",
-	},
-	Safety: {
-		"safe|safely", "harmless|innocuous|nontoxic", "risk free", "no|zero|without any|added|additional|serious|increased|extra|safety|side? risk|risks|harm|harms|danger|hazard|hazards|toxicity|concern|concerns|effects for|to?", "well tolerated",
-		"does|did|do|will|can no harm", "poses|pose|posed no", "free of|from side|adverse|any? risk|risks|harm|effects|danger", "cannot|not|never harm|hurt|injure|endanger",
-	},
-	Generality: {
-		"always|invariably|universally", "holds|hold|held|applies|apply|works|work|valid|true|used|use|helps|help|generalises|generalizes|safe|effective _1 for|in|to|at|under|on|of all|every|any|everyone|everybody", "works|work|holds|hold|applies|apply everywhere|anywhere", "everyone|everybody|nobody benefits|improves|improved|benefited|recovers|recovered|gains", "without exception|exceptions", "in general",
-	},
-	Misread: {
-		"probability|chance|likelihood|odds of|that _1 null|hypothesis|h0|alternative _3 true|false|real|correct|wrong|right", "probability|chance|likelihood|odds that _2 effect|difference|result|results|finding|findings|treatment|it|drug|gel _4 true|false|real|chance|correct|wrong|coincidence|random|luck|works|exists",
-		"%~ _1 probability|chance|likelihood|certainty|confidence that", "%~ certain|sure|confident of|that?", "probability|chance|likelihood that _2 true|population|real|actual|effect|value|mean|parameter|difference _3 lies|lie|lying|is|falls|being",
-		"due|down to pure|mere|random|simple? chance|luck|coincidence", "arose|arisen|occurred|happened|explained|explain by pure|mere? chance|luck|coincidence", "would replicate", "highly|very|extremely|strongly statistically? significant", "was|is|be just|only|mere|pure? luck|coincidence",
-	},
-})
+// This file is a table: what phrases look like, class by class. Among phrases
+// that begin at one word the longest counts, then the one written first.
 
-// compile parses the patterns in the order of the classes.
-func compile(table map[Class][]string) (out []pattern) {
-	for _, c := range Classes {
-		for _, text := range table[c] {
-			out = append(out, parse(c, text))
-		}
-	}
-	return out
+type entry struct {
+	class     Class
+	direction Direction
+	flags     flag
+	patterns  []string
+}
+
+// flag refines a class.
+type flag uint8
+
+const (
+	exact     flag = 1 << iota // the same in every respect
+	ofBenefit                  // speaks of the better side only
+	ofHarm                     // speaks of the worse side only
+	negative                   // the denial is part of the phrase
+	plain                      // a denial before it does not turn it
+)
+
+var entries = []entry{
+	{NoEffect, "", negative, []string{
+		"no|zero|without|little|nil %adj? %adj? %eff", "without any|an|a %adj? %eff", "no %adj? or|nor %adj %eff",
+		"no|without|little %adj? or|and %adj %eff", "no %out %eff", "no %eff whatever|whatsoever|at",
+		"lack|lacks|lacked|lacking|absence of? any|an|a|the? %adj? %eff", "devoid of %adj? %eff",
+		"not %have|yield|yields|give|bring|produce|offer|show|make any|an|a %adj? %eff", "%have not had|produced|made|brought any|an|a %adj? %eff",
+		"not to? !significantly|statistically _1 %actv", "not to? lower the|%out", "not to? !significantly|statistically _1 improve|reduce|increase|raise|shorten|lengthen|prolong|relieve|prevent|protect|cure|heal|decrease|benefit|worsen|speed|improved|reduced|increased|lowered|raised|shortened|relieved|prevented|benefited",
+		"make|makes|made|making no|little|hardly _1 difference|odds", "ineffective|ineffectual|useless|futile|pointless|worthless|inefficacious|fruitless",
+		"unaffected|unchanged|uninfluenced|unaltered", "does|did|do nothing", "not !significantly|statistically %trueadv? effective|efficacious|beneficial|helpful|useful|different|of", "not depend", "in vain", "null effect|effects", "is|was|are|were nil|zero",
+		"hardly|barely|scarcely any|a %adj? %eff", "neither|never helps|helped|works|worked|improves|improved", "%is of no|little use|help|benefit|value|avail",
+		"nothing to|is|was gain|gained", "offer|offers|offered|bring|brings|brought|add|adds|added|give|gives|gave|contribute|contributes|contributed nothing|little", "no longer? benefits|helps", "irrespective|regardless of the|which|whether", "%eff %is absent|nil|zero|nonexistent|excluded",
+		"there %is|%be no|zero %out", "no change", "%eff can be? excluded|ruled|dismissed", "independent of the|which", "no better than?|off?", "inert",
+		"no impact|use|good|response", "null hypothesis %is supported|plausible",
+	}},
+	{NoEffect, Better, negative | ofBenefit, []string{
+		"no %adj? benefit|benefits|advantage|advantages|improvement|improvements|gain|gains|added? value", "not benefit|improve|help|relieve|heal|cure|protect|prevent|better",
+		"%exclude out? a|any|the|all? %adj? benefit|advantage|gain|improvement",
+	}},
+	{TooSmall, "", negative | ofBenefit, []string{
+		"benefit|gain|gains|saving|savings|advantage|improvement _5 %is _1 smaller|less|below|too|negligible|trivial|irrelevant|immaterial",
+		"benefit|gain|gains|saving|savings|advantage|improvement|reduction _6 %is _1 negligible|trivial|irrelevant|immaterial|excluded|unimportant", "no|without %field? %rel %adj? benefit|gain|gains|saving|savings|advantage|improvement|relief",
+		"too small|little a|an benefit|gain|saving|improvement", "%exclude out? a|any|the|all? %rel? %adj? benefit|gain|saving|savings|advantage|improvement _1 as|larger|greater|bigger|beyond|above|of|that|exceeding|# large?",
+		"%exclude out? a|any|the|all? %field? %rel benefit|gain|saving|savings|advantage|improvement", "only|just|merely a? trivial|negligible _2 benefit|gain|number", "trivial|negligible|irrelevant _1 benefit|gain|saving|improvement|number",
+	}},
+	{TooSmall, "", negative, []string{
+		"no|without|little|any %field? %rel %adj? %eff|benefit", "no|without %field %adj? %rel? %eff", "no|little|any practical|clinical|real|biological importance|relevance|significance|consequence",
+		"of no|little|minor _2 importance|relevance|consequence|interest|significance", "negligible|negligibly|trivial|trivially|unimportant|immaterial|irrelevant|inconsequential|insubstantial|minuscule|miniscule",
+		"too small|little|slight|modest|weak|low to|for|of !say|tell|show|decide|settle|answer|allow|conclude|detect|exclude|know|judge|establish|see|support|draw|permit|a|firm|reach|confirm|refute|prove|demonstrate|resolve|separate|distinguish|rule|give|yield|provide|find", "smaller|less|lower than _3 matters|matter|smallest", "%eff|it not matter", "differ|differs|differed by less|no|at than|more|most",
+		"no difference|differences|effect larger|greater|bigger|wider|more|beyond|above|of than?", "%eff %is smaller|less|below|within than|the|#? ", "%exclude out? a|any|the|all? %rel %adj? %eff",
+		"by less than matters|the|#", "%eff of _3 %is excluded|ruled", "within the|our? region|margin|equivalence", "%eff %is minimal|tiny|minor|small|marginal|insignificantly",
+		"does|do not matter", "%exclude out? a|any|the|all? %adj? %eff _1 as|larger|greater|bigger|beyond|above|of|that|exceeding|# large?",
+	}},
+	{NotSignificant, "", negative, []string{
+		"no|not|without|non _1 significant|significantly _2 %eff|different|better|worse|higher|lower|fewer|longer|shorter|reduced|increased|improved", "no|not|non|without _1 significant|significantly|significance",
+		"not reach|attain|achieve|reached|attained|achieved _2 significance", "significance %is|was not reached|attained|achieved", "insignificant|nonsignificant|insignificantly|nonsignificantly",
+		"no|little|without _1 evidence|indication|indications|sign|signs|hint of|for|that|to|whatever", "no|little|without any? _1 evidence|indication|sign %is|that|of|was", "not find|detect|see|observe|found|detected|seen|observed any|a|an? _2 %eff|benefit",
+		"no _1 %adj? %eff|benefit _4 %is|could|can be? %see", "%seev no _1 %eff|evidence|benefit|improvement", "lack of significance|evidence", "not significant|significantly", "no %eff could|can be %see",
+	}},
+	{Equivalence, "", 0, []string{
+		"equivalent|equivalently|bioequivalent|bioequivalence|interchangeable|interchangeably|exchangeable|substitutable|equipotent", "%estv|for|of|is|be|prove|proves|proof|with the|an|a|their? equivalence|equality|parity|interchangeability",
+		"equivalence|equality|parity|interchangeability _5 %is been? _1 %est", "equivalence|equality %is|has been? _1 %est",
+		"as !well|long|much|often|far %quality|%amount|%out _2 as !#", "as well|long|much|often !as _4 as", "as many %out? _3 as !#", "just|equally|every as|bit? %quality|%amount", "just as %quality|%amount|%out", "equally !likely|well|probable|possible %quality|%amount|%out", "equally well",
+		"work|works|worked|perform|performs|performed|do|does|did|heal|heals|germinate|function|functions|hold|holds as well as", "comparable|comparably|similar|similarly|alike|equal|equals|equalled|equaled", "matches|matched|match the|that|those|its",
+		"on a? par", "agree|agrees|agreed _1 well|closely|perfectly|completely", "agree|agrees with !the", "%grp agreed with", "can|could|may be? _1 substituted|exchanged|swapped|interchanged", "can|may|could be? used interchangeably", "used interchangeably", "in line with each|one", "virtually|practically|essentially|effectively the same", "same for|within practical|all|the|any",
+		"equal|similar|comparable %eff|efficacy|results|performance|outcomes|outcome", "no less and no more", "does|do|did as well", "neither better nor worse", "tie between", "of equal|similar|comparable _2 %quality|strength|efficacy|performance|quality",
+	}},
+	{Equivalence, "", exact, []string{
+		"identical|indistinguishable", "exactly|absolutely|completely|precisely the? same|equal|alike", "exactly|precisely as %quality|%amount|%out", "the same !time|day|days|way|patients|people|participants|subjects|lot|lots|line|machine|operator|study|trial|method|margin|reason|hypothesis|record|plan|data|manner|direction|claim|unit|week|month|year|report|laboratory|team|error|level|test|thing|question|conditions|side|site|procedure|protocol|order|scale|sample",
+		"no|not any? different|different from|than|to", "no|not different", "%is one and the same", "not distinguishable",
+	}},
+	{Noninferiority, "", negative, []string{
+		"noninferior|noninferiority !margin|trial|design|test|hypothesis|claim|question|limit|will|is|was|has|have|remains|cannot|can", "non inferior", "non inferiority|noninferiority _6 %is been? _1 %est", "%estv|for|of|conclude|with non inferiority", "%estv|for|of noninferiority",
+		"no|not|never|hardly _1 %bad than?", "not %trueadv %bad", "at least as|equally %quality|%amount|%out as?", "no|not _1 less %quality|%amount|frequent|frequently|likely|often|satisfied", "no|not fewer|less _1 %out|%person|%thing", "no fewer|slower|weaker|rarer", "no|without _1 %rel|%adj? loss of|in",
+		"not underperform|worsen|impair|compromise|suffer|harm|damage|deteriorate|degrade|lag", "not inferior", "holds|held|hold its own", "can keep|keeps up with",
+		"not %bad _2 by more|an|a", "no deterioration|worsening", "worse by less|no", "matches or exceeds",
+	}},
+	{Trend, "", plain, []string{
+		"trend|trended|trending|trends !of|analysis|over|line", "near|nearing|approached|approaching|approaches|bordering|borders|bordered|verging|verged|close|short|shy on|upon|to|of|the|conventional|statistical? statistical|conventional|the? significance|significant",
+		"approached|approaches|approaching|neared|borderline|marginal _2 significance|significant", "nearly|almost|marginally|borderline|narrowly|just|practically|virtually|tantalisingly|tantalizingly|quasi _1 significant|significantly|significance",
+		"nearly|almost|narrowly|all|just but|about? _1 %est|significant|significantly|equivalent|superior|noninferior|excludes|excluded", "tended|tends|tend to|toward|towards", "tendency|tendencies", "missed|misses|missing just|narrowly|barely|only|statistical? statistical? significance", "just|narrowly|barely|only|marginally missed|missing|failed|short|misses",
+		"not quite _2 significant|significance|reach|reached", "would have|be|become been|reached|become? _1 significant|significance", "numerically|directionally|nominally _1 %up|%down|%good|%bad|superior|favourable|favorable|more|less|better|increased|reduced|improved", "suggestive of|trend|pattern", "promising|encouraging|tantalising|tantalizing",
+		"in|toward|towards the right|expected|desired|hoped direction", "fell|falls just? short of _2 significance", "just short|shy of", "lean|leans|leaned|leaning|inclined toward|towards|to|in", "a|strong|clear signal of|for|towards|toward|in",
+		"with|had more|larger|bigger participants|patients|samples|data|sample|n _3 significant|significance",
+	}},
+	{Failure, "", plain, []string{
+		"fail|failed|fails|failing|failure to _1 show|find|demonstrate|reach|detect|establish|confirm|prove|meet|improve|reduce|work|achieve|produce|deliver|help|differ|outperform|beat|lower|raise|increase|shorten|prevent|provide|support|yield|replicate",
+		"unable to _1 find|detect|see|identify", "%study|treatment|hypothesis|claim|product|intervention|programme|program|%hyp failed|fails|disappointed $|and|because|in|on|again|completely|utterly?", "%study|treatment|hypothesis|intervention %is|has|have been? _1 a|an? negative|unsuccessful|failure|disappointment|flop|disappointing|fruitless|failed",
+		"negative|null|failed|unsuccessful|disappointing %study|result|outcome", "was|is|were|proved a failure|disappointment|flop", "treatment|intervention failure", "disappointing|disappointingly",
+	}},
+	{Count, "", plain, []string{
+		"#|most|majority|all|none|half|few|several|many|both %study _3 failed|negative|positive|significant|successful|unsuccessful|disappointing|favourable|favorable", "#|most|majority|all|none|half|few|several|many|both of the|these|our? #? %study _3 failed|negative|positive|significant|successful|unsuccessful|disappointing|favourable|favorable",
+		"#|most|majority|all|none|half|few|several|many|only|both of|the|out|one? of|one? the|these|our? #? %study _3 found|find|finds|show|shows|showed|saw|reached|reach|detected|favoured|favour|reported|agree|agreed|failed|supported|support",
+		"significant|negative|positive|successful in|for #|most|all|none|half of|out? of? the? #? %study?",
+	}},
+	{Average, "", plain, []string{"on|in average", "overall", "average|mean|typical|pooled|combined %eff|benefit", "in|across all|every|each the|of|#? the? #? %study", "across|throughout the? #? %study", "typically", "on the whole"}},
+	{Generality, "", plain, []string{
+		"always|invariably|universally|everywhere|everyone|everybody|anyone|anybody", "never !prove|proves|show|establish|demonstrate|tell|replace|mean|been|be|before|shown|established|planned|tested|judged|seen|having|assume|again|measured|intended|opened|unmasked", "without exception|exceptions", "no %out|%person|%thing will|can|ever|shall", "in every|any|all way|case|cases|instance|instances|setting|settings|respect|circumstances",
+		"all|every|each|any _1 %person|%thing is|are|will|can|would|lie|lies|benefit|benefits|respond|responds|pass|passes|meet|meets|stay|stays|get|gets|improve|improves|heal|heals|should", "every|each _1 %person|%thing|%out is|are|will|benefits|responds|passes|meets|lies|stays|improves|heals", "all|every|each %out|parts|units is|are|lie|meet|pass|stay",
+		"for|in|to|on|helps|suits|benefits|reaches all|every|any|each _1 %person|%thing|ages|sites", "applies|apply|holds|hold|generalises|generalizes|generalise|generalize|valid|transfers to|in|everywhere|for|universally|true|generally? all|every|any|other|everywhere|beyond|always|elsewhere", "once and for all", "for good $", "under|whatever all|any|the conditions|circumstances",
+	}},
+	{Causation, "", plain, []string{
+		"cause|causes|caused|causing !of|for", "due to !chance|the|follow|lack|missing|technical|be|start|arrive|illness|holidays", "due to the !lack|missing|absence|small|low|holiday|holidays|dropout|loss|delay|weather|number", "due to the? %grp", "owing|thanks|attributable|ascribed|attributed|ascribable to", "because of the|this|our?", "consequence of|from", "as a result of", "leads|led|leading to", "results|resulted|resulting in", "responsible for", "brings|brought|bringing about|on", "causal|causally|causation|causative", "provoke|provokes|provoked|triggers|triggered|induces|induced",
+	}},
 }

@@ -106,9 +106,11 @@ func escape(s string) (string, int) {
 		return "", 0
 	}
 	switch s[1] {
-	case 'u', 'U':
-		n := 6
-		if s[1] == 'U' {
+	case 'x', 'u', 'U':
+		n := 4
+		if s[1] == 'u' {
+			n = 6
+		} else if s[1] == 'U' {
 			n = 10
 		}
 		if len(s) < n {

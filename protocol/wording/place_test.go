@@ -19,6 +19,7 @@ func TestPlaces(t *testing.T) {
 		{`"The \"gel\" \u03bb\t has no effect."`, "no effect"},
 		{`"λ: the gel has no\u0020effect."`, `no\u0020effect`},
 		{"\"\"\"The gel has no \\\n   effect.\"\"\"", "no \\\n   effect"},
+		{`"\x54he gel has no\x20effect."`, `no\x20effect`},
 		{"\"\"\"\"The gel\" has no effect\"\"\"\"", "no effect"},
 	} {
 		src := diag.NewSource("a.toml", []byte(head+tt.token+"\n"))

@@ -1,18 +1,14 @@
-// Package wording finds phrases in a text that claim something of an effect:
-// that there is none, that it is proven, that one thing is better than, equal
-// to or no worse than another. It returns the class of each phrase, how firmly
-// it is said, and where. It reads English only, and knows no result: whether
-// the analysis supports a claim is for others to say.
+// Package wording finds what a text claims of an effect: that there is none,
+// that it is proven, that one thing is better than another, equal to it or no
+// worse. Of each claim it says where it stands, how firmly it is said, in which
+// direction it points and which of the given names it speaks of. It reads
+// English by fixed rules and knows no number and no result: whether an analysis
+// bears a claim out is for others to say.
 //
-//	for _, p := range wording.Find(text) {
+//	for _, p := range wording.Find(text, wording.Term{Kind: wording.Group, Name: "new", Words: []string{"new"}}) {
 //		fmt.Println(p.Class, p.Force, text[p.Start:p.End])
 //	}
 package wording
-
-import (
-	"slices"
-	"strings"
-)
 
 // Class is what a phrase claims.
 type Class string
@@ -20,234 +16,278 @@ type Class string
 // The closed set of classes.
 const (
 	NoEffect       Class = "no-effect"       // there is no effect, no difference
-	NotSignificant Class = "not-significant" // no significant difference, no evidence of one
-	Proof          Class = "proof"           // proven, beyond doubt
-	Difference     Class = "difference"      // there is an effect, things differ
-	Superiority    Class = "superiority"     // better, superior
-	Relevance      Class = "relevance"       // large or important enough to matter
+	NotSignificant Class = "not-significant" // nothing significant, no evidence of anything
 	Equivalence    Class = "equivalence"     // as good as, the same as
 	Noninferiority Class = "noninferiority"  // not worse than
-	Trend          Class = "trend"           // a trend, nearly significant
-	Causation      Class = "causation"       // caused by
+	Difference     Class = "difference"      // there is an effect, things differ
+	Superiority    Class = "superiority"     // better
+	Harm           Class = "harm"            // worse
+	Change         Class = "change"          // higher or lower
+	Relevance      Class = "relevance"       // large or important enough to matter
+	TooSmall       Class = "too-small"       // too small to matter
+	Limit          Class = "limit"           // above or below a limit, a requirement met or missed
 	Safety         Class = "safety"          // safe, harmless
-	Generality     Class = "generality"      // always, in every case
-	Misread        Class = "misread"         // a p-value or interval taken for a probability of a hypothesis
+	Proof          Class = "proof"           // proven, beyond doubt
+	Truth          Class = "truth"           // a hypothesis is true, false, accepted
+	Misread        Class = "misread"         // a p-value or an interval taken for a probability of a claim
+	Trend          Class = "trend"           // a trend, nearly significant
+	Failure        Class = "failure"         // failed to show, a negative study
+	Count          Class = "count"           // studies counted for and against
+	Average        Class = "average"         // on average, overall, in all studies
+	Causation      Class = "causation"       // caused by
+	Generality     Class = "generality"      // always, everybody
+	Verdict        Class = "verdict"         // a hypothesis or endpoint was established, met
+	Decision       Class = "decision"        // what will be done; claims nothing
 )
 
 // Classes lists every class.
-var Classes = []Class{NoEffect, NotSignificant, Proof, Difference, Superiority, Relevance, Equivalence,
-	Noninferiority, Trend, Causation, Safety, Generality, Misread}
+var Classes = []Class{NoEffect, NotSignificant, Equivalence, Noninferiority, Difference, Superiority, Harm, Change, Relevance, TooSmall,
+	Limit, Safety, Proof, Truth, Misread, Trend, Failure, Count, Average, Causation, Generality, Verdict, Decision}
 
 // Force is how firmly a phrase is said.
 type Force string
 
-// The closed set of forces.
+// The closed set of forces, the firmest first.
 const (
-	Stated Force = "stated" // as a fact
-	Hedged Force = "hedged" // may, suggests, is compatible with
-	Denied Force = "denied" // not, cannot be concluded, remains open
-	Asked  Force = "asked"  // a question, a condition, an aim
+	Stated     Force = "stated"     // as a fact
+	Suggested  Force = "suggested"  // suggests, appears, probably
+	Possible   Force = "possible"   // may, could, is compatible with
+	Denied     Force = "denied"     // not shown, cannot be concluded, remains open
+	Attributed Force = "attributed" // somebody else says so
+	Asked      Force = "asked"      // a question, condition, aim or requirement
+	Quoted     Force = "quoted"     // between quotation marks
 )
 
+// Direction is where a claim points.
+type Direction string
+
+// The directions; "" for none.
+const (
+	Better Direction = "better"
+	Worse  Direction = "worse"
+	Higher Direction = "higher"
+	Lower  Direction = "lower"
+)
+
+// Opposite is the other way.
+func (d Direction) Opposite() Direction {
+	switch d {
+	case Better:
+		return Worse
+	case Worse:
+		return Better
+	case Higher:
+		return Lower
+	case Lower:
+		return Higher
+	}
+	return d
+}
+
 // Phrase is one claim in a text. Start and End are byte offsets.
+//
+// A claim that a denial turns is given as what it then says: "is not better"
+// is NoEffect with Negated set and Better as the direction that is denied,
+// "is not equivalent" a Difference, "is not worse" Noninferiority.
 type Phrase struct {
 	Class      Class
 	Force      Force
 	Start, End int
+	Negated    bool
+	Direction  Direction
+	Subject    string // the group that is said to be so; "" where the text names none
+	Object     string // the group it is compared with
+	Outcomes   []string
+	Hypotheses []string
+	Topic      []string // the outcomes that the latest sentence before named
+	Exact      bool     // the same in every respect
+	Benefit    bool     // speaks of the better side only
+	HarmOnly   bool     // speaks of the worse side only
+	Within     bool     // the sentence names a margin, region or number
+	Observed   bool     // said of the sample or the estimate
+	Explained  bool     // this sentence or the next says what remains possible
+	AtLeastOne bool     // said of at least one study only
+	Sentence   int      // counted from 0
 }
 
 // Find returns the claims of an English text in the order in which they
-// stand. Of phrases that overlap the longer one counts.
-func Find(text string) []Phrase {
+// stand. Terms are the names to look for. The work grows with the length of
+// the text.
+func Find(text string, terms ...Term) []Phrase {
+	names := newNames(terms)
 	var out []Phrase
-	for _, s := range sentences(text) {
+	first := 0 // of the sentence before, in out
+	var topic []string
+	list := sentences(text)
+	for n := range list {
+		s := &list[n]
+		s.terms = names.find(s)
+		s.mark()
+		triggers := s.triggers()
+		explains := false
+		for i := range triggers {
+			explains = explains || triggers[i].force == explained
+		}
+		for i := first; i < len(out) && explains; i++ {
+			out[i].Explained = true
+		}
+		first = len(out)
+		var before *Phrase
+		end := 0 // of the phrase before
 		for _, m := range s.matches() {
-			out = append(out, Phrase{m.class, s.force(m), s.words[m.from].start, s.words[m.to-1].end})
+			if s.absorbed(m, before, end) {
+				before.Within = before.Within || m.entry.class == Relevance
+				continue
+			}
+			end = m.to
+			p := s.phrase(m, triggers, before)
+			p.Sentence, p.Topic = n, topic
+			names.resolve(s, m, &p)
+			out = append(out, p)
+			before = &out[len(out)-1]
+		}
+		if named := names.near(s, Outcome, 0, len(s.tokens)); len(named) > 0 {
+			topic = named
 		}
 	}
 	return out
 }
 
-// match is a pattern found in the words from to to of a sentence.
+// match is an entry of the table found in the words from to to.
 type match struct {
-	class    Class
+	entry    *entry
 	from, to int
 }
 
-// matches finds the patterns in a sentence, the longest first where they
-// overlap, then the earlier, then the class listed first.
-func (s *sentence) matches() []match {
-	var all []match
-	for i := range s.words {
-		for _, k := range candidates(s.words[i].text) {
-			p := &patterns[k]
-			if n := p.at(s, i); n > 0 && !s.passive(p.class, i) && !(n == 1 && s.attributive(p.class, i)) {
-				all = append(all, match{p.class, i, i + n})
+// matches finds the phrases of a sentence from left to right, of those that
+// begin together the longest.
+func (s *sentence) matches() (out []match) {
+	for i := 0; i < len(s.tokens); {
+		best := match{to: i}
+		phraseIndex.each(s.tokens[i].text, func(n int) {
+			if end := phrasePatterns[n].at(s, i); end > best.to {
+				best = match{phraseOwner[n], i, end}
 			}
+		})
+		if best.entry != nil && s.names(i, best.to) {
+			best.entry = nil
 		}
-	}
-	slices.SortStableFunc(all, func(a, b match) int {
-		if d := (b.to - b.from) - (a.to - a.from); d != 0 {
-			return d
-		}
-		return a.from - b.from
-	})
-	var kept []match
-	for _, m := range all {
-		if !slices.ContainsFunc(kept, func(k match) bool { return m.from < k.to && k.from < m.to }) {
-			kept = append(kept, m)
-		}
-	}
-	slices.SortFunc(kept, func(a, b match) int { return a.from - b.from })
-	return join(kept)
-}
-
-// join makes one of neighbours of one class: "proves beyond question".
-func join(list []match) []match {
-	var out []match
-	for _, m := range list {
-		if n := len(out); n > 0 && out[n-1].class == m.class && out[n-1].to == m.from {
-			out[n-1].to = m.to
+		if best.entry == nil {
+			i++
 			continue
 		}
-		out = append(out, m)
+		out = append(out, best)
+		i = best.to
 	}
 	return out
 }
 
-// candidates are the patterns, by number and in order, that can begin with a
-// word.
-func candidates(word string) []int {
-	if list, ok := byFirst[word]; ok {
-		return list
-	}
-	return anyFirst
-}
-
-// byFirst and anyFirst are the index of the patterns by their first word:
-// those that can begin with it, and those that could begin with any.
-var byFirst, anyFirst = index(patterns)
-
-func index(list []pattern) (first map[string][]int, rest []int) {
-	first = map[string][]int{}
-	open := func(p *pattern) bool {
-		return p.items[0].optional || slices.ContainsFunc(p.items[0].words, func(w string) bool { return w == "n't" || strings.HasSuffix(w, "~") })
-	}
-	for k := range list {
-		if open(&list[k]) {
-			rest = append(rest, k)
-			continue
-		}
-		for _, w := range list[k].items[0].words {
-			first[w] = nil
-		}
-	}
-	for w := range first {
-		for k := range list {
-			if open(&list[k]) || slices.Contains(list[k].items[0].words, w) {
-				first[w] = append(first[w], k)
-			}
-		}
-	}
-	return first, rest
-}
-
-// passive reports whether a verb of the class of differences at word i only
-// says what was done: "the temperature was increased".
-func (s *sentence) passive(c Class, i int) bool {
-	return c == Difference && i > 0 && strings.HasSuffix(s.words[i].text, "ed") &&
-		oneOf(s.words[i-1].text, "was", "were", "is", "are", "be", "been", "being")
-}
-
-// attributive reports whether a comparative stands before its noun and so
-// compares nothing here: "better light".
-func (s *sentence) attributive(c Class, i int) bool {
-	if c != Superiority || i+1 >= len(s.words) || s.words[i+1].breaks || s.words[i+1].comma {
+// absorbed reports whether a match only says how much of the phrase before is
+// meant ("not worse by an amount that matters"), or where it points ("a trend
+// towards fewer relapses").
+func (s *sentence) absorbed(m match, before *Phrase, end int) bool {
+	if before == nil || m.from-end > 6 {
 		return false
 	}
-	return oneOf(s.words[i].text, "better", "stronger", "safer", "faster") &&
-		!oneOf(s.words[i+1].text, "than", "to", "for", "in", "on", "at", "and", "or", "nor", "with", "here", "now", "overall", "too", "again", "by", "when",
-			"as", "is", "was", "remains", "after", "under", "throughout", "everywhere", "choice", "one", "of", "even", "still", "only", "both", "either")
-}
-
-// pattern is a sequence of items.
-type pattern struct {
-	class Class
-	items []item
-}
-
-// item is one place of a pattern: any of some words, or a gap.
-type item struct {
-	words    []string // a word that ends in ~ stands for all that begin so
-	optional bool
-	gap      int // up to so many words, whatever they are
-}
-
-// parse reads a pattern: words parted by blanks, alternatives by |, a word
-// that ends in ~ for all that begin so, ? behind what may be absent, _N for up
-// to N words of any kind.
-func parse(class Class, text string) pattern {
-	p := pattern{class: class}
-	for _, f := range strings.Fields(text) {
-		if n, ok := strings.CutPrefix(f, "_"); ok {
-			p.items = append(p.items, item{gap: int(n[0] - '0'), optional: true})
-			continue
+	for i := end; i <= m.from; i++ {
+		if s.tokens[i].brk {
+			return false
 		}
-		f, optional := strings.CutSuffix(f, "?")
-		p.items = append(p.items, item{words: strings.Split(f, "|"), optional: optional})
+	}
+	switch before.Class {
+	case Trend:
+		return m.from > 0 && (m.entry.class == Superiority || m.entry.class == Harm || m.entry.class == Change || m.entry.class == Relevance)
+	case Noninferiority, NoEffect, TooSmall:
+		return (m.entry.class == Relevance || m.entry.class == Change || m.entry.class == Limit) &&
+			oneOf(s.tokens[m.from].text, "by", "more", "less", "larger", "greater", "above", "beyond", "than")
+	}
+	return false
+}
+
+// phrase reads a match in its sentence.
+func (s *sentence) phrase(m match, triggers []trigger, before *Phrase) (p Phrase) {
+	r := s.read(triggers, m.from, m.to)
+	e := m.entry
+	p = Phrase{Class: e.class, Force: r.force, Start: s.tokens[m.from].start, End: s.tokens[m.to-1].end, Direction: e.direction,
+		Exact: e.flags&exact != 0, Benefit: e.flags&ofBenefit != 0, HarmOnly: e.flags&ofHarm != 0, Within: r.within,
+		Observed: r.observed, Explained: r.explained, AtLeastOne: r.atLeast1, Negated: e.flags&negative != 0 && e.direction != ""}
+	if p.Force == Denied {
+		return p
+	}
+	gains := s.mentions("benefit", "gain", "gains", "saving", "savings", "save", "saves", "saved", "advantage", "improvement", "relief") &&
+		!s.mentions("difference", "differences", "effect", "effects", "change")
+	defer func() { p.Benefit = p.Benefit || p.Class == TooSmall && gains }()
+	not := s.negated(m.from)
+	if !not && before != nil && before.Negated && m.from > 0 && oneOf(s.tokens[m.from-1].text, "or", "nor") && before.End == s.tokens[max(0, m.from-2)].end {
+		not = true
+	}
+	if not != r.turned {
+		if e.flags&plain != 0 || e.flags&negative != 0 && not {
+			p.Force = Denied
+			return p
+		}
+		p.deny()
 	}
 	return p
 }
 
-// at returns how many words the pattern takes from word i on, 0 for no match.
-func (p *pattern) at(s *sentence, i int) int {
-	if end := p.match(s, i, 0); end > i {
-		return end - i
+// deny turns a claim into what its denial says.
+func (p *Phrase) deny() {
+	p.Negated = true
+	switch p.Class {
+	case Superiority, Change, Difference:
+		p.Class = NoEffect
+	case Harm:
+		p.Class = Noninferiority
+	case Equivalence:
+		p.Class = Difference
+	case Noninferiority:
+		p.Class, p.Direction = Harm, Worse
+	case NoEffect:
+		p.Class = Difference
+		if p.Direction != "" {
+			p.Class = Superiority
+		}
+	case Relevance:
+		p.Class = TooSmall
+	case TooSmall:
+		p.Class = Relevance
+	case Limit:
+		p.Direction = p.Direction.Opposite()
+	case Safety:
+		p.Class, p.Direction = Harm, Worse
+	case NotSignificant, Proof, Truth, Misread, Trend, Failure, Count, Average, Causation, Generality, Verdict, Decision:
+		p.Force = Denied
 	}
-	return 0
 }
 
-// match tries the items from k on at word i; it returns the end, or -1. A
-// pattern does not run over the end of a clause.
-func (p *pattern) match(s *sentence, i, k int) int {
-	if k == len(p.items) {
-		return i
-	}
-	it := p.items[k]
-	inside := i < len(s.words) && (k == 0 || !s.words[i].breaks)
-	if it.gap > 0 {
-		for n := 0; n <= it.gap && i+n <= len(s.words); n++ {
-			if n > 0 && (s.words[i+n-1].breaks || s.negates(i+n-1)) { // a gap hides no negation
-				break
-			}
-			if end := p.match(s, i+n, k+1); end >= 0 {
-				return end
+// The tables, ready to be searched. Nothing writes to them.
+var (
+	phrasePatterns, phraseOwner = compilePhrases()
+	phraseIndex                 = newIndex(phrasePatterns)
+
+	triggerPatterns, triggerOwner = compileTriggers()
+	triggerIndex                  = newIndex(triggerPatterns)
+)
+
+func compilePhrases() (patterns []pattern, owners []*entry) {
+	for _, table := range [][]entry{entries, moreEntries} {
+		for i := range table {
+			for _, text := range table[i].patterns {
+				patterns = append(patterns, parse(text))
+				owners = append(owners, &table[i])
 			}
 		}
-		return -1
 	}
-	if inside && slices.ContainsFunc(it.words, func(w string) bool { return is(s.words[i].text, w) }) {
-		if end := p.match(s, i+1, k+1); end >= 0 {
-			return end
-		}
-	}
-	if it.optional {
-		return p.match(s, i, k+1)
-	}
-	return -1
+	return patterns, owners
 }
 
-// is compares a word with one of a pattern: "n't" stands for every contraction
-// with not, "%~" for every percentage.
-func is(word, want string) bool {
-	switch want {
-	case "n't":
-		return strings.HasSuffix(word, "n't")
-	case "%~":
-		return strings.HasSuffix(word, "%")
+func compileTriggers() (patterns []pattern, owners []*triggerEntry) {
+	for i := range triggerEntries {
+		for _, text := range triggerEntries[i].patterns {
+			patterns = append(patterns, parse(text))
+			owners = append(owners, &triggerEntries[i])
+		}
 	}
-	if stem, ok := strings.CutSuffix(want, "~"); ok {
-		return strings.HasPrefix(word, stem)
-	}
-	return word == want
+	return patterns, owners
 }
