@@ -37,7 +37,7 @@ func TestScript(t *testing.T) {
 			return nil
 		},
 		Cmds: map[string]func(*testscript.TestScript, bool, []string){
-			"code": code, "await": await, "edit": edit, "add": add,
+			"code": code, "await": await, "edit": edit, "add": add, "tamper": tamper,
 		},
 		RequireExplicitExec: true,
 		RequireUniqueNames:  true,

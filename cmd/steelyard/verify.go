@@ -1,84 +1,276 @@
 package main
 
 import (
-	"crypto/sha256"
+	"errors"
 	"fmt"
+	"io"
 	"io/fs"
 	"os"
 	"path/filepath"
+	"slices"
+	"strings"
+	"time"
 
 	"github.com/spf13/cobra"
 
 	"steelyard/cmd/internal/batch"
+	"steelyard/cmd/internal/issued"
 	"steelyard/cmd/internal/term"
 )
 
+// verifyFlags are the flags of verify.
+type verifyFlags struct {
+	data, format string
+	limit        time.Duration
+}
+
 func (a *app) verifyCommand() *cobra.Command {
-	var data string
+	var f verifyFlags
 	cmd := &cobra.Command{
-		Use:   "verify PDF…",
+		Use:   "verify PATH…",
 		Short: "Take the record out of its own PDF, compile it again and compare",
-		Long: `Verify takes the record and its seal out of each PDF, compiles them again with the
-data that the PDF carries, or else with those beside it, and compares the
-bytes. What a signature added after the document was written is left aside.
-Exit code 1 means that they differ.`,
+		Long: `Verify takes the record, its seal and its data out of each PDF, compiles them
+again in memory with this version, and says one of
+
+  reproduced      the same bytes; bytes appended after it, such as a signature,
+                  are counted and checked not to change what the pages show
+  same numbers    other bytes, as after saving by another program, but the
+                  numbers and words are those that the record gives
+  different       which numbers, verdicts or words, as the file has them and as
+                  the record gives them
+  not checkable   why, and how to make it so
+
+Nothing beside the PDF is read, unless --data names a folder for the data, or the
+record, that the PDF does not carry. A folder means every PDF under it; those
+that Steelyard did not write are passed over. Whether the plan came before the
+results is for the seal to say, which is shown; compare its digest with what a
+witness has.
+
+Exit codes: 0 all reproduced, or of the same numbers; 1 one differs; 2 one is
+not checkable or cannot be read.`,
 		Example: `  steelyard verify issued/trial.pdf
-  steelyard verify --data records issued/*.pdf`,
+  steelyard verify issued/
+  steelyard verify --data records issued/trial.pdf
+  steelyard verify --format json issued/ > verified.json`,
 		Args: cobra.MinimumNArgs(1),
 		ValidArgsFunction: func(*cobra.Command, []string, string) ([]string, cobra.ShellCompDirective) {
 			return []string{"pdf"}, cobra.ShellCompDirectiveFilterFileExt
 		},
-		RunE: func(_ *cobra.Command, args []string) error {
-			code := batch.ExitDone
-			for _, path := range args {
-				code = max(code, a.verify(path, data))
-			}
-			if code != batch.ExitDone {
-				return exit{code}
-			}
-			return nil
-		},
+		RunE: func(cmd *cobra.Command, args []string) error { return a.verify(cmd, args, f) },
 	}
-	cmd.Flags().StringVar(&data, "data", "", "folder of the data files (default: the folder of the PDF)")
+	cmd.Flags().StringVar(&f.data, "data", "", "folder of what a PDF does not carry")
+	cmd.Flags().StringVar(&f.format, "format", "text", "text or json")
+	cmd.Flags().DurationVar(&f.limit, "limit", 2*time.Minute, "longest time for compiling one record")
+	complete(cmd, "format", []string{"text", "json"})
 	if err := cmd.MarkFlagDirname("data"); err != nil {
 		panic(err)
 	}
 	return cmd
 }
 
-func (a *app) verify(path, data string) (code int) {
-	file, err := os.ReadFile(path)
-	if err != nil {
-		a.say.Trouble(err)
+// maxPDF bounds what is read as a document.
+const maxPDF = 256 << 20
+
+// checked is what became of one file.
+type checked struct {
+	path string
+	v    *issued.Verified // nil when the file could not be read
+	err  error
+}
+
+func (c checked) exit() int {
+	switch {
+	case c.err != nil:
+		return batch.ExitWorld
+	case c.v.Finding == issued.Differs:
+		return batch.ExitRecord
+	case c.v.Finding == issued.NotCheckable:
 		return batch.ExitWorld
 	}
-	if data == "" {
-		data = filepath.Dir(path)
+	return batch.ExitDone
+}
+
+func (a *app) verify(cmd *cobra.Command, args []string, f verifyFlags) error {
+	if f.format != "text" && f.format != "json" {
+		return fmt.Errorf("--format %q: allowed are text, json", f.format)
 	}
-	var files fs.FS
-	root, err := os.OpenRoot(data)
+	opt := issued.Options{Rooms: a.rooms, Limit: f.limit}
+	if f.data != "" {
+		root, err := os.OpenRoot(f.data)
+		if err != nil {
+			return worldError{err}
+		}
+		defer root.Close()
+		opt.Folder = root.FS()
+	}
+	list, listed, err := findPDFs(args)
 	if err != nil {
-		a.say.Trouble(err)
-		return batch.ExitWorld
+		return worldError{err}
 	}
-	defer root.Close()
-	files = root.FS()
-	v, err := a.rooms.Verify(file, files)
+	var all []checked
+	code, passed := batch.ExitDone, 0
+	err = batch.Ordered(cmd.Context(), len(list), a.workers,
+		func(i int) checked { return verifyFile(list[i], opt) },
+		func(i int, c checked) {
+			if !listed[i] && errors.Is(c.err, issued.ErrNotOurs) {
+				passed++
+				return
+			}
+			code = max(code, c.exit())
+			all = append(all, c)
+			if f.format == "text" {
+				a.showVerified(c, len(all) > 1)
+			}
+		})
 	if err != nil {
-		a.trouble(fmt.Errorf("%s: %w", path, err))
-		return batch.ExitWorld
+		a.say.Noticef("interrupted")
+		return exit{batch.ExitWorld}
 	}
-	signed := ""
-	if v.Appended > 0 {
-		signed = fmt.Sprintf("; %d bytes were added after it was written", v.Appended)
+	if f.format == "json" {
+		out, err := verifiedJSON(all)
+		if err == nil {
+			err = a.say.Print(out)
+		}
+		if err != nil {
+			return worldError{err}
+		}
+	} else {
+		a.sayTotals(all, passed)
 	}
-	if v.Same {
-		a.say.Sayf("%s: verified: the record inside compiles to the same bytes, SHA-256 %x%s", path, sha256.Sum256(file), signed)
-		return batch.ExitDone
+	if len(all) == 0 {
+		return worldError{fmt.Errorf("%s: no PDF here that Steelyard wrote", strings.Join(args, ", "))}
 	}
-	a.say.Sayf("%s: differs: %s%s", path, v.Differs, signed)
-	if v.Compiled.Diagnostics.HasErrors() {
-		a.say.PrintErr(term.Diagnostics(v.Compiled.Diagnostics, v.Compiled.Loaded.Source, path+" → "+v.Record, a.say.ErrColor()))
+	if code != batch.ExitDone {
+		return exit{code}
 	}
-	return batch.ExitRecord
+	return nil
+}
+
+func verifyFile(path string, opt issued.Options) checked {
+	file, err := readPDF(path)
+	if err != nil {
+		return checked{path: path, err: err}
+	}
+	v, err := issued.Verify(file, opt)
+	if err != nil {
+		err = fmt.Errorf("%s: %w", path, err)
+	}
+	return checked{path, v, err}
+}
+
+// readPDF reads a regular file of bounded size.
+func readPDF(path string) ([]byte, error) {
+	info, err := os.Stat(path)
+	if err != nil {
+		return nil, err
+	}
+	if !info.Mode().IsRegular() {
+		return nil, fmt.Errorf("%s: not a regular file", path)
+	}
+	f, err := os.Open(path)
+	if err != nil {
+		return nil, err
+	}
+	defer f.Close()
+	file, err := io.ReadAll(io.LimitReader(f, maxPDF+1))
+	if err == nil && len(file) > maxPDF {
+		err = fmt.Errorf("%s: larger than %d MiB", path, maxPDF>>20)
+	}
+	return file, err
+}
+
+// findPDFs turns arguments into files: those named, which listed marks, and
+// those under a folder, by name. Hidden folders and files are passed over.
+func findPDFs(args []string) (list []string, listed []bool, err error) {
+	seen := map[string]bool{}
+	add := func(path string, named bool) {
+		key, err := filepath.Abs(path)
+		if err != nil {
+			key = path
+		}
+		if !seen[key] {
+			seen[key] = true
+			list, listed = append(list, path), append(listed, named)
+		}
+	}
+	for _, arg := range args {
+		info, err := os.Stat(arg)
+		if err != nil {
+			return nil, nil, err
+		}
+		if !info.IsDir() {
+			add(filepath.Clean(arg), true)
+			continue
+		}
+		var under []string
+		err = filepath.WalkDir(arg, func(path string, d fs.DirEntry, err error) error {
+			switch {
+			case err != nil:
+				return err
+			case path != arg && batch.Hidden(d.Name()):
+				if d.IsDir() {
+					return filepath.SkipDir
+				}
+			case !d.IsDir() && strings.EqualFold(filepath.Ext(path), ".pdf"):
+				under = append(under, path)
+			}
+			return nil
+		})
+		if err != nil {
+			return nil, nil, err
+		}
+		slices.Sort(under)
+		for _, path := range under {
+			add(path, false)
+		}
+	}
+	return list, listed, nil
+}
+
+// showVerified reports on one file.
+func (a *app) showVerified(c checked, more bool) {
+	if c.err != nil {
+		a.trouble(c.err)
+		return
+	}
+	text := verifiedReport(c.path, c.v, a.say.Width)
+	if more {
+		text = append([]byte("\n"), text...)
+	}
+	a.say.Print(text)
+	if c.v.Finding == issued.Differs && c.v.Compiled != nil && c.v.Compiled.Diagnostics.HasErrors() {
+		in := c.v.Compiled
+		list := term.Diagnostics(in.Diagnostics, in.Loaded.Source, c.path+" → "+c.v.Name, false)
+		lines := strings.Split(string(list), "\n")
+		for i, l := range lines {
+			lines[i] = term.Clean(l)
+		}
+		a.say.PrintErr([]byte(strings.Join(lines, "\n")))
+	}
+}
+
+// sayTotals counts what became of several files.
+func (a *app) sayTotals(all []checked, passed int) {
+	if len(all)+passed < 2 {
+		return
+	}
+	counts := map[string]int{}
+	var order []string
+	for _, c := range all {
+		word := "unreadable"
+		if c.err == nil {
+			word = findingWords(c.v)
+		}
+		if counts[word]++; counts[word] == 1 {
+			order = append(order, word)
+		}
+	}
+	var parts []string
+	for _, word := range order {
+		parts = append(parts, fmt.Sprintf("%d %s", counts[word], word))
+	}
+	if passed > 0 {
+		parts = append(parts, fmt.Sprintf("%d of other origin passed over", passed))
+	}
+	a.say.Sayf("\n%s: %s", term.Count(len(all)+passed, "file"), strings.Join(parts, ", "))
 }

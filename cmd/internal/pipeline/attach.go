@@ -2,20 +2,34 @@ package pipeline
 
 import (
 	"bytes"
-	"io"
+	"fmt"
 	"io/fs"
 	"path"
 	"slices"
+	"strconv"
 	"strings"
-	"time"
 
 	"steelyard/protocol/record"
+	"steelyard/protocol/seal"
 	"steelyard/render/page"
 )
 
-// attach adds what only the bytes at hand can give: the record's seal, which
-// goes where the record goes, and data files where the record asks for them.
-// Nothing is attached while results are masked.
+// How the files that a document carries are told apart, besides the record
+// itself, which is its Source.
+const (
+	RelationSeal = "Supplement"
+	RelationJSON = "Alternative"
+	RelationData = "Data"
+
+	// DataOf begins the description of a data file; its path in the record's
+	// folder follows.
+	DataOf = "data file "
+)
+
+// attach adds what only the bytes at hand can give: the record's seal and its
+// numbers for other programs, which go where the record goes, and data files
+// where the record asks for them. Nothing is attached while results are
+// masked. No attachment depends on the document that carries it.
 func (c *Compiled) attach(in Input) error {
 	if c.Result.Masked {
 		return nil
@@ -26,58 +40,56 @@ func (c *Compiled) attach(in Input) error {
 		})
 	}
 	head := c.Loaded.Record.Head
-	carried := len(c.Page.Attachments) > 0 // the record, attached by composing
-	if carried && in.Seal != nil {
-		add(sealName(in.Name), "text/plain", "the seals of the record", "Supplement", in.Seal)
+	if len(c.Page.Attachments) > 0 { // the record, attached by composing
+		base := strings.TrimSuffix(in.Name, ".toml")
+		if in.Seal != nil {
+			add(base+".seal", "text/plain", "the seals of the record", RelationSeal, in.Seal)
+		}
+		var b bytes.Buffer
+		if err := c.rooms.JSON(&b, c.Loaded, c.Result); err != nil {
+			return fmt.Errorf("%s: %w", JSON, err)
+		}
+		add(base+".json", "application/json", "the numbers of this document, in full", RelationJSON, b.Bytes())
 	}
 	wanted := slices.ContainsFunc(head.Attach.V, func(s record.String) bool { return s.V == "data" })
 	if !wanted || in.Files == nil {
 		return nil
 	}
-	for _, name := range c.data() {
-		text, err := fs.ReadFile(in.Files, name)
+	var names []string
+	for _, a := range c.Page.Attachments {
+		names = append(names, a.Name)
+	}
+	for _, file := range c.Data() {
+		text, err := fs.ReadFile(in.Files, file)
 		if err != nil {
 			return err
 		}
-		add(attachedName(name), "text/csv", "data file "+name, "Data", text)
+		if sum := seal.Digest(text); !c.read(file, sum) {
+			return fmt.Errorf("%s: changed while it was read; compile again", file)
+		}
+		names = append(names, attachedName(file, names))
+		add(names[len(names)-1], "text/csv", DataOf+file, RelationData, text)
 	}
 	return nil
 }
 
-func sealName(record string) string { return strings.TrimSuffix(record, ".toml") + ".seal" }
+// read reports whether the data were read from a file with this digest.
+func (c *Compiled) read(file, sum string) bool {
+	for _, v := range c.Loaded.Tables {
+		if v.File == file && v.SHA256 != sum {
+			return false
+		}
+	}
+	return true
+}
 
 // attachedName is the name of a data file inside a document, where folders
-// would be taken for a danger.
-func attachedName(name string) string { return strings.ReplaceAll(path.Clean(name), "/", "_") }
-
-// carriedFiles is a folder made of what a document carries, before what lies
-// in another folder.
-type carriedFiles struct {
-	carried map[string][]byte // by attached name
-	below   fs.FS             // nil: nothing else
-}
-
-func (f carriedFiles) Open(name string) (fs.File, error) {
-	if text, ok := f.carried[attachedName(name)]; ok && fs.ValidPath(name) {
-		return &carriedFile{Reader: bytes.NewReader(text), name: path.Base(name)}, nil
+// would be taken for a danger. No two files have one name.
+func attachedName(name string, taken []string) string {
+	flat := strings.ReplaceAll(path.Clean(name), "/", "_")
+	out := flat
+	for n := 2; slices.Contains(taken, out); n++ {
+		out = strings.TrimSuffix(flat, path.Ext(flat)) + "-" + strconv.Itoa(n) + path.Ext(flat)
 	}
-	if f.below == nil {
-		return nil, &fs.PathError{Op: "open", Path: name, Err: fs.ErrNotExist}
-	}
-	return f.below.Open(name)
+	return out
 }
-
-type carriedFile struct {
-	*bytes.Reader
-	name string
-}
-
-var _ io.ReaderAt = (*carriedFile)(nil)
-
-func (f *carriedFile) Stat() (fs.FileInfo, error) { return f, nil }
-func (f *carriedFile) Close() error               { return nil }
-func (f *carriedFile) Name() string               { return f.name }
-func (f *carriedFile) Mode() fs.FileMode          { return 0o444 }
-func (f *carriedFile) ModTime() time.Time         { return time.Time{} }
-func (f *carriedFile) IsDir() bool                { return false }
-func (f *carriedFile) Sys() any                   { return nil }

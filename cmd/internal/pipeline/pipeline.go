@@ -179,7 +179,7 @@ func (c *Compiled) Files() []string {
 			list = append(list, name)
 		}
 	}
-	for _, name := range c.data() {
+	for _, name := range c.Data() {
 		add(name)
 	}
 	add(rec.Head.Typeface.V)
@@ -192,8 +192,8 @@ func (c *Compiled) Files() []string {
 	return list
 }
 
-// data lists the data files that the record names, each once.
-func (c *Compiled) data() (list []string) {
+// Data lists the data files that the record names, each once.
+func (c *Compiled) Data() (list []string) {
 	for _, results := range [][]*record.Result{c.Loaded.Record.Results, c.Loaded.Record.Earlier} {
 		for _, r := range results {
 			if r != nil && r.Data != nil && r.Data.File.V != "" && !slices.Contains(list, r.Data.File.V) {
