@@ -74,7 +74,7 @@ var entries = []entry{
 	{Noninferiority, "", negative, []string{
 		"noninferior|noninferiority !margin|trial|design|test|hypothesis|claim|question|limit|will|is|was|has|have|remains|cannot|can", "non inferior", "non inferiority|noninferiority _6 %is been? _1 %est", "%estv|for|of|conclude|with non inferiority", "%estv|for|of noninferiority",
 		"no|not|never|hardly _1 %bad than?", "not %trueadv %bad", "at least as|equally %quality|%amount|%out as?", "no|not _1 less %quality|%amount|frequent|frequently|likely|often|satisfied", "no|not fewer|less _1 %out|%person|%thing", "no fewer|slower|weaker|rarer", "no|without _1 %rel|%adj? loss of|in",
-		"not underperform|worsen|impair|compromise|suffer|harm|damage|deteriorate|degrade|lag", "not inferior", "holds|held|hold its own", "can keep|keeps up with",
+		"not underperform|worsen|impair|compromise|suffer|harm|damage|deteriorate|degrade|lag", "not inferior", "at|by most # _5 more|fewer|less|longer|higher|lower|worse|later|shorter|greater", "by|at no more than # _5 worse|lower|higher|less|more", "holds|held|hold its own", "can keep|keeps up with",
 		"not %bad _2 by more|an|a", "no deterioration|worsening", "worse by less|no", "matches or exceeds",
 	}},
 	{Trend, "", plain, []string{
