@@ -119,7 +119,8 @@ func TestPublishedRecords(t *testing.T) {
 	}
 	// Each row names a record, a hypothesis, the example it is compared with,
 	// and which of its numbers stand for which printed ones. Limits are those
-	// of the interval that decides; scale turns ours into the printed unit.
+	// of the interval that decides; scale turns ours into the printed unit, a
+	// negative one into the percentage by which a ratio is below 1.
 	for _, tt := range []struct {
 		record, hypothesis, example string
 		scale                       float64
@@ -146,6 +147,17 @@ func TestPublishedRecords(t *testing.T) {
 		{"spring2", "superior", "ni-spring2-w48", 1, nil, "open"},
 		{"rocket-af", "noninferior", "ni-rocket-af", 1, nil, "established"},
 		{"rocket-af", "superior", "ni-rocket-af", 2, map[string]string{"p": "p_superiority"}, "open"}, // printed two-sided
+		{"sleep-pairs", "pairs", "mean-sleep-paired", 1, map[string]string{"estimate": "estimate", "se": "se", "value": "t", "df": "df", "p": "p", "low": "low", "high": "high"}, "established"},
+		{"shoes", "pairs", "mean-shoes-paired", 1, map[string]string{"estimate": "estimate", "value": "t", "df": "df", "p": "p", "low": "low", "high": "high"}, "established"},
+		{"skinfold", "ratio", "gmr-skinfold", 1, map[string]string{"estimate": "ratio", "value": "t_log", "low": "ratio_low", "high": "ratio_high"}, "open"},
+		{"tango-lens", "noninferior", "paired-tango-lens", 1, map[string]string{"value": "z_margin", "low": "low90", "high": "high90"}, "established"},
+		{"fluoroscopy", "score", "rate-ratio-fluoroscopy", 1, map[string]string{"estimate": "ratio", "p": "p_score"}, "open"},
+		{"fluoroscopy", "exact", "rate-ratio-fluoroscopy", 1, map[string]string{"p": "p_exact_conditional"}, "open"},
+		{"fluoroscopy", "midp", "rate-ratio-fluoroscopy", 1, map[string]string{"p": "p_midp"}, "open"},
+		{"vaccine", "lower", "ve-bnt-primary", -100, map[string]string{"estimate": "efficacy", "low": "high", "high": "low"}, "established"},
+		{"tuna", "linear", "corr-tuna", 1, map[string]string{"estimate": "pearson", "low": "pearson_low", "high": "pearson_high"}, "open"},
+		{"permeability", "higher", "rank-permeability", 1, map[string]string{"estimate": "shift", "p": "p_greater"}, "open"},
+		{"crossover", "same", "tost-chow-liu", 1, map[string]string{"estimate": "estimate", "se": "se", "low": "low90", "high": "high90"}, "established"},
 		{"aristotle", "noninferior", "ni-aristotle", 1, nil, "established"},
 		{"aristotle", "superior", "ni-aristotle", 2, map[string]string{"p": "p_superiority"}, "established"},
 	} {
@@ -165,9 +177,13 @@ func TestPublishedRecords(t *testing.T) {
 					t.Fatal("no test")
 				}
 				ours := map[string]float64{"estimate": num(h.Estimate), "df": num(h.DF), "low": num(h.Low), "high": num(h.High),
-					"p": num(h.P), "value": num(h.Tests[0].Value)}
+					"p": num(h.P), "value": num(h.Tests[0].Value), "se": num(h.SE)}
+				shift := 0.0
+				if tt.scale < 0 {
+					shift = -tt.scale
+				}
 				for name, printed := range tt.names {
-					if err := examples[tt.example].check(printed, ours[name]*tt.scale); err != nil {
+					if err := examples[tt.example].check(printed, shift+ours[name]*tt.scale); err != nil {
 						t.Error(err)
 					}
 				}
