@@ -40,7 +40,7 @@ cannot be read, or an output that cannot be written.`,
 	root.SetVersionTemplate("steelyard {{.Version}}\n")
 	root.AddCommand(
 		a.newCommand(), a.checkCommand(), a.compileCommand(), a.watchCommand(), a.schemaCommand(), a.explainCommand(),
-		a.sealCommand(), a.verifyCommand(),
+		a.sealCommand(), a.verifyCommand(), a.compareCommand(),
 		a.versionCommand(),
 	)
 	return root

@@ -137,7 +137,8 @@ func changeLine(c seal.Change) string {
 	case c.New == "":
 		return c.Path + ": removed, was " + shorter(was)
 	}
-	return c.Path + ": " + shorter(was) + " → " + shorter(c.New)
+	was, now := apart(was, c.New)
+	return c.Path + ": " + shorter(was) + " → " + shorter(now)
 }
 
 // resultChanges are the results that are new, gone or not as they were.

@@ -5,6 +5,7 @@ import (
 	"fmt"
 	"regexp"
 	"slices"
+	"strconv"
 	"strings"
 	"time"
 
@@ -128,7 +129,7 @@ func differences(b *term.Block, list []issued.Difference, what string) {
 			text = d.Where + ", " + d.What
 		}
 		if d.Old != "" || d.New != "" {
-			text += ": " + quoted(d.Old) + " → " + quoted(d.New)
+			text += ": " + arrow(d.Old, d.New)
 		}
 		b.Line("%-8s  %s", d.Class, text)
 	}
@@ -143,7 +144,30 @@ func quoted(s string) string {
 	if digest.MatchString(s) {
 		s = s[:16] + "…"
 	}
+	if _, err := strconv.ParseFloat(s, 64); err == nil {
+		return s
+	}
 	return "“" + shorter(s) + "”"
+}
+
+// arrow is old and new, each quoted.
+func arrow(old, now string) string {
+	old, now = apart(old, now)
+	return quoted(old) + " → " + quoted(now)
+}
+
+// apart cuts what two long texts have in common at their beginning, so that
+// what differs is not cut off instead.
+func apart(a, b string) (string, string) {
+	x, y := []rune(a), []rune(b)
+	n := 0
+	for n < len(x) && n < len(y) && x[n] == y[n] {
+		n++
+	}
+	if n -= 12; n < 20 || len(x) <= 60 && len(y) <= 60 {
+		return a, b
+	}
+	return "…" + string(x[n:]), "…" + string(y[n:])
 }
 
 // standing says how the record stands to its seal.

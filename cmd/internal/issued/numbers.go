@@ -219,7 +219,7 @@ func classOf(path []string, old, now any) Class {
 var identities = [][]string{
 	{"name"}, {"path", "study", "outcome", "set"}, {"hypothesis", "look", "method", "case"}, {"study", "outcome", "set", "look", "group"}, {"because", "set"},
 	{"outcome", "set", "model"}, {"at", "kind", "what"}, {"what", "group"}, {"assumption"}, {"set"},
-	{"alternative", "null"}, {"margin"}, {"date", "what"},
+	{"alternative"}, {"margin"}, {"date", "what"},
 }
 
 func identity(o map[string]any) string {
