@@ -87,7 +87,7 @@ var entries = []entry{
 	}},
 	{Failure, "", plain, []string{
 		"fail|failed|fails|failing|failure to _1 show|find|demonstrate|reach|detect|establish|confirm|prove|meet|improve|reduce|work|achieve|produce|deliver|help|differ|outperform|beat|lower|raise|increase|shorten|prevent|provide|support|yield|replicate",
-		"unable to _1 find|detect|see|identify", "%study|treatment|hypothesis|claim|product|intervention|programme|program|%hyp failed|fails|disappointed $|and|because|in|on|again|completely|utterly?", "%study|treatment|hypothesis|intervention %is|has|have been? _1 a|an? negative|unsuccessful|failure|disappointment|flop|disappointing|fruitless|failed",
+		"unable to _1 find|detect|see|identify", "%grp failed|fails $", "%study|treatment|hypothesis|claim|product|intervention|programme|program|%hyp failed|fails|disappointed $|and|because|in|on|again|completely|utterly?", "%study|treatment|hypothesis|intervention %is|has|have been? _1 a|an? negative|unsuccessful|failure|disappointment|flop|disappointing|fruitless|failed",
 		"negative|null|failed|unsuccessful|disappointing %study|result|outcome", "was|is|were|proved a failure|disappointment|flop", "treatment|intervention failure", "disappointing|disappointingly",
 	}},
 	{Count, "", plain, []string{
@@ -97,7 +97,7 @@ var entries = []entry{
 	}},
 	{Average, "", plain, []string{"on|in average", "overall", "average|mean|typical|pooled|combined %eff|benefit", "in|across all|every|each the|of|#? the? #? %study", "across|throughout the? #? %study", "typically", "on the whole"}},
 	{Generality, "", plain, []string{
-		"always|invariably|universally|everywhere|everyone|everybody|anyone|anybody", "never !prove|proves|show|establish|demonstrate|tell|replace|mean|been|be|before|shown|established|planned|tested|judged|seen|having|assume|again|measured|intended|opened|unmasked", "without exception|exceptions", "no %out|%person|%thing will|can|ever|shall", "in every|any|all way|case|cases|instance|instances|setting|settings|respect|circumstances",
+		"always|invariably|universally|everywhere|everyone|everybody|anyone|anybody", "never !prove|proves|show|establish|demonstrate|tell|replace|mean|been|be|before|shown|established|planned|tested|judged|seen|having|assume|again|measured|intended|opened|unmasked", "for every !#|participant|sample|measurement|hundred|thousand|unit|pair", "without exception|exceptions", "no %out|%person|%thing will|can|ever|shall", "in every|any|all way|case|cases|instance|instances|setting|settings|respect|circumstances",
 		"all|every|each|any _1 %person|%thing is|are|will|can|would|lie|lies|benefit|benefits|respond|responds|pass|passes|meet|meets|stay|stays|get|gets|improve|improves|heal|heals|should", "every|each _1 %person|%thing|%out is|are|will|benefits|responds|passes|meets|lies|stays|improves|heals", "all|every|each %out|parts|units is|are|lie|meet|pass|stay",
 		"for|in|to|on|helps|suits|benefits|reaches all|every|any|each _1 %person|%thing|ages|sites", "applies|apply|holds|hold|generalises|generalizes|generalise|generalize|valid|transfers to|in|everywhere|for|universally|true|generally? all|every|any|other|everywhere|beyond|always|elsewhere", "once and for all", "for good $", "under|whatever all|any|the conditions|circumstances",
 	}},

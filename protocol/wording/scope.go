@@ -39,6 +39,8 @@ func (t *trigger) reaches(s *sentence, a, b int) bool {
 		return t.from == 0 && oneOf(s.tokens[0].text, "if", "unless", "suppose", "assuming", "provided")
 	case backward:
 		return b <= t.from && a >= t.first && t.from-b <= farthest
+	case near:
+		return t.to <= a && a < t.to+3 && a < t.last
 	case whole:
 		return true
 	}
@@ -177,6 +179,9 @@ var comparatives = set(vocabulary["up"] + " " + vocabulary["down"] + " faster sl
 
 // names reports whether the words from a to b name a thing and claim nothing.
 func (s *sentence) names(a, b int) bool {
+	if b == a+1 && s.kinds[a]&insideName != 0 {
+		return true
+	}
 	if a == 0 || b != a+1 || s.tokens[a].brk {
 		return false
 	}
