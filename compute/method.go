@@ -7,12 +7,14 @@ import (
 	"steelyard/compute/effect"
 	"steelyard/compute/result"
 	"steelyard/compute/survival"
+	"steelyard/protocol/record"
 )
 
 // The messages of this file.
 const (
 	needsAlone     = "%s needs independent individuals; with clusters give a result of the analysis that respects them, as an effect"
 	noRoomForU     = "the method %s has no place for systematic_u"
+	noRelation     = "one of the two readings does not vary, so that nothing can be related to it"
 	sharesCompared = "the method %s needs independent individuals; the shares of clusters are compared by welch"
 )
 
@@ -53,6 +55,9 @@ func (r *run) method(s spec, in effect.Input, clustered bool) (*effect.Inference
 	}
 	if clustered && in.Given == nil && s.measure.Word == "risk-difference" {
 		return clusterShares(s, in)
+	}
+	if p := in.Pairs; s.measure.Shape == record.OneSample && p.First != nil && (p.FirstSD == 0 || p.SecondSD == 0) {
+		return nil, &result.Note{Code: "S102", Message: noRelation}
 	}
 	word := s.method
 	if in.Given != nil && !s.stated {
