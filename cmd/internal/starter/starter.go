@@ -78,7 +78,7 @@ func (w *writer) linef(format string, args ...any) { fmt.Fprintf(&w.b, format+"\
 
 // key writes a key with a remark.
 func (w *writer) key(name, value, remark string) {
-	line := fmt.Sprintf("%-8s = %s", name, value)
+	line := fmt.Sprintf("%-9s = %s", name, value)
 	if remark == "" {
 		w.linef("%s", line)
 		return
@@ -123,7 +123,7 @@ func (w *writer) question() string {
 	case w.c.NeedsLimit:
 		return fmt.Sprintf("Is the %s %s %s?", w.m.Label, w.c.Word, w.e.limit(w.c.Word))
 	case w.m.Shape == record.OneSample || w.m.Shape == record.Given:
-		return fmt.Sprintf("How does the %s stand to what was demanded?", what)
+		return fmt.Sprintf("Is the %s (%s) what was demanded?", w.m.Label, what)
 	default:
 		return fmt.Sprintf("How does the new way compare with the current one in %s?", what)
 	}
@@ -194,11 +194,15 @@ func (w *writer) result() {
 		w.linef("groups.new     = %s", w.e.summary(keys, 0))
 		w.linef("groups.current = %s", w.e.summary(keys, 1))
 	default:
-		w.linef("%-8s = %s", form, w.e.summary(keys, 0))
+		w.linef("%-9s = %s", form, w.e.summary(keys, 0))
 	}
-	if slices.Contains(w.m.Data, "value group") {
-		w.linef("# or from a CSV file beside this record:")
-		w.linef("# data = { file = \"data.csv\", value = \"COLUMN\", group = \"COLUMN\" }")
+	if len(w.m.Data) > 0 {
+		var columns strings.Builder
+		for _, name := range strings.Fields(w.m.Data[0]) {
+			fmt.Fprintf(&columns, ", %s = \"COLUMN\"", name)
+		}
+		w.linef("# or, in place of that line, columns of a CSV file beside this record:")
+		w.linef("# data = { file = \"data.csv\"%s }", columns.String())
 	}
 }
 
