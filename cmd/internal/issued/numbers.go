@@ -194,7 +194,7 @@ func classOf(path []string, old, now any) Class {
 	}
 	switch path[0] {
 	case "hypotheses", "families", "sensitivity":
-		if last == "verdict" {
+		if last == "verdict" || path[0] == "hypotheses" && len(path) == 2 {
 			return Verdict
 		}
 	case "studies", "files", "flow":
