@@ -34,7 +34,10 @@ func (c *composer) analysis(h *result.Hypothesis) {
 		text = append(text, page.Text(" ("+q+")"))
 	}
 	c.add(page.Paragraph{Text: append(text, page.Text(". "+Sentence(c.res, h, &h.Judged)))})
-	if name, words := reading(h.Reading, v.o.Better); name != "" && judged(h.Verdict) {
+	if s := v.worstLine(); s != "" {
+		c.para(s)
+	}
+	if name, words := v.reading(&h.Judged); name != "" {
 		c.para("Reading: " + name + " – " + words + ".")
 	}
 	if h.Claim == "describe" && h.Verdict == result.Described {
@@ -230,9 +233,9 @@ func (c *composer) assumptions(h *result.Hypothesis) {
 	heads := []string{"Assumption", "What the data show"}
 	for _, g := range groups {
 		if g == "" {
-			g = "value"
+			g = "Value"
 		}
-		heads = append(heads, "#"+capital(g))
+		heads = append(heads, "#"+g)
 	}
 	t := newTable("Assumptions looked at", heads...)
 	for _, a := range h.Assumptions {
@@ -307,7 +310,7 @@ func (v voice) judgedRow(t *table, name string, j *result.Judged) *page.Row {
 	if j.Reason != nil {
 		word += ": " + noteText(*j.Reason)
 	}
-	if n := ReadingName(j.Reading, v.o.Better); n != "" && judged(j.Verdict) {
+	if n, _ := v.reading(j); n != "" {
 		word += "; " + n
 	}
 	return t.row(name, j.Method, s.Estimate, withLevel(s.Bare(), j.Level), pCell(j.P, v.h.Alpha), word)

@@ -19,20 +19,54 @@ func (c *composer) diagnostics() {
 	}
 	c.heading(1, "Diagnostics", "diagnostics")
 	t := newTable("", "Place", "Kind", "Message", "Code")
-	for _, d := range c.res.Diagnostics {
-		file, line, column := c.in.Source.Place(d)
-		place := path.Base(file)
-		if line > 0 {
-			place += ":" + plainInt(line) + ":" + plainInt(column)
+	for _, g := range c.grouped() {
+		message := signed(g.message)
+		if len(g.names) > 0 {
+			message = join(g.names) + ": " + message
 		}
-		message := d.Message
-		if d.Help != "" {
-			message = fullStop(message) + " Help: " + d.Help
+		if g.help != "" {
+			message = fullStop(message) + " Help: " + g.help
 		}
-		t.row(place, d.Severity.String(), message, d.Code)
+		t.row(g.place, g.kind, message, g.code)
 	}
 	t.to(c)
 }
+
+// finding is a diagnostic, with all the claims of which it says the same.
+type finding struct {
+	names                            []string
+	place, kind, message, help, code string
+}
+
+// grouped are the diagnostics; what is said of several claims in the same
+// words stands once.
+func (c *composer) grouped() []finding {
+	var out []finding
+	at := map[sameFinding]int{}
+	for _, d := range c.res.Diagnostics {
+		file, line, column := c.in.Source.Place(d)
+		where := ""
+		if line > 0 {
+			where = ":" + plainInt(line) + ":" + plainInt(column)
+		}
+		g := finding{place: path.Base(file) + where, kind: d.Severity.String(), message: d.Message, help: d.Help, code: d.Code}
+		if name, rest, ok := strings.Cut(d.Message, ": "); ok && c.hypothesis(name) != nil {
+			g.names, g.message = []string{name}, rest
+			key := sameFinding{path.Base(file), g.kind, g.message, g.help, g.code}
+			if k, seen := at[key]; seen {
+				out[k].names = append(out[k].names, name)
+				out[k].place += ", " + strings.TrimPrefix(where, ":")
+				continue
+			}
+			at[key] = len(out)
+		}
+		out = append(out, g)
+	}
+	return out
+}
+
+// sameFinding is what makes two findings the same.
+type sameFinding struct{ file, kind, message, help, code string }
 
 // plainInt writes an integer without grouping, for places.
 func plainInt(n int) string { return strings.ReplaceAll(number.Int(n), number.Thin, "") }
@@ -88,10 +122,17 @@ func (c *composer) cautions() {
 func (c *composer) methods() {
 	used, cards := c.usedWords(), methodCards()
 	t := newTable("", "Word", "Method", "Rule", "Assumes", "Source")
+	seen := map[[2]string]bool{}
 	for _, w := range used {
-		if k := findCard(cards, w); k != nil {
-			t.row(w.word, k.Title, k.Formula, k.Assumptions, k.Source)
+		k := findCard(cards, w)
+		if k == nil || seen[[2]string{w.word, k.Title}] {
+			continue
 		}
+		seen[[2]string{w.word, k.Title}] = true
+		t.row(w.word, k.Title, k.Formula, k.Assumptions, k.Source)
+	}
+	for i, share := range []float64{0.13, 0.16, 0.32, 0.22, 0.17} {
+		t.Columns[i].Share = share
 	}
 	if len(t.Rows) == 0 {
 		return
@@ -102,17 +143,17 @@ func (c *composer) methods() {
 
 // usedWord is a method or procedure that this record used.
 type usedWord struct {
-	kind    card.Kind
-	word    string
-	measure string
+	kind card.Kind
+	word string
+	of   string // measure or key
 }
 
 // usedWords lists methods and procedures, sorted.
 func (c *composer) usedWords() []usedWord {
 	seen := map[usedWord]bool{}
-	add := func(kind card.Kind, word, measure string) {
+	add := func(kind card.Kind, word, of string) {
 		if word != "" {
-			seen[usedWord{kind, word, measure}] = true
+			seen[usedWord{kind, word, of}] = true
 		}
 	}
 	for i := range c.res.Hypotheses {
@@ -124,8 +165,15 @@ func (c *composer) usedWords() []usedWord {
 		add(card.Method, s.Analysis.Method, outcomeOf(c.res, s.Outcome).Measure)
 	}
 	for _, p := range c.res.Pooled {
-		add(card.Procedure, p.Between, "")
-		add(card.Procedure, p.Interval, "")
+		if p.Decides {
+			add(card.Procedure, p.Model, "plan.pooling.model")
+			add(card.Procedure, p.Between, "plan.pooling.between")
+			add(card.Procedure, p.Interval, "plan.pooling.interval")
+			add(card.Procedure, p.Weights, "plan.pooling.weights")
+		}
+	}
+	for _, s := range c.res.Sensitivity {
+		add(card.Procedure, s.Kind, "plan.sensitivity.kind")
 	}
 	for _, x := range c.res.Combined {
 		add(card.Procedure, x.Method, "")
@@ -148,7 +196,7 @@ func (c *composer) usedWords() []usedWord {
 		if a.word != b.word {
 			return a.word < b.word
 		}
-		return a.measure < b.measure
+		return a.of < b.of
 	})
 	return out
 }

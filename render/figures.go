@@ -66,7 +66,7 @@ func (c *composer) axis(o *result.Outcome) chart.Axis {
 
 // axisTitle names effect and unit.
 func axisTitle(o *result.Outcome, f number.Format) string {
-	s := capital(effectName(o))
+	s := capital(effectName(o)) // begins with our own noun
 	if f.Unit != "" {
 		s += ", " + f.Unit
 	}

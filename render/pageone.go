@@ -127,9 +127,9 @@ func (c *composer) verdictBlock(h *result.Hypothesis, dense bool) page.Verdict {
 	j := &h.Judged
 	b := page.Verdict{Name: h.Name, Word: VerdictWord(j.Verdict), Tone: tone(j.Verdict), Qualify: c.qualify(h)}
 	v.brief = dense
-	b.Claim = page.T(capital(v.claim()) + ".")
+	b.Claim = page.T(v.claimed())
 	b.Answer = v.answer(j)
-	if name, words := reading(j.Reading, v.o.Better); name != "" && judged(j.Verdict) {
+	if name, words := v.reading(j); name != "" {
 		if dense {
 			if b.Qualify != "" {
 				b.Qualify += "; "
@@ -139,18 +139,25 @@ func (c *composer) verdictBlock(h *result.Hypothesis, dense bool) page.Verdict {
 			b.Reading = []page.Inline{page.Text("Reading: "), page.Strong(name), page.Text(" – " + words + ".")}
 		}
 	}
-	if s := v.regionText(); s != "" {
+	if s := v.worstLine(); s != "" {
+		b.Reading = append(b.Reading, page.Text(strings.TrimSpace(s)))
+	}
+	if s := v.regionText(dense); s != "" {
 		b.Region = page.T(s)
 	}
-	b.Figure = c.beam(h, dense)
+	if h.Evidence != "combined" {
+		b.Figure = c.beam(h, dense)
+	}
 	return b
 }
 
 // tone maps a verdict to how it stands.
 func tone(v result.Verdict) page.Tone {
 	switch v {
-	case result.Established, result.Suggested:
+	case result.Established:
 		return page.Established
+	case result.Suggested:
+		return page.Suggested
 	case result.Contradicted:
 		return page.Contradicted
 	case result.Open:
@@ -170,8 +177,8 @@ func (c *composer) qualify(h *result.Hypothesis) string {
 	if h.Role == "exploratory" {
 		q = append(q, "exploratory, unadjusted")
 	}
-	if h.Evidence == "combined" && judged(h.Verdict) {
-		q = append(q, "in at least one study")
+	if judged(h.Verdict) {
+		q = append(q, c.changedSince(h)...)
 	}
 	if h.Evidence == "pooled" && judged(h.Verdict) {
 		q = append(q, "pooled over "+plural(len(h.Studies), "study", "studies"))
@@ -210,7 +217,11 @@ func (v voice) answer(j *result.Judged) []page.Inline {
 		}
 	}
 	if p := decidingP(j); p.OK && judged(j.Verdict) && !v.brief {
-		parts = append(parts, pName(j)+number.PEquals(p, v.h.Alpha))
+		text := pName(j) + number.PEquals(p, v.h.Alpha)
+		if len(parts) == 0 && j.PAdjusted.OK {
+			text = capital(text)
+		}
+		parts = append(parts, text)
 	}
 	if len(parts) == 0 {
 		return page.T("No estimate and no interval.")
@@ -239,7 +250,7 @@ func pName(j *result.Judged) string {
 }
 
 // regionText is the margin or region and why it is that size.
-func (v voice) regionText() string {
+func (v voice) regionText(dense bool) string {
 	why := v.h.MarginWhy
 	if why == "" {
 		why = v.o.Why
@@ -251,8 +262,11 @@ func (v voice) regionText() string {
 			s = "Margin " + v.f.PointUnit(m.V)
 		}
 	case "below", "above":
-		if v.h.Limit.OK {
+		if v.h.Limit.OK && !(dense && why == "") { // the claim names it
 			s = "Limit " + v.f.PointUnit(v.h.Limit.V)
+		}
+		if s == "" && v.region() == "" {
+			return ""
 		}
 	}
 	if r := v.region(); r != "" {
@@ -263,8 +277,8 @@ func (v voice) regionText() string {
 		}
 	}
 	if s == "" {
-		if v.h.Reading.OK && judged(v.h.Verdict) {
-			return "" // the reading says it
+		if _, words := v.reading(&v.h.Judged); words != "" || v.h.Claim == "describe" {
+			return "" // the reading says it, or nothing is judged
 		}
 		return "No smallest effect that matters was stated."
 	}

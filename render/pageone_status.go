@@ -12,9 +12,10 @@ import (
 // in the analysis.
 func (c *composer) arrivalFacts(primary []*result.Hypothesis, dense bool) {
 	var f facts
-	f.add("Numbers", c.numbers(primary))
-	if dense && len(f.items) > 0 && len(c.res.Totals) > 0 {
-		f.items[0].Value = page.T(c.denseNumbers())
+	if dense && len(c.res.Totals) > 0 {
+		f.add("Numbers", c.denseNumbers())
+	} else {
+		f.add("Numbers", c.numbers(primary))
 	}
 	if !dense {
 		f.add("Looks", c.looksTaken())
@@ -60,7 +61,12 @@ func (c *composer) numbers(primary []*result.Hypothesis) string {
 			if many {
 				name = outcomeOf(c.res, t.Outcome).Label + ", " + name
 			}
-			parts = append(parts, name+": "+strings.Join(totalParts(t), ", "))
+			if counts := totalParts(t); len(counts) > 0 {
+				parts = append(parts, name+": "+strings.Join(counts, ", "))
+			}
+		}
+		if len(parts) == 0 {
+			return ""
 		}
 		return strings.Join(parts, "; ") + "."
 	}
@@ -139,18 +145,28 @@ func (c *composer) denseNumbers() string {
 		head = append(head, heads[k])
 	}
 	s := capital(strings.Join(head, " / ")) + ":"
-	for i, t := range c.res.Totals {
-		if i > 0 {
-			s += ";"
-		}
-		if many && (i == 0 || t.Outcome != c.res.Totals[i-1].Outcome) {
-			s += " " + outcomeOf(c.res, t.Outcome).Label + ","
-		}
+	last, some := "", false
+	for _, t := range c.res.Totals {
 		var n []string
+		known := false
 		for _, k := range used {
 			n = append(n, number.CountOpt(pick(t)[k]))
+			known = known || pick(t)[k].OK
 		}
+		if !known {
+			continue
+		}
+		if some {
+			s += ";"
+		}
+		if many && t.Outcome != last {
+			s += " " + outcomeOf(c.res, t.Outcome).Label + ","
+		}
+		last, some = t.Outcome, true
 		s += " " + strings.TrimSpace(t.Group+" "+strings.Join(n, " / "))
+	}
+	if !some {
+		return ""
 	}
 	return s + "."
 }

@@ -34,7 +34,7 @@ func (c *composer) supported(primary []*result.Hypothesis, dense bool) (yes, no 
 		case result.Described:
 			not = append(not, "a claim, as it is only described")
 		}
-		if s := notShown(j.Reading, v.o.Better); s != "" && judged(j.Verdict) {
+		if s := notShown(j.Reading, v.o.Better); s != "" && v.read(j) {
 			not = append(not, s)
 		}
 		no.named(h.Name, fullStop(strings.Join(not, "; ")))

@@ -208,7 +208,7 @@ func VerdictWord(v result.Verdict) string { return strings.ToUpper(string(v)) }
 // written as everywhere else.
 func noteText(n result.Note) string {
 	if len(n.Args) == 0 {
-		return strings.ReplaceAll(n.Message, "%%", "%")
+		return signed(strings.ReplaceAll(n.Message, "%%", "%"))
 	}
 	var b strings.Builder
 	arg := 0
@@ -235,7 +235,7 @@ func noteText(n result.Note) string {
 			arg++
 		}
 	}
-	return b.String()
+	return signed(b.String())
 }
 
 // NoteText is a note's message with its arguments.
@@ -252,4 +252,23 @@ func argText(verb string, arg any) string {
 		return fmt.Sprint(arg)
 	}
 	return s
+}
+
+// signed writes the minus sign before the numbers of a message, where the
+// message has a hyphen. Hyphens within dates, names, codes and quotations stay.
+func signed(s string) string {
+	r := []rune(s)
+	quoted := false // as written
+	for i, c := range r {
+		if strings.ContainsRune("\"`“”", c) {
+			quoted = !quoted
+		}
+		if quoted || c != '-' || i+1 >= len(r) || r[i+1] < '0' || r[i+1] > '9' {
+			continue
+		}
+		if i == 0 || strings.ContainsRune(" (=,;:[", r[i-1]) {
+			r[i] = '−'
+		}
+	}
+	return string(r)
 }

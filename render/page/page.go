@@ -128,6 +128,7 @@ const (
 	Established
 	Contradicted
 	Open
+	Suggested // an exploratory claim, at most suggested
 )
 
 // Verdict is the page-one block of one hypothesis.

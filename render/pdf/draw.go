@@ -249,7 +249,7 @@ func (d *drawer) paint(fill page.Ink, outline *page.Stroke, k float64) string {
 // foot.
 func (d *drawer) leaf(l leaf, n int, status, matter piece) {
 	d.f.AddPage()
-	d.page, d.known, d.filled, d.dash = n, false, false, false
+	d.page, d.known, d.filled = n, false, false // fpdf takes the dash over to the new page
 	d.face, d.size = faceCount, 0
 	d.owner = append(d.owner, nil)
 	d.status(status)

@@ -122,7 +122,7 @@ func (s *setter) label(p *piece, l page.Label, x0, scale float64, el *elem) {
 
 func toneColour(t page.Tone) colour {
 	switch t {
-	case page.Established:
+	case page.Established, page.Suggested:
 		return ink(page.Accent)
 	case page.Contradicted:
 		return ink(page.Warn)

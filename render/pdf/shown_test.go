@@ -129,7 +129,7 @@ func TestPagesDetails(t *testing.T) {
 		"/P<</MCID 0>>BDC BT/F 9 Tf 1 2 Td<0002>Tj ET EMC": true,
 		"BT/F 9 Tf 1 3 Td<0002>Tj ET":                      false,
 		"BT/F 8 Tf 1 2 Td<0002>Tj ET":                      false,
-		"BT/F 9 Tf 1 2 Td<0002>Tj ET 0 0 9 9 re f":          false,
+		"BT/F 9 Tf 1 2 Td<0002>Tj ET 0 0 9 9 re f":         false,
 	} {
 		if got := mustPages(t, one(type0, content))[0].Drawing == base; got != same {
 			t.Errorf("%s: same %v, want %v", content, got, same)

@@ -23,6 +23,10 @@ func (d *drawer) verdictMark(t page.Tone, c colour, x, y, k float64) {
 		d.f.Polygon([]fpdf.PointType{{X: cx - 5.2*k, Y: cy - 4.4*k}, {X: cx + 5.2*k, Y: cy - 4.4*k}, {X: cx, Y: cy + 5*k}}, "F")
 	case page.Open: // a ring
 		d.ring(cx, cy, 4.1*k, 1.4*k, c)
+	case page.Suggested: // a ring with a point
+		d.ring(cx, cy, 4.3*k, k, c)
+		d.setFill(c)
+		d.f.Circle(cx, cy, 1.9*k, "F")
 	case page.Neutral: // nothing yet
 		d.f.Rect(cx-4.6*k, cy-0.8*k, 9.2*k, 1.6*k, "F")
 	}

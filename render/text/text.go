@@ -334,6 +334,8 @@ func (p *printer) tone(word string, t page.Tone) string {
 		code = "1;35"
 	case page.Open:
 		code = "1;33"
+	case page.Suggested:
+		code = "36"
 	}
 	return "\x1b[" + code + "m" + word + "\x1b[0m"
 }
