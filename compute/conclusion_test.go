@@ -37,7 +37,7 @@ func readCorpus(t testing.TB) (out []sentence) {
 		default:
 			head, text, ok := strings.Cut(line, "| ")
 			f := strings.Fields(head)
-			if !ok || len(f) != 2 || f[0] != "tuned" && f[0] != "heldout" && f[0] != "later" {
+			if !ok || len(f) != 2 || f[0] != "tuned" && f[0] != "heldout" && f[0] != "later" && f[0] != "known" {
 				t.Fatalf("corpus.txt:%d: not understood", i+1)
 			}
 			s := sentence{line: i + 1, part: f[0], text: text, checker: k}
@@ -142,7 +142,7 @@ const (
 )
 
 func TestCorpus(t *testing.T) {
-	parts := map[string]*confusion{"tuned": {}, "heldout": {}, "later": {}}
+	parts := map[string]*confusion{"tuned": {}, "heldout": {}, "later": {}, "known": {}}
 	covered := map[string]int{}
 	total := 0
 	show := os.Getenv("STEELYARD_SHOW") // the name of a part: lists its faults
@@ -153,11 +153,16 @@ func TestCorpus(t *testing.T) {
 		covered[h.Claim+" "+string(h.Verdict)+map[bool]string{true: " flag", false: " pass"}[len(s.codes) > 0]]++
 		total++
 		if !right || !coded {
+			if s.part == "known" {
+				continue
+			}
 			if s.part == "tuned" {
 				t.Errorf("corpus.txt:%d: want %v, raised %v: %s", s.line, s.codes, raised, s.text)
 			} else if s.part == show {
 				t.Logf("corpus.txt:%d: want %v, raised %v: %s", s.line, s.codes, raised, s.text)
 			}
+		} else if s.part == "known" {
+			t.Errorf("corpus.txt:%d: right by now, move it to tuned: %s", s.line, s.text)
 		}
 	}
 	for _, name := range []string{"tuned", "heldout", "later"} {

@@ -177,6 +177,38 @@ var nouns = set("cure cures help boost ease benefit benefits cleaner relief dama
 // comparatives before a noun only tell things apart: "the longer course".
 var comparatives = set(vocabulary["up"] + " " + vocabulary["down"] + " faster slower quicker later safer poorer cleaner")
 
+// ofWork are things of a study that a phrase may be said of without claiming
+// anything of its results.
+var ofWork = set("analysis analyses design report conduct decision decisions plan protocol schedule publication conclusion conclusions budget timetable visits forms questionnaire")
+
+// aside reports whether a phrase speaks of how the study was run: "no influence
+// on the analysis", "the protocol was not changed".
+func (s *sentence) aside(a, b int) bool {
+	for i := b; i < min(len(s.tokens), b+3); i++ {
+		if s.tokens[i].brk {
+			break
+		}
+		if ofWork[s.tokens[i].text] && s.kinds[i] == 0 {
+			return true
+		}
+		if !oneOf(s.tokens[i].text, "on", "in", "of", "to", "the", "our", "this", "its", "by") {
+			break
+		}
+	}
+	if a > 0 && oneOf(s.tokens[a-1].text, "cost", "costs", "priced") {
+		return true
+	}
+	if !oneOf(s.tokens[b-1].text, "changed", "altered", "modified", "unchanged", "unaltered") {
+		return false
+	}
+	for i := a - 1; i >= max(0, a-2); i-- {
+		if ofWork[s.tokens[i].text] && !s.tokens[i+1].brk {
+			return true
+		}
+	}
+	return false
+}
+
 // names reports whether the words from a to b name a thing and claim nothing.
 func (s *sentence) names(a, b int) bool {
 	if b == a+1 && s.kinds[a]&insideName != 0 {
@@ -186,6 +218,12 @@ func (s *sentence) names(a, b int) bool {
 		return false
 	}
 	w, before := s.tokens[a].text, s.tokens[a-1].text
+	if oneOf(before, "who", "those") {
+		return true
+	}
+	if comparatives[w] && b < len(s.tokens) && oneOf(s.tokens[b].text, "differences", "effects", "changes", "values", "samples", "trials", "studies", "trial", "study", "groups") {
+		return true
+	}
 	determined := oneOf(before, "the", "this", "that", "these", "those", "its", "our", "each", "every")
 	if comparatives[w] && determined && b < len(s.tokens) && !s.tokens[b].brk && !oneOf(s.tokens[b].text, "of", "than", "was", "is", "were", "are") {
 		return true

@@ -44,4 +44,4 @@ var vocabulary = map[string]string{
 }
 
 // denies are the words that turn what follows; a gap of a pattern does not run over them.
-var denies = set("not no never neither nor without fail failed fails hardly whether")
+var denies = set("not no non never neither nor without fail failed fails hardly whether")

@@ -169,7 +169,7 @@ func (s *sentence) matches() (out []match) {
 				best = match{phraseOwner[n], i, end}
 			}
 		})
-		if best.entry != nil && s.names(i, best.to) {
+		if best.entry != nil && (s.names(i, best.to) || s.aside(i, best.to)) {
 			best.entry = nil
 		}
 		if best.entry == nil {
