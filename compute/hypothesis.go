@@ -224,7 +224,7 @@ func (t *trial) numbers(at attempt) result.Judged {
 // curvePoints is the length of a p-value function; costly methods get few.
 func curvePoints(inf *effect.Inference) int {
 	if inf.Costly {
-		return 33
+		return 25
 	}
 	return 201
 }

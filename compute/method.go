@@ -43,9 +43,37 @@ func (r *run) analyse(s spec, e entry, pooling bool) (*effect.Inference, *result
 	m, ok := r.made[k]
 	if !ok {
 		m.inf, m.problem = r.method(s, in, r.clusterMeans(e, s))
+		if m.problem == nil && m.inf.Costly {
+			m.inf.Method = &remembered{Method: m.inf.Method, limits: map[float64][2]float64{}, tests: map[float64]effect.Test{}}
+		}
 		r.made[k] = m
 	}
 	return m.inf, m.problem
+}
+
+// remembered is a costly method that is asked everything once.
+type remembered struct {
+	effect.Method
+	limits map[float64][2]float64
+	tests  map[float64]effect.Test
+}
+
+func (m *remembered) Test(c float64) effect.Test {
+	t, ok := m.tests[c]
+	if !ok {
+		t = m.Method.Test(c)
+		m.tests[c] = t
+	}
+	return t
+}
+
+func (m *remembered) Limits(a float64) (low, high float64) {
+	l, ok := m.limits[a]
+	if !ok {
+		l[0], l[1] = m.Method.Limits(a)
+		m.limits[a] = l
+	}
+	return l[0], l[1]
 }
 
 // method dispatches an analysis to its package.

@@ -23,8 +23,15 @@ func Curve(inf *effect.Inference, q Question, n int) []result.CurvePoint {
 		return nil
 	}
 	g := func(x float64) float64 { return effect.To(q.Scale, x) }
-	lo, hi := inf.Method.Limits(curveError)
-	glo, ghi := g(lo), g(hi)
+	levels := curveLevels[:]
+	var glo, ghi float64
+	if inf.Costly {
+		levels = curveLevels[2:3]
+		glo, ghi = reach(inf, g)
+	} else {
+		lo, hi := inf.Method.Limits(curveError)
+		glo, ghi = g(lo), g(hi)
+	}
 	points := []float64{q.Null}
 	if q.HasRegion {
 		points = append(points, q.Low, q.High)
@@ -52,11 +59,23 @@ func Curve(inf *effect.Inference, q Question, n int) []result.CurvePoint {
 		at = append(at, effect.From(q.Scale, glo+(ghi-glo)*float64(i)/float64(n-1)))
 	}
 	at = append(at, points...)
-	for _, level := range curveLevels {
+	for _, level := range levels {
 		l, h := inf.Method.Limits((1 - level) / 2)
 		at = append(at, l, h)
 	}
 	return evaluate(inf, q, at)
+}
+
+// reach guesses the ends of the curve from the 95 % limits, in normal
+// proportion, where finding them would cost as much as the curve itself.
+func reach(inf *effect.Inference, g func(float64) float64) (lo, hi float64) {
+	const wider = 3.2905267314918945 / 1.959963984540054 // normal points of 0.0005 and 0.025
+	l, h := inf.Method.Limits((1 - curveLevels[2]) / 2)
+	mid := g(inf.Estimate)
+	if math.IsInf(mid, 0) || math.IsNaN(mid) {
+		return g(l), g(h)
+	}
+	return mid - wider*(mid-g(l)), mid + wider*(g(h)-mid)
 }
 
 func evaluate(inf *effect.Inference, q Question, at []float64) []result.CurvePoint {
