@@ -2,14 +2,19 @@ package numeric
 
 import "math"
 
-// maxHalvings limits how often one panel of Integrate is halved.
-const maxHalvings = 14
+// maxHalvings limits how often one panel of Integrate is halved, and
+// maxPanels how many are halved in all: an integrand with noise above the
+// wanted accuracy would otherwise be halved to the end everywhere.
+const (
+	maxHalvings = 14
+	maxPanels   = 4096
+)
 
 // Integrate adds 20-point Gauss–Legendre panels between the breakpoints (in
 // increasing order, finite; repeated ones are skipped), each halved until the
-// change is below rel of the total, at most 14 times. f must be finite inside
-// the panels; it is never called at their ends. Fewer than two breakpoints
-// give 0.
+// change is below rel of the total, at most 14 times and 4096 panels in all.
+// f must be finite inside the panels; it is never called at their ends. Fewer
+// than two breakpoints give 0.
 func Integrate(f func(float64) float64, breaks []float64, rel float64) float64 {
 	var rough Acc
 	for i := 1; i < len(breaks); i++ {
@@ -33,15 +38,17 @@ type adaptive struct {
 	rel   float64
 	total float64
 	sum   Acc
+	used  int
 }
 
 func (w *adaptive) refine(a, b, whole float64, left int) {
 	m := a + (b-a)/2
+	w.used++
 	p, q := panel(w.f, a, m), panel(w.f, m, b)
 	if s := math.Abs(p) + math.Abs(q); s > w.total {
 		w.total = s
 	}
-	if math.Abs(p+q-whole) <= w.rel*w.total || left <= 1 || m <= a || m >= b {
+	if math.Abs(p+q-whole) <= w.rel*w.total || left <= 1 || w.used > maxPanels || m <= a || m >= b {
 		w.sum.Add(p)
 		w.sum.Add(q)
 		return

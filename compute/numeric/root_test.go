@@ -124,6 +124,17 @@ func TestIntegrate(t *testing.T) {
 	}
 }
 
+// Noise above the wanted accuracy must not multiply the work without end.
+func TestIntegrateGivesUpOnNoise(t *testing.T) {
+	calls := 0
+	s := NewStream("test", 6, "noise", 0)
+	got := Integrate(func(x float64) float64 { calls++; return 1 + 1e-6*s.Normal() },
+		[]float64{0, 0.1, 0.2, 0.3, 0.4, 0.5, 0.6, 0.7, 0.8, 0.9, 1}, 1e-14)
+	if calls > 250000 || math.Abs(got-1) > 1e-7 {
+		t.Errorf("%d calls, integral %v", calls, got)
+	}
+}
+
 // A rule of n points is exact for polynomials to degree 2n−1; the moments of
 // the rules are known in closed form.
 func TestQuadratureRules(t *testing.T) {
