@@ -308,16 +308,3 @@ func droppedText(d []result.Dropped) string {
 	}
 	return s
 }
-
-// survivalFigures draws the curves of time-to-event data.
-func (c *composer) survivalFigures() {
-	for i := range c.res.Studies {
-		s := &c.res.Studies[i]
-		if len(s.Survival) == 0 || s.Use == result.MaskedUse {
-			continue
-		}
-		if fig := c.survivalFigure(s); fig != nil {
-			c.add(*fig)
-		}
-	}
-}

@@ -53,7 +53,7 @@ func (c *composer) axis(o *result.Outcome) chart.Axis {
 		}
 	}
 	a := chart.NewAxis(o.Ratio, core...).Widened(1, studies...)
-	a.Title, a.Better = axisTitle(o, f), o.Better
+	a.Title, a.Short, a.Unit, a.Better = axisTitle(o, f), axisShort(o, f), f.Unit, o.Better
 	if a.Better == "neither" {
 		a.Better = ""
 	}
@@ -67,6 +67,23 @@ func (c *composer) axis(o *result.Outcome) chart.Axis {
 // axisTitle names effect and unit.
 func axisTitle(o *result.Outcome, f number.Format) string {
 	s := capital(effectName(o)) // begins with our own noun
+	if f.Unit != "" {
+		s += ", " + f.Unit
+	}
+	return s
+}
+
+// axisShort is the same in fewer words.
+func axisShort(o *result.Outcome, f number.Format) string {
+	t := termOf(o.Measure)
+	s := capital(t.short)
+	switch {
+	case t.joint == "" || o.Groups[0] == "":
+	case o.Measure == "superiority-probability":
+		s += " in which " + o.Groups[0] + " is higher than " + o.Groups[1]
+	default:
+		s += " (" + o.Groups[0] + " " + t.joint + " " + o.Groups[1] + ")"
+	}
 	if f.Unit != "" {
 		s += ", " + f.Unit
 	}

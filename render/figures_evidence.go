@@ -114,26 +114,6 @@ func (c *composer) tallyFigure(name string, t *result.Tally) *page.Figure {
 	return figure(name+": directions of the results.", text+".", d.Draw(), nil)
 }
 
-// survivalFigure is the curve of time-to-event data.
-func (c *composer) survivalFigure(s *result.Study) *page.Figure {
-	o := outcomeOf(c.res, s.Outcome)
-	d := chart.Survival{Unit: o.Unit}
-	alt := "Shares without the event over time in " + s.Study + ":"
-	for i, g := range s.Survival {
-		d.Groups = append(d.Groups, chart.Survive{Name: g.Group, Time: g.Time, Frac: g.Share, Censored: g.Censored, Risk: g.RiskCounts})
-		if len(g.RiskTimes) > len(d.RiskTimes) {
-			d.RiskTimes = g.RiskTimes
-		}
-		if n := min(len(g.Time), len(g.Share)); n > 0 {
-			if i > 0 {
-				alt += ";"
-			}
-			alt += " " + g.Group + " ends at " + number.Share(g.Share[n-1]) + " after " + number.Significant(g.Time[n-1], 3)
-		}
-	}
-	return figure(s.Study+", "+o.Label+": share without the event (Kaplan–Meier). Ticks mark where observation ended.", alt+".", d.Draw(), nil)
-}
-
 // beliefFigure is a belief before and after.
 func (c *composer) beliefFigure(p *result.Prior, o *result.Outcome) *page.Figure {
 	if !(p.Before.SD > 0) || !(p.After.SD > 0) {

@@ -37,6 +37,9 @@ func (c *composer) groupRows(o *result.Outcome) (d chart.Groups, what string) {
 		if s.Outcome != o.Name || s.Use == result.MaskedUse || s.Set != "" && set != "" && s.Set != set {
 			continue
 		}
+		if len(s.Survival) > 0 {
+			continue // shares would pass over when observation ended; the curves show them
+		}
 		for _, g := range s.Groups {
 			r := chart.Group{Name: s.Study, Grey: s.Use != result.Analysed}
 			if g.Name != "" {
@@ -61,7 +64,7 @@ func (c *composer) groupRows(o *result.Outcome) (d chart.Groups, what string) {
 	}
 	if len(values) > 0 {
 		d.Axis = chart.NewAxis(false, values...)
-		d.Axis.Title = o.Label
+		d.Axis.Title, d.Axis.Unit = o.Label, o.Unit
 		if o.Unit != "" {
 			d.Axis.Title += ", " + o.Unit
 		}

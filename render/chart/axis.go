@@ -18,6 +18,8 @@ type Axis struct {
 	Log    bool
 	Lo, Hi float64 // range; Lo < Hi
 	Title  string  // effect and unit
+	Short  string  // the same in fewer words, where the title has no room; "" for none
+	Unit   string  // never cut from the title; "" for none
 	Better string  // which direction is better, "" for neither
 }
 

@@ -2,6 +2,7 @@ package chart
 
 import (
 	"math"
+	"strings"
 
 	"steelyard/render/page"
 )
@@ -117,16 +118,42 @@ func (c *canvas) axisTitle(f frame, a Axis, y float64) {
 	}
 	size := labelSize
 	bw := textWidth(better, size)
+	room := f.x1 - left - bw - 10
+	if a.Better == "lower" {
+		room = right - f.x0 - bw - 10
+	}
+	if better == "" {
+		room = right - left
+	}
+	title := a.named(size, room)
 	switch a.Better {
 	case "higher":
 		c.label(f.x1, y, better, size, page.Slate, page.End, false)
-		c.label(left, y, fitText(a.Title, size, f.x1-left-bw-10), size, page.Black, page.Start, false)
+		c.label(left, y, title, size, page.Black, page.Start, false)
 	case "lower":
 		c.label(f.x0, y, better, size, page.Slate, page.Start, false)
-		c.label(right, y, fitText(a.Title, size, right-f.x0-bw-10), size, page.Black, page.End, false)
+		c.label(right, y, title, size, page.Black, page.End, false)
 	default:
-		c.label(mid, y, fitText(a.Title, size, right-left), size, page.Black, page.Middle, false)
+		c.label(mid, y, title, size, page.Black, page.Middle, false)
 	}
+}
+
+// named is the title as far as there is room: in full, in short, or cut before
+// its unit.
+func (a Axis) named(size, room float64) string {
+	for _, s := range []string{a.Title, a.Short} {
+		if s != "" && textWidth(s, size) <= room {
+			return s
+		}
+	}
+	s := a.Title
+	if a.Short != "" {
+		s = a.Short
+	}
+	if end := tail(a.Unit); end != "" && strings.HasSuffix(s, end) {
+		return fitText(strings.TrimSuffix(s, end), size, room-textWidth(end, size)) + end
+	}
+	return fitText(s, size, room)
 }
 
 // bottomAxis draws a plain axis under a plot.

@@ -39,7 +39,7 @@ func (d Survival) Draw() *page.Drawing {
 	if last == 0 {
 		last = 1
 	}
-	ax, up := Axis{Lo: 0, Hi: last, Title: "Time" + tail(d.Unit)}, Axis{Lo: 0, Hi: 1}
+	ax, up := Axis{Lo: 0, Hi: last, Title: "Time" + timeUnit(d.Unit)}, Axis{Lo: 0, Hi: 1}
 	c.bottomAxis(f, ax)
 	c.sideAxis(f, up, 5, "share without the event")
 	styles := []page.Stroke{stroke(page.Accent, 1.6), dashed(page.Black, 1.3)}
@@ -95,6 +95,14 @@ func tail(unit string) string {
 		return ""
 	}
 	return ", " + unit
+}
+
+// timeUnit is ", unit"; without one the time is as the data have it.
+func timeUnit(unit string) string {
+	if unit == "" {
+		return ", in the unit of the data"
+	}
+	return tail(unit)
 }
 
 // stepPath turns steps into a path that ends at the last time.

@@ -35,6 +35,10 @@ func (d *drawer) verdictMark(t page.Tone, c colour, x, y, k float64) {
 func (d *drawer) ring(x, y, r, width float64, c colour) {
 	d.f.SetDrawColor(int(c.r), int(c.g), int(c.b))
 	d.f.SetLineWidth(width)
+	if d.dash {
+		d.f.SetDashPattern([]float64{}, 0)
+		d.dash = false
+	}
 	d.f.Circle(x, y, r, "D")
 	d.known = false
 }
