@@ -35,7 +35,7 @@ again in memory with this version, and says one of
   reproduced      the same bytes; bytes appended after it, such as a signature,
                   are counted and checked not to change what the pages show
   same numbers    other bytes, as after saving by another program, but the
-                  numbers and words are those that the record gives
+                  numbers (to nine digits) and words are those of its record
   different       which numbers, verdicts or words, as the file has them and as
                   the record gives them
   not checkable   why, and how to make it so

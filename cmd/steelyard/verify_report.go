@@ -68,6 +68,11 @@ func verifiedReport(path string, v *issued.Verified, width int) []byte {
 	}
 	if c := v.Compiled; c != nil && !c.Diagnostics.HasErrors() {
 		standing(b, c.Loaded.Seal)
+		for _, w := range c.Loaded.Record.Witnesses {
+			if w != nil {
+				b.Row("witness", "seal %d: %s, %s", w.Seal.V, w.What.V, w.Reference.V)
+			}
+		}
 		if words := verdicts(c.Result); words != "" {
 			b.Row("verdicts", "%s", words)
 		}

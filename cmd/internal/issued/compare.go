@@ -39,6 +39,14 @@ func Compare(old, now *Document) (*Comparison, error) {
 	if (old.Record == nil || now.Record == nil) && (old.JSON == nil || now.JSON == nil) {
 		return nil, ErrNothingInside
 	}
+	for _, d := range []*Document{old, now} {
+		if len(d.Record) > maxText || len(d.JSON) > maxText {
+			return nil, fmt.Errorf("a record inside, or its numbers, is larger than %d MiB", maxText>>20)
+		}
+	}
+	if old.Replaced || now.Replaced {
+		c.Notes = append(c.Notes, "What was appended to one of them takes the place of what it carried; it was read as it was written.")
+	}
 	if old.Record != nil && now.Record != nil {
 		if err := c.records(); err != nil {
 			return nil, err

@@ -142,7 +142,7 @@ type contract struct {
 }
 
 func contractOf(text []byte) (c contract) {
-	if json.Unmarshal(text, &c) != nil {
+	if len(text) > maxText || json.Unmarshal(text, &c) != nil {
 		return contract{}
 	}
 	return c

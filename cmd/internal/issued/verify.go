@@ -19,6 +19,9 @@ import (
 // ErrNotOurs says that a file neither is nor carries anything of ours.
 var ErrNotOurs = errors.New("Steelyard did not write this file")
 
+// maxText bounds a record, its seal and its numbers inside a document.
+const maxText = 16 << 20
+
 // Finding is what verifying came to.
 type Finding uint8
 
@@ -70,6 +73,9 @@ func Verify(file []byte, opt Options) (*Verified, error) {
 	if d.Record == nil && !v.fetch(opt.Folder) {
 		return v, nil
 	}
+	if len(d.Record) > maxText || len(d.Seal) > maxText || len(d.JSON) > maxText {
+		return nil, fmt.Errorf("its record, or what goes with it, is larger than %d MiB", maxText>>20)
+	}
 	again, err := v.compile(opt)
 	if err != nil || v.Compiled == nil {
 		return v, err
@@ -100,7 +106,7 @@ func (v *Verified) fetch(folder fs.FS) bool {
 	list, _ := fs.Glob(folder, "*.toml")
 	for _, name := range list[:min(len(list), 500)] {
 		info, err := fs.Stat(folder, name)
-		if err != nil || !info.Mode().IsRegular() || info.Size() > 16<<20 {
+		if err != nil || !info.Mode().IsRegular() || info.Size() > maxText {
 			continue
 		}
 		text, err := fs.ReadFile(folder, name)
