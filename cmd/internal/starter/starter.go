@@ -201,7 +201,7 @@ func (w *writer) result() {
 		for _, name := range strings.Fields(w.m.Data[0]) {
 			fmt.Fprintf(&columns, ", %s = \"COLUMN\"", name)
 		}
-		w.linef("# or, in place of that line, columns of a CSV file beside this record:")
+		w.linef("# or, in place of the numbers, columns of a CSV file beside this record:")
 		w.linef("# data = { file = \"data.csv\"%s }", columns.String())
 	}
 }
