@@ -25,7 +25,8 @@ func chainOf(t *testing.T, text string, files fstest.MapFS, at time.Time) []byte
 
 func TestLoadSealed(t *testing.T) {
 	march, may := time.Date(2026, 3, 1, 8, 0, 0, 0, time.UTC), time.Date(2026, 5, 1, 8, 0, 0, 0, time.UTC)
-	chain := chainOf(t, smallest, nil, march)
+	plan, _, _ := strings.Cut(smallest, "[[result]]") // a seal that holds a result is no promise about it
+	chain := chainOf(t, plan, nil, march)
 
 	in := Load("a.toml", []byte(smallest), chain, nil)
 	if in.Seal == nil || in.Seal.State != seal.Kept || in.Seal.Order != seal.BeforeResults || in.Sealed != nil || in.Seal.PlanSHA256() != in.PlanSHA256 || len(in.Diagnostics) > 0 {
