@@ -16,6 +16,7 @@ import (
 	"steelyard/cmd/internal/batch"
 	"steelyard/cmd/internal/issued"
 	"steelyard/cmd/internal/term"
+	"steelyard/protocol/diag"
 )
 
 // verifyFlags are the flags of verify.
@@ -240,7 +241,8 @@ func (a *app) showVerified(c checked, more bool) {
 	a.say.Print(text)
 	if c.v.Finding == issued.Differs && c.v.Compiled != nil && c.v.Compiled.Diagnostics.HasErrors() {
 		in := c.v.Compiled
-		list := term.Diagnostics(in.Diagnostics, in.Loaded.Source, c.path+" → "+c.v.Name, false)
+		errors := slices.DeleteFunc(slices.Clone(in.Diagnostics), func(d diag.Diagnostic) bool { return d.Severity != diag.SeverityError })
+		list := term.Diagnostics(errors, in.Loaded.Source, c.path+" → "+c.v.Name, false)
 		lines := strings.Split(string(list), "\n")
 		for i, l := range lines {
 			lines[i] = term.Clean(l)

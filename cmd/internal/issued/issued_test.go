@@ -2,8 +2,10 @@ package issued
 
 import (
 	"bytes"
+	"compress/zlib"
 	"errors"
 	"fmt"
+	"io"
 	"io/fs"
 	"os"
 	"strings"
@@ -266,6 +268,52 @@ func TestVerifyDamaged(t *testing.T) {
 			if err == nil && v.Finding == Reproduced {
 				t.Errorf("byte %d: reproduced", i)
 			}
+		}
+	}
+}
+
+// Files made to be expensive, or to speak for the program, come to an end.
+func TestVerifyHostile(t *testing.T) {
+	embedded := func(filter string, texts ...[]byte) []byte {
+		b := []byte("%PDF-1.7\n<steelyard:writtenBy>Steelyard</steelyard:writtenBy>\n")
+		for i, text := range texts {
+			b = fmt.Appendf(b, "%d 0 obj<</Type/EmbeddedFile%s>>stream\n%s\nendstream endobj\n", i+1, filter, text)
+		}
+		return b
+	}
+	packed := func(text string, times int) []byte {
+		var b bytes.Buffer
+		z, _ := zlib.NewWriterLevel(&b, zlib.BestSpeed)
+		for range times {
+			io.WriteString(z, text)
+		}
+		z.Close()
+		return b.Bytes()
+	}
+	many := make([][]byte, 30000)
+	for i := range many {
+		many[i] = []byte(`{"steelyard":1,"engine":"x","files":[{"path":"a","sha256":""}]}`)
+	}
+	for name, tt := range map[string]struct {
+		file []byte
+		want string // the finding, or a part of the error
+	}{
+		"a stream that unpacks to more than is taken": {embedded("/Filter/FlateDecode", packed(strings.Repeat("\x00", 1<<20), 120)), "too large when unpacked"},
+		"a record of twenty megabytes":                {embedded("/Filter/FlateDecode", append([]byte{}, packed("steelyard = 1\n"+strings.Repeat("#", 1<<20)+"\n", 20)...)), "larger than 16 MiB"},
+		"a record nested deep":                        {embedded("", []byte("steelyard = 1\nx = "+strings.Repeat("[", 1<<19))), "different"},
+		"numbers nested deep":                         {embedded("", []byte("steelyard = 1\n"), []byte(`{"steelyard":1,"engine":"1","x":`+strings.Repeat("[", 1<<19))), "different"},
+		"many files inside":                           {embedded("", many...), "not-checkable"},
+		"signs that steer a terminal":                 {embedded("", []byte("steelyard = 1\n\x1b[31mred = 1\n")), "different"},
+	} {
+		v, err := Verify(tt.file, Options{Rooms: pipeline.Real(), Limit: time.Minute})
+		got := ""
+		if err != nil {
+			got = err.Error()
+		} else {
+			got = v.Finding.String()
+		}
+		if !strings.Contains(got, tt.want) {
+			t.Errorf("%s: %s", name, got)
 		}
 	}
 }
