@@ -1,7 +1,6 @@
 package render
 
 import (
-	"slices"
 	"strings"
 
 	"steelyard/compute/result"
@@ -96,7 +95,7 @@ func (c *composer) numbersOf(v voice) {
 	if h.Events.OK {
 		f.add("Events", number.Count(h.Events.V))
 	}
-	f.add("Method", h.Method)
+	f.add("Method", methodName(h.Method))
 	f.add("Set", h.Set)
 	if len(h.Studies) > 0 && h.Evidence == "single" {
 		f.add("Study", join(h.Studies))
@@ -227,65 +226,6 @@ func unitTail(v voice) string {
 	return number.Hard + v.f.Unit
 }
 
-// assumptions prints what the data show of each assumption.
-func (c *composer) assumptions(h *result.Hypothesis) {
-	groups := groupsShown(h.Assumptions)
-	heads := []string{"Assumption", "What the data show"}
-	for _, g := range groups {
-		if g == "" {
-			g = "Value"
-		}
-		heads = append(heads, "#"+g)
-	}
-	t := newTable("Assumptions looked at", heads...)
-	for _, a := range h.Assumptions {
-		name := strings.ReplaceAll(a.Assumption, "-", " ")
-		done := map[string]bool{}
-		for _, s := range a.Shows {
-			if done[s.What] {
-				continue
-			}
-			done[s.What] = true
-			cells := []string{name, s.What}
-			for _, g := range groups {
-				cells = append(cells, shownFor(a.Shows, s.What, g))
-			}
-			t.row(cells...)
-		}
-		if len(a.Shows) == 0 {
-			t.row(name, "cannot be looked at from these numbers")
-		}
-	}
-	t.note("Shown for judgement; the method was chosen by the plan and not by these numbers.")
-	t.to(c)
-}
-
-// groupsShown lists the groups of which something is shown, in order.
-func groupsShown(checks []result.Check) []string {
-	var out []string
-	for _, a := range checks {
-		for _, s := range a.Shows {
-			if !slices.Contains(out, s.Group) {
-				out = append(out, s.Group)
-			}
-		}
-	}
-	return out
-}
-
-// shownFor is one number about one group, "" where there is none.
-func shownFor(shows []result.Shown, what, group string) string {
-	for _, s := range shows {
-		if s.What == what && s.Group == group {
-			if s.What == "p" {
-				return number.P(result.P{P: s.Value, OK: true})
-			}
-			return number.Short(s.Value, 3)
-		}
-	}
-	return ""
-}
-
 // notes prints what the computation had to say.
 func (c *composer) notes(h *result.Hypothesis) {
 	var l list
@@ -313,7 +253,7 @@ func (v voice) judgedRow(t *table, name string, j *result.Judged) *page.Row {
 	if n, _ := v.reading(j); n != "" {
 		word += "; " + n
 	}
-	return t.row(name, j.Method, s.Estimate, withLevel(s.Bare(), j.Level), pCell(j.P, v.h.Alpha), word)
+	return t.row(name, methodName(j.Method), s.Estimate, withLevel(s.Bare(), j.Level), pCell(j.P, v.h.Alpha), word)
 }
 
 // pCell is a p-value in a table, "" where there is none.
@@ -366,7 +306,7 @@ func becauseText(because string) string {
 	case "sensitivity":
 		return "sensitivity analysis " + name
 	case "method":
-		return "the method " + name
+		return "another method"
 	case "leave-one-out":
 		return "without " + name
 	}

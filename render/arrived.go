@@ -68,7 +68,7 @@ func (c *composer) studyTable(o *result.Outcome) {
 		row.Grey = s.Use != result.Analysed && s.Use != result.MaskedUse
 	}
 	if len(methods) > 0 {
-		t.note("Method: " + join(methods) + ".")
+		t.note(capital(pluralWord(len(methods), "method", "methods")) + ": " + join(methods) + ".")
 	}
 	t.to(c)
 	why.to(c)

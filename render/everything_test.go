@@ -80,7 +80,6 @@ var (
 		".Code", ".Because", ".Sort", ".Form", ".File", // codes of notes are printed with diagnostics; the rest is for order or for programs
 		".Set", ".Statistic", ".Alternatives[].Analysis.Method", ".Descriptive.Method", ".Pooled[].Analysis.Method", // printed where they differ
 		".BySet[].Analysis.Method", ".Cumulative[].Study", // a table or figure of one row says nothing
-		".Shows[].Group",         // heads a column, with a capital
 		".MeasureLabel", ".Unit", // in words of the page's own; ratios have no unit
 		".Before.Study", ".After.Study", // the path names each result
 		".Broken", ".Hypotheses[].Studies[]", // only of a broken chain; of pooled evidence the sentence names them

@@ -200,7 +200,7 @@ func (c *composer) beamFull(h *result.Hypothesis) *page.Figure {
 		return nil
 	}
 	b := c.ground(v)
-	b.Names, b.Right = 132, 128
+	b.Names, b.Right = 172, 170
 	first := v.row("decides, "+number.Level(h.Level), &h.Judged)
 	if !h.IntervalDecides {
 		first.Name = "shown, " + number.Level(h.Level)
@@ -220,7 +220,11 @@ func (c *composer) beamFull(h *result.Hypothesis) *page.Figure {
 		if !hasInterval(j) {
 			continue
 		}
-		r := v.row(becauseText(j.Because), j)
+		name := becauseText(j.Because)
+		if strings.HasPrefix(j.Because, "method:") {
+			name = methodName(j.Method)
+		}
+		r := v.row(name, j)
 		r.Grey, r.Separate = true, i == 0
 		b.Rows = append(b.Rows, r)
 	}
@@ -244,7 +248,7 @@ func (c *composer) sharedBeams() {
 			}
 			v := voiceOf(c.res, h)
 			if len(names) == 0 {
-				b = chart.Beam{Axis: c.axis(o), Band: band(v.f, o.Low, o.High), Null: point(v.f, o.Null), Names: 150, Right: 118, Height: 17}
+				b = chart.Beam{Axis: c.axis(o), Band: band(v.f, o.Low, o.High), Null: point(v.f, o.Null), Names: 160, Right: 170, Height: 17}
 			}
 			names = append(names, h.Name)
 			r := v.row(h.Name+" "+h.Claim+", "+number.Level(h.Level), &h.Judged)

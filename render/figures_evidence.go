@@ -14,7 +14,7 @@ import (
 // outcomeGround is a beam with the points of an outcome.
 func (c *composer) outcomeGround(o *result.Outcome) chart.Beam {
 	f := number.Of(o)
-	return chart.Beam{Axis: c.axis(o), Band: band(f, o.Low, o.High), Null: point(f, o.Null), Names: 150, Right: 150, Height: 16}
+	return chart.Beam{Axis: c.axis(o), Band: band(f, o.Low, o.High), Null: point(f, o.Null), Names: 172, Right: 170, Height: 16}
 }
 
 // shownRow is an interval with its text on the right.

@@ -137,7 +137,7 @@ func (c *composer) planHypotheses() {
 		if h.Claim != "describe" {
 			alpha = number.Error(h.Alpha) + sides
 		}
-		t.row(h.Name, v.label(), h.Claim, h.Role, alpha, v.marginCell(), h.Evidence, h.Method)
+		t.row(h.Name, v.label(), h.Claim, h.Role, alpha, v.marginCell(), h.Evidence, methodName(h.Method))
 	}
 	t.to(c)
 	var l list

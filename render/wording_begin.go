@@ -105,3 +105,29 @@ func (c *composer) touches(h *result.Hypothesis, path string) bool {
 	}
 	return false
 }
+
+// methodName is the word of a method as it is read; the parts of a pooled one
+// (model, estimator, interval or weights) stand apart.
+func methodName(word string) string {
+	for _, model := range []string{"random", "common"} {
+		rest, ok := strings.CutPrefix(word, model+"-")
+		if !ok {
+			continue
+		}
+		for _, between := range []string{"reml", "paule-mandel", "dersimonian-laird", "sidik-jonkman"} {
+			if interval, ok := strings.CutPrefix(rest, between+"-"); ok {
+				return model + ", " + between + ", " + interval
+			}
+		}
+		return model + ", " + rest
+	}
+	return word
+}
+
+// pluralWord is one of two words by number.
+func pluralWord(n int, one, many string) string {
+	if n == 1 {
+		return one
+	}
+	return many
+}

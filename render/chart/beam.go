@@ -2,6 +2,7 @@ package chart
 
 import (
 	"math"
+	"strings"
 
 	"steelyard/render/page"
 )
@@ -64,9 +65,11 @@ func (b Beam) Draw() *page.Drawing {
 	c := &canvas{w: Width, h: bottom + 14}
 	f := frame{x0: edge + sideRoom, x1: Width - edge - sideRoom, y0: beamTop, y1: bottom}
 	if b.Names > 0 {
+		b.Names = b.widest(b.Names, func(r Row) string { return r.Name })
 		f.x0 = edge + b.Names
 	}
 	if b.Right > 0 {
+		b.Right = b.widest(b.Right, func(r Row) string { return r.Right })
 		f.x1 = Width - edge - b.Right
 	}
 	b.ground(c, f)
@@ -84,6 +87,37 @@ func (b Beam) Draw() *page.Drawing {
 	}
 	c.axisTitle(f, b.Axis, bottom+9)
 	return c.drawing()
+}
+
+// widest is the room that the texts beside the rows take: that of the longest,
+// between 60 points and a most.
+func (b Beam) widest(most float64, text func(Row) string) float64 {
+	w := 0.0
+	for _, r := range b.Rows {
+		k := 1.0
+		if r.Strong {
+			k = 1.07 // bold
+		}
+		w = math.Max(w, k*textWidth(text(r), labelSize))
+	}
+	return math.Min(most, math.Max(60, w+14))
+}
+
+// side writes a name left of its row, on two lines where one is too short.
+func (c *canvas) side(r Row, y, height, room float64, ink page.Ink) {
+	if textWidth(r.Name, labelSize) <= room || height < 15 {
+		c.label(edge, y+3, fitText(r.Name, labelSize, room), labelSize, ink, page.Start, r.Strong)
+		return
+	}
+	first, rest := "", r.Name
+	for _, word := range strings.SplitAfter(r.Name, " ") {
+		if first != "" && textWidth(first+word, smallSize) > room {
+			break
+		}
+		first, rest = first+word, rest[len(word):]
+	}
+	c.label(edge, y-1, fitText(strings.TrimSpace(first), smallSize, room), smallSize, ink, page.Start, r.Strong)
+	c.label(edge, y+6.4, fitText(rest, smallSize, room), smallSize, ink, page.Start, r.Strong)
 }
 
 // ground draws beam, band, notch, ticks and marks.
@@ -157,7 +191,7 @@ func (b Beam) hang(c *canvas, f frame, r Row, top, height, from float64) {
 		if r.Grey {
 			text = page.Slate
 		}
-		c.label(edge, y+3, fitText(r.Name, labelSize, b.Names-8), labelSize, text, page.Start, r.Strong)
+		c.side(r, y, height, b.Names-8, text)
 	}
 	if b.Right > 0 {
 		c.label(Width-edge, y+3, fitText(r.Right, labelSize, b.Right-8), labelSize, page.Black, page.End, r.Strong)

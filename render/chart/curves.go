@@ -20,8 +20,8 @@ type Curve struct {
 
 // Draw makes the picture.
 func (d Curve) Draw() *page.Drawing {
-	c := &canvas{w: Width, h: 172}
-	f := frame{x0: edge + 30, x1: Width - edge - 10, y0: 18, y1: 138}
+	c := &canvas{w: Width, h: 136}
+	f := frame{x0: edge + 30, x1: Width - edge - 10, y0: 18, y1: 104}
 	up := Axis{Lo: 0, Hi: 1}
 	d.ground(c, f)
 	c.bottomAxis(f, d.Axis)
@@ -105,8 +105,8 @@ type MarginStep struct {
 
 // Draw makes the picture.
 func (d MarginStep) Draw() *page.Drawing {
-	c := &canvas{w: Width, h: 152}
-	f := frame{x0: edge + 34, x1: Width - edge - 10, y0: 18, y1: 118}
+	c := &canvas{w: Width, h: 126}
+	f := frame{x0: edge + 34, x1: Width - edge - 10, y0: 18, y1: 92}
 	top := 1e-6
 	for _, p := range append([]float64{d.Alpha * 4}, d.P...) {
 		if p > top {
@@ -153,8 +153,8 @@ type Beliefs struct {
 
 // Draw makes the picture.
 func (d Beliefs) Draw() *page.Drawing {
-	c := &canvas{w: Width, h: 142}
-	f := frame{x0: edge + 10, x1: Width - edge - 10, y0: 22, y1: 108}
+	c := &canvas{w: Width, h: 118}
+	f := frame{x0: edge + 10, x1: Width - edge - 10, y0: 20, y1: 86}
 	top := 0.0
 	for _, h := range d.Hills {
 		for _, v := range h.H {

@@ -26,8 +26,8 @@ type Survival struct {
 // Draw makes the picture: steps, ticks where observation ended, and the
 // numbers at risk under the axis.
 func (d Survival) Draw() *page.Drawing {
-	c := &canvas{w: Width, h: 186 + 11*float64(len(d.Groups))}
-	f := frame{x0: edge + 74, x1: Width - edge - 14, y0: 18, y1: 138}
+	c := &canvas{w: Width, h: 170 + 11*float64(len(d.Groups))}
+	f := frame{x0: edge + 74, x1: Width - edge - 14, y0: 18, y1: 122}
 	last := 0.0
 	for _, g := range d.Groups {
 		for _, t := range append(append([]float64(nil), g.Time...), g.Censored...) {
