@@ -133,12 +133,13 @@ func (c *confusion) count(s *sentence, raised []string, right, coded bool) {
 }
 
 // Floors of the parts that the rules were not adjusted on: right of all, in
-// per cent. First runs, before any adjustment of the rules: held out 186 of
-// 194; of three batches written after the rules, 61 of 72, 54 of 64 and 40 of
-// 50. All of those but the 25 of "later" are now part of "tuned".
+// per cent. Right at the first run: of "heldout" 186 of 194; of four batches
+// written after the rules as these grew, 61 of 72, 54 of 64, 40 of 50 and 47
+// of 54. "later" is half of the third batch and the fourth; the others are
+// part of "tuned" by now.
 const (
-	heldoutFloor = 95
-	laterFloor   = 80
+	heldoutFloor = 97
+	laterFloor   = 83
 )
 
 func TestCorpus(t *testing.T) {

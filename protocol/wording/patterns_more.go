@@ -45,7 +45,7 @@ var moreEntries = []entry{
 		"no|not more|greater|higher|longer|larger than #|the # %limit?",
 	}},
 	{Limit, Better, 0, []string{
-		"meets|meet|met|satisfies|satisfy|satisfied|fulfils|fulfills|fulfil|fulfill|fulfilled|passes|passed|reaches|reached|keeps|kept|respects|attains|attained|achieves|achieved|complies|comply|complied|conforms|conform|conformed with|to|the|all|our|its|within? the|all|our|its|this|these? _2 %limit", "%limit _3 %is|been _2 met|satisfied|fulfilled|reached|achieved|kept|respected|attained|passed", "within the|its|all|our? _1 limit|limits|specification|specifications|spec|tolerance|tolerances|requirement|requirements", "%is|be|fully capable|compliant|conforming|acceptable", "in spec|specification|compliance",
+		"meets|meet|met|satisfies|satisfy|satisfied|fulfils|fulfills|fulfil|fulfill|fulfilled|passes|passed|reaches|reached|keeps|kept|respects|attains|attained|achieves|achieved|complies|comply|complied|conforms|conform|conformed with|to|the|all|our|its|within? the|all|our|its|this|these? _2 %limit", "%limit _3 %is|been _2 met|satisfied|fulfilled|reached|achieved|kept|respected|attained|passed", "within the|its|all|our? _1 limit|limits|specification|specifications|spec|tolerance|tolerances|requirement|requirements", "%is|be|fully capable|compliant|conforming|acceptable", "in spec|specification|compliance", "conforms|conform|conformed|complies|comply $", "%thing|lot|product|device|batch|process passes|passed $",
 		"inside the|its|all? _1 limit|limits|tolerance|specification",
 	}},
 	{Limit, Worse, 0, []string{

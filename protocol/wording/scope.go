@@ -137,33 +137,36 @@ func (s *sentence) mentions(words ...string) bool {
 var between = set(`be been being is are was were any a an the to more much clearly really truly actually significantly statistically itself
 thus therefore yet however in at all significantly seem appear become prove proved shown necessarily even either been so very that such also have has show give bring produce offer`)
 
-// negated reports whether a denial stands right before word a, or before an
-// insertion between commas ("not, in our view, better").
-func (s *sentence) negated(a int) bool {
+// denial finds the word that denies what begins at word a: right before it, or
+// before an insertion between commas ("not, in our view, better"); -1 for none.
+func (s *sentence) denial(a int) int {
 	for i := a - 1; i >= max(0, a-5); i-- {
 		if s.tokens[i+1].brk {
-			return false
+			return -1
 		}
 		w := s.tokens[i].text
 		if turns(w) {
-			return true
+			return i
 		}
 		if !between[w] {
 			break
 		}
 	}
 	if !s.tokens[a].comma {
-		return false
+		return -1
 	}
 	for i := a - 1; i > max(0, a-7); i-- {
 		if s.tokens[i].brk {
-			return false
+			return -1
 		}
 		if s.tokens[i].comma {
-			return turns(s.tokens[i-1].text)
+			if turns(s.tokens[i-1].text) {
+				return i - 1
+			}
+			return -1
 		}
 	}
-	return false
+	return -1
 }
 
 // turns reports whether a word denies what follows.
@@ -179,7 +182,7 @@ var comparatives = set(vocabulary["up"] + " " + vocabulary["down"] + " faster sl
 
 // ofWork are things of a study that a phrase may be said of without claiming
 // anything of its results.
-var ofWork = set("analysis analyses design report conduct decision decisions plan protocol schedule publication conclusion conclusions budget timetable visits forms questionnaire")
+var ofWork = set("analysis analyses design report conduct decision decisions plan protocol schedule publication conclusion conclusions budget timetable visits forms questionnaire knowledge understanding")
 
 // aside reports whether a phrase speaks of how the study was run: "no influence
 // on the analysis", "the protocol was not changed".
@@ -194,6 +197,9 @@ func (s *sentence) aside(a, b int) bool {
 		if !oneOf(s.tokens[i].text, "on", "in", "of", "to", "the", "our", "this", "its", "by") {
 			break
 		}
+	}
+	if s.ofTime(a, b) {
+		return true
 	}
 	if a > 0 && oneOf(s.tokens[a-1].text, "cost", "costs", "priced") {
 		return true
@@ -228,5 +234,27 @@ func (s *sentence) names(a, b int) bool {
 	if comparatives[w] && determined && b < len(s.tokens) && !s.tokens[b].brk && !oneOf(s.tokens[b].text, "of", "than", "was", "is", "were", "are") {
 		return true
 	}
+	if w == "better" && determined && b < len(s.tokens) && s.tokens[b].text == "of" {
+		return true
+	}
 	return nouns[w] && (determined || oneOf(before, "a", "an", "new", "old", "of", "and", "or", "second", "first") || comparatives[before])
+}
+
+// ofTime reports whether a phrase only counts days or money, and no outcome is
+// named: "saves four weeks", "two days shorter".
+func (s *sentence) ofTime(a, b int) bool {
+	if !oneOf(s.tokens[a].text, "saves", "save", "saved", "shorter", "longer", "less", "more") {
+		return false
+	}
+	for _, m := range s.terms {
+		if m.kind == Outcome {
+			return false
+		}
+	}
+	for i := max(0, a-2); i < min(len(s.tokens), b+3); i++ {
+		if oneOf(s.tokens[i].text, "weeks", "days", "months", "years", "euros", "money", "costs") {
+			return true
+		}
+	}
+	return false
 }

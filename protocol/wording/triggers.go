@@ -51,10 +51,12 @@ var triggerEntries = []triggerEntry{
 	{Asked, backward, []string{
 		"%is|was|were a|an|the|one|our? _1 hypothesis|question|claim|assumption|possibility|plan|aim|objective|guess|conjecture|expectation|idea|hope", "will|shall|is|are|to be _1 tested|judged|decided|measured|assessed|compared|examined|investigated|checked|evaluated|analysed|analyzed|seen|described|known|shown", "was|were|%is _1 hoped|expected|wanted|assumed|planned|intended|chosen|required|needed|sought|asked|desired", "would|should|must|will be _1 tested|shown|judged|confirmed|needed|required|sought",
 	}},
-	{Attributed, forward, []string{
+	{Attributed, forward, []string{"one|some|few|several|individual %person|participant|participants|subject|subjects|member|members",
+
 		"according to", "supplier|suppliers|manufacturer|manufacturers|vendor|maker|makers|seller|sponsor|inventor|critics|some|others|reviewer|reviewers|authors|author|leaflet|brochure|advertisement|advertising|literature|guideline|guidelines|colleagues|operators|staff|nurses|teachers|they|consultant|label|textbook|textbooks|experts|salesman|catalogue _2 claim|claims|claimed|say|says|said|state|states|stated|believe|believes|believed|report|reports|reported|think|thinks|thought|argue|argues|argued|felt|feel|expected|hoped|describe|described|describes|promise|promises|promised|maintain|maintains|assert|asserts|asserted|told|call|calls|called|suggest|suggests|praises|praise|insist|insists|consider|considered",
 		"earlier|previous|prior|older|another|other|published|past|historical|former|first|pilot _2 study|studies|report|reports|trial|trials|work|review|reviews|paper|papers|results|publication|authors|group|series|experience|season", "it|that is|was|has|been _2 said|claimed|believed|assumed|thought|argued|held|reported|known _1 that|elsewhere", "reportedly|allegedly|supposedly|purportedly", "claimed|reported|said|described|stated by|elsewhere", "%is said|claimed|believed|reputed|advertised|marketed|sold|reported to|as",
 	}},
+	{Asked, near, []string{"smallest|least|minimal|minimum"}},
 	{Possible, forward, []string{
 		"may|might", "could !not", "possibly|perhaps|maybe|conceivably|potentially", "possible|plausible|conceivable|thinkable|imaginable that|to|but|gain|gains|effect|benefit|explanation|difference|for|a|values", "compatible|consistent|reconcilable with", "still|also|would|does|do|interval|limits|data|range|results|they|it allow|allows|permit|permits|admit|admits|include|includes|included|covers|contain|contains|cover|reach|reaches|extends|extend|spans|span|range|ranges",
 		"leave|leaves room|scope|space for|to", "possibility of|that", "includes|include|covers|contains|spans both|the|values|a|useful|zero|null|no",

@@ -139,8 +139,9 @@ func Find(text string, terms ...Term) []Phrase {
 				before.Within = before.Within || m.entry.class == Relevance
 				continue
 			}
+			ended := end
 			end = m.to
-			p := s.phrase(m, triggers, before)
+			p := s.phrase(m, triggers, before, ended)
 			p.Sentence, p.Topic = n, topic
 			names.resolve(s, m, &p)
 			out = append(out, p)
@@ -204,8 +205,8 @@ func (s *sentence) absorbed(m match, before *Phrase, end int) bool {
 	return false
 }
 
-// phrase reads a match in its sentence.
-func (s *sentence) phrase(m match, triggers []trigger, before *Phrase) (p Phrase) {
+// phrase reads a match in its sentence; the phrase before it ends at word ended.
+func (s *sentence) phrase(m match, triggers []trigger, before *Phrase, ended int) (p Phrase) {
 	r := s.read(triggers, m.from, m.to)
 	e := m.entry
 	p = Phrase{Class: e.class, Force: r.force, Start: s.tokens[m.from].start, End: s.tokens[m.to-1].end, Direction: e.direction,
@@ -217,7 +218,8 @@ func (s *sentence) phrase(m match, triggers []trigger, before *Phrase) (p Phrase
 	gains := s.mentions("benefit", "gain", "gains", "saving", "savings", "save", "saves", "saved", "advantage", "improvement", "relief") &&
 		!s.mentions("difference", "differences", "effect", "effects", "change")
 	defer func() { p.Benefit = p.Benefit || p.Class == TooSmall && gains }()
-	not := s.negated(m.from)
+	at := s.denial(m.from)
+	not := at >= 0
 	if !not && before != nil && before.Negated && m.from > 0 && oneOf(s.tokens[m.from-1].text, "or", "nor") && before.End == s.tokens[max(0, m.from-2)].end {
 		not = true
 	}
@@ -227,6 +229,9 @@ func (s *sentence) phrase(m match, triggers []trigger, before *Phrase) (p Phrase
 			return p
 		}
 		p.deny()
+		if at >= ended {
+			p.Start = s.tokens[at].start
+		}
 	}
 	return p
 }
