@@ -224,6 +224,9 @@ type verifiedFile struct {
 	SHA256      string              `json:"record_sha256,omitempty"`
 	Engine      string              `json:"engine,omitempty"`
 	Appended    int                 `json:"appended"`
+	SealState   string              `json:"seal_state,omitempty"` // as in the JSON of a result
+	SealOrder   string              `json:"seal_order,omitempty"`
+	SealSHA256  string              `json:"seal_sha256,omitempty"` // of the last entry
 	Differences []issued.Difference `json:"differences"`
 	Notes       []string            `json:"notes,omitempty"`
 	Reason      string              `json:"reason,omitempty"`
@@ -243,6 +246,13 @@ func verifiedJSON(all []checked) ([]byte, error) {
 		}
 		if c.v.Record != nil {
 			f.SHA256 = seal.Digest(c.v.Record)
+		}
+		if c.v.Compiled != nil && c.v.Compiled.Loaded.Seal != nil {
+			s := c.v.Compiled.Loaded.Seal
+			f.SealState, f.SealOrder = s.State, s.Order
+			if n := len(s.Entries); n > 0 {
+				f.SealSHA256 = s.Entries[n-1].Sum
+			}
 		}
 		list = append(list, f)
 	}
