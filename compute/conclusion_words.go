@@ -2,6 +2,7 @@ package compute
 
 import (
 	"fmt"
+	"slices"
 	"strings"
 
 	"steelyard/compute/result"
@@ -11,6 +12,9 @@ import (
 // explain says what is wrong with a phrase and how to put it.
 func (k *checker) explain(code string, p wording.Phrase, about []*result.Hypothesis) (why, repair string) {
 	why = says[code]
+	if p.Exact && slices.ContainsFunc(about, func(h *result.Hypothesis) bool { return h.Claim == "equivalent" && h.Verdict == result.Established }) {
+		why = "calls the two the same in every respect, where a difference inside the region remains possible"
+	}
 	if len(about) > 0 {
 		why += "; " + k.standing(about)
 	}

@@ -16,7 +16,6 @@ type flag uint8
 const (
 	exact     flag = 1 << iota // the same in every respect
 	ofBenefit                  // speaks of the better side only
-	ofHarm                     // speaks of the worse side only
 	negative                   // the denial is part of the phrase
 	plain                      // a denial before it does not turn it
 )

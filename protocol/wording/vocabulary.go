@@ -39,7 +39,6 @@ var vocabulary = map[string]string{
 	"limit":    "limit limits requirement requirements target targets specification specifications spec criterion criteria threshold thresholds tolerance standard standards goal ceiling floor maximum minimum class grade norm norms",
 	"person":   "patient patients person people user users customer customers pupil pupils student students driver drivers child children adult adults woman women man men everyone everybody trainee trainees worker workers farmer farmers animal animals",
 	"thing":    "part parts unit units pouch pouches case cases lot lots batch batches line lines condition conditions setting settings hospital hospitals school schools field fields situation situations population populations circumstances circumstance climate climates soil soils ward wards machine machines product products item items sample samples season seasons age ages",
-	"deny":     "not no never neither nor without",
 	"harmnoun": "risk risks harm harms danger dangers hazard hazards toxicity complications",
 }
 

@@ -210,14 +210,18 @@ func (s *sentence) phrase(m match, triggers []trigger, before *Phrase, ended int
 	r := s.read(triggers, m.from, m.to)
 	e := m.entry
 	p = Phrase{Class: e.class, Force: r.force, Start: s.tokens[m.from].start, End: s.tokens[m.to-1].end, Direction: e.direction,
-		Exact: e.flags&exact != 0, Benefit: e.flags&ofBenefit != 0, HarmOnly: e.flags&ofHarm != 0, Within: r.within,
+		Exact: e.flags&exact != 0, Benefit: e.flags&ofBenefit != 0, Within: r.within,
 		Observed: r.observed, Explained: r.explained, AtLeastOne: r.atLeast1, Negated: e.flags&negative != 0 && e.direction != ""}
 	if p.Force == Denied {
 		return p
 	}
 	gains := s.mentions("benefit", "gain", "gains", "saving", "savings", "save", "saves", "saved", "advantage", "improvement", "relief") &&
 		!s.mentions("difference", "differences", "effect", "effects", "change")
-	defer func() { p.Benefit = p.Benefit || p.Class == TooSmall && gains }()
+	losses := !gains && s.mentions("loss", "rise", "increase", "harm", "deterioration", "worsening") && !s.mentions("difference", "differences", "effect", "effects", "change")
+	defer func() {
+		p.Benefit = p.Benefit || p.Class == TooSmall && gains
+		p.HarmOnly = p.Class == TooSmall && losses
+	}()
 	at := s.denial(m.from)
 	not := at >= 0
 	if !not && before != nil && before.Negated && m.from > 0 && oneOf(s.tokens[m.from-1].text, "or", "nor") && before.End == s.tokens[max(0, m.from-2)].end {
