@@ -83,7 +83,7 @@ var (
 		".MeasureLabel", ".Unit", // in words of the page's own; ratios have no unit
 		".Before.Study", ".After.Study", // the path names each result
 		".Broken", ".Hypotheses[].Studies[]", // only of a broken chain; of pooled evidence the sentence names them
-		".Removed[].Assumptions[].Assumption", ".Removed[].Assumptions[].Shows[].What", ".Removed[].Judged.Analysis.Method", // its sentence is printed,
+		".Removed[].Assumptions[].Assumption", ".Removed[].Assumptions[].Shows[].What", ".Removed[].Assumptions[].Shows[].Group", ".Removed[].Judged.Analysis.Method", // its sentence is printed,
 		".Removed[].MarginWhy", ".Removed[].Excludes", ".Removed[].Studies[]", // as it is no claim of the plan now
 	}
 	notInJSON = []string{

@@ -140,7 +140,7 @@ func hasInterval(j *result.Judged) bool {
 
 // beam is the figure of page one: one interval under the beam. A claim that
 // waits for results shows the empty beam.
-func (c *composer) beam(h *result.Hypothesis, dense bool) *page.Figure {
+func (c *composer) beam(h *result.Hypothesis, dense, crowded bool) *page.Figure {
 	v := voiceOf(c.res, h)
 	if !v.o.Null.OK && !h.Limit.OK && !hasInterval(&h.Judged) {
 		return nil
@@ -156,6 +156,9 @@ func (c *composer) beam(h *result.Hypothesis, dense bool) *page.Figure {
 			r.EstText = ""
 		}
 		b.Rows = []chart.Row{r}
+	}
+	if crowded {
+		b.Wide = 196
 	}
 	return &page.Figure{Alt: c.beamAlt(v), Drawing: b.Draw(), Plain: b.Plain(plainColumns)}
 }

@@ -21,7 +21,7 @@ func (c *composer) pageOne() {
 	}
 	c.small(c.kindOfComparison(dense))
 	for _, h := range primary {
-		c.add(c.verdictBlock(h, dense))
+		c.add(c.verdictBlock(h, dense, len(primary) > 3))
 	}
 	c.small(c.otherClaims(len(primary)))
 	c.small(c.noFamily())
@@ -121,8 +121,9 @@ func (c *composer) primary() []*result.Hypothesis {
 
 // verdictBlock is the page-one block of one hypothesis.
 // Where several share the page they stand closer: the reading joins the
-// qualifiers, and the figure leaves out numbers that the text gives.
-func (c *composer) verdictBlock(h *result.Hypothesis, dense bool) page.Verdict {
+// qualifiers, and the figure leaves out numbers that the text gives. Where
+// more than three do, the figure stands beside the text.
+func (c *composer) verdictBlock(h *result.Hypothesis, dense, crowded bool) page.Verdict {
 	v := voiceOf(c.res, h)
 	j := &h.Judged
 	b := page.Verdict{Name: h.Name, Word: VerdictWord(j.Verdict), Tone: tone(j.Verdict), Qualify: c.qualify(h)}
@@ -146,7 +147,7 @@ func (c *composer) verdictBlock(h *result.Hypothesis, dense bool) page.Verdict {
 		b.Region = page.T(s)
 	}
 	if h.Evidence != "combined" {
-		b.Figure = c.beam(h, dense)
+		b.Figure = c.beam(h, dense, crowded)
 	}
 	return b
 }

@@ -42,6 +42,7 @@ type Beam struct {
 	Names  float64 // width of the names on the left; 0: none
 	Right  float64 // width of the texts on the right; 0: none
 	Height float64 // of one row; 0: as needed
+	Wide   float64 // of the picture; 0: the text block
 }
 
 // Geometry of the beam.
@@ -62,21 +63,26 @@ func (b Beam) Draw() *page.Drawing {
 		markRoom = 10
 	}
 	bottom := beamTop + beamThick + markRoom + row*float64(len(b.Rows)) + 4
-	c := &canvas{w: Width, h: bottom + 14}
-	f := frame{x0: edge + sideRoom, x1: Width - edge - sideRoom, y0: beamTop, y1: bottom}
+	wide := b.Wide
+	if wide == 0 {
+		wide = Width
+	}
+	c := &canvas{w: wide, h: bottom + 14}
+	room := min(sideRoom, 0.16*wide)
+	f := frame{x0: edge + room, x1: wide - edge - room, y0: beamTop, y1: bottom}
 	if b.Names > 0 {
 		b.Names = b.widest(b.Names, func(r Row) string { return r.Name })
 		f.x0 = edge + b.Names
 	}
 	if b.Right > 0 {
 		b.Right = b.widest(b.Right, func(r Row) string { return r.Right })
-		f.x1 = Width - edge - b.Right
+		f.x1 = wide - edge - b.Right
 	}
 	b.ground(c, f)
 	y := beamTop + beamThick + markRoom
 	for i, r := range b.Rows {
 		if r.Separate {
-			c.line(edge, y, Width-edge, y, stroke(page.Mist, 0.6))
+			c.line(edge, y, wide-edge, y, stroke(page.Mist, 0.6))
 		}
 		from := y
 		if i == 0 {
@@ -194,7 +200,7 @@ func (b Beam) hang(c *canvas, f frame, r Row, top, height, from float64) {
 		c.side(r, y, height, b.Names-8, text)
 	}
 	if b.Right > 0 {
-		c.label(Width-edge, y+3, fitText(r.Right, labelSize, b.Right-8), labelSize, page.Black, page.End, r.Strong)
+		c.label(c.w-edge, y+3, fitText(r.Right, labelSize, b.Right-8), labelSize, page.Black, page.End, r.Strong)
 	}
 	if r.Wider.OK && r.WiderHigh.OK {
 		x0, x1 := f.x(a, r.Wider.V), f.x(a, r.WiderHigh.V)
@@ -214,7 +220,8 @@ func (b Beam) hang(c *canvas, f frame, r Row, top, height, from float64) {
 		c.line(x0, y, x1, y, stroke(ink, width))
 		c.end(f, a, low, y, ink, -1, from)
 		c.end(f, a, high, y, ink, 1, from)
-		if b.Names == 0 {
+		apart := x1+6+textWidth(r.HighText, labelSize) <= c.w-edge && x0-6-textWidth(r.LowText, labelSize) >= edge
+		if b.Names == 0 && (apart || c.w == Width) { // a narrow picture leaves the limits to the text
 			b.cleared(c, f, x0-6-textWidth(r.LowText, labelSize), y, r.LowText)
 			b.cleared(c, f, x1+6, y, r.HighText)
 		}

@@ -150,6 +150,9 @@ func (a Axis) named(size, room float64) string {
 	if a.Short != "" {
 		s = a.Short
 	}
+	if bare, _, ok := strings.Cut(s, " ("); ok && textWidth(bare+tail(a.Unit), size) <= room {
+		return bare + tail(a.Unit)
+	}
 	if end := tail(a.Unit); end != "" && strings.HasSuffix(s, end) {
 		return fitText(strings.TrimSuffix(s, end), size, room-textWidth(end, size)) + end
 	}

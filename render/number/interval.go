@@ -45,9 +45,14 @@ func (f Format) Interval(est, low, high result.Opt, points ...float64) Shown {
 	if f.Ratio {
 		d = max(d, 2)
 	}
-	for _, c := range append(append([]float64(nil), points...), f.Ends...) {
+	for _, c := range points {
 		d = f.apart(d, scale, s.hasLow, low.V, c, spread)
 		d = f.apart(d, scale, s.hasHigh, high.V, c, spread)
+	}
+	most := d + endDecimals
+	for _, c := range f.Ends {
+		d = max(d, min(most, f.apart(d, scale, s.hasLow, low.V, c, spread)))
+		d = max(d, min(most, f.apart(d, scale, s.hasHigh, high.V, c, spread)))
 	}
 	s.Decimals = d
 	if est.OK {
@@ -60,6 +65,31 @@ func (f Format) Interval(est, low, high result.Opt, points ...float64) Shown {
 		s.High, s.HighEqual = s.At(high.V), f.onPoint(high.V, points, spread)
 	}
 	return s
+}
+
+// endDecimals is how many decimals more than its spread asks for an interval
+// may have to keep a limit off the end of the range, before it is printed as
+// lying beyond the last printable value.
+const endDecimals = 1
+
+// besideEnd writes a shown value that would be rounded onto the end of the
+// range, where it does not lie, as lying beyond the last value before it.
+func (s Shown) besideEnd(v float64) (string, bool) {
+	if s.power != 0 || math.IsInf(v, 0) || math.IsNaN(v) {
+		return "", false
+	}
+	step := math.Pow(10, -float64(s.Decimals))
+	for _, end := range s.f.Ends {
+		e := s.f.Show(end)
+		if v == e || printed(v, s.Decimals) != printed(e, s.Decimals) || math.Abs(v-e) <= 1e-12*math.Max(1, math.Abs(e)) {
+			continue
+		}
+		if v > e {
+			return "<" + Hard + fixed(e+step, s.Decimals), true
+		}
+		return ">" + Hard + fixed(e-step, s.Decimals), true
+	}
+	return "", false
 }
 
 // power is the power of ten that keeps very small and very large values
@@ -218,6 +248,9 @@ func (s Shown) EstimateUnit() string {
 // At writes another value to the same decimals, without unit.
 func (s Shown) At(v float64) string {
 	v = s.f.Show(v)
+	if text, ok := s.besideEnd(v); ok {
+		return text
+	}
 	if s.power == 0 || v == 0 || math.IsInf(v, 0) || math.IsNaN(v) {
 		return fixed(v, s.Decimals)
 	}

@@ -61,6 +61,37 @@ func (b *binder) piece(p piece) {
 	b.place(p)
 }
 
+// spread puts pieces on pages. A last page that is nearly empty is saved where
+// less space between the blocks after page one does it.
+func spread(ps []piece, sh sheet) []leaf {
+	out := paginate(ps, sh)
+	for _, k := range []float64{0.88, 0.76, 0.64} {
+		if len(out) < 3 || out[len(out)-1].foot() > sh.top+0.3*sh.depth() {
+			return out
+		}
+		tight := append([]piece(nil), ps...)
+		after := false
+		for i := range tight {
+			if after = after || tight[i].fresh; after {
+				tight[i].before *= k
+			}
+		}
+		if less := paginate(tight, sh); len(less) < len(out) {
+			return less
+		}
+	}
+	return out
+}
+
+// foot is where the last piece of a page ends.
+func (l leaf) foot() float64 {
+	n := len(l.pieces)
+	if n == 0 {
+		return 0
+	}
+	return l.tops[n-1] + l.pieces[n-1].height
+}
+
 // paginate puts pieces on pages. Pieces kept together move to the next page
 // as one when they do not fit, unless no page would hold them.
 func paginate(ps []piece, sh sheet) []leaf {

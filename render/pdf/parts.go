@@ -156,7 +156,11 @@ func (s *setter) verdict(b page.Verdict, fr frame, parent *elem) []piece {
 	head := piece{height: 19, keep: true}
 	t := b.Tone
 	head.items = append(head.items, item{kind: shapeItem, x: fr.x, scale: 1, shape: func(d *drawer, x, y, k float64) { d.verdictMark(t, tone, x, y, k) }})
-	lines := wrap(at, in.w-40)
+	beside := b.Figure != nil && b.Figure.Drawing != nil && b.Figure.Drawing.Width <= 0.55*fr.w
+	if beside {
+		narrow.w = min(narrow.w, in.w-b.Figure.Drawing.Width-8)
+	}
+	lines := wrap(at, min(in.w-40, narrow.w+40))
 	for i, l := range lines {
 		head.put(s, l.cs, in.x, float64(i)*17+13)
 	}
@@ -175,7 +179,7 @@ func (s *setter) verdict(b page.Verdict, fr frame, parent *elem) []piece {
 	put(b.Claim, bodyStyle, 0)
 	put(b.Answer, textStyle{family{sansBold, sansBold, sansItalic}, 9.8, 14, ink(page.Black)}, 4)
 	put(b.Reading, bodyStyle, 3)
-	if b.Figure != nil {
+	if b.Figure != nil && !beside {
 		fig := s.figure(*b.Figure, fr, sect)
 		if len(fig) > 0 {
 			fig[0].before = 6
@@ -184,12 +188,35 @@ func (s *setter) verdict(b page.Verdict, fr frame, parent *elem) []piece {
 		out = append(out, fig...)
 	}
 	put(b.Region, smallStyle, 3)
+	if beside {
+		out = []piece{s.beside(out, *b.Figure, fr, sect)}
+	}
 	out = glued(out)
 	rule := piece{before: 10, height: 5.5, keep: true}
+	if beside {
+		rule.before = 6
+	}
 	rule.rule(fr.x, 0, fr.w, 0.5, ink(page.Slate))
 	out = append([]piece{rule}, out...)
 	out[len(out)-1].height += 4
 	return out
+}
+
+// beside stacks pieces into one, with a narrow figure right of them.
+func (s *setter) beside(ps []piece, f page.Figure, fr frame, parent *elem) piece {
+	var p piece
+	for _, q := range ps {
+		p.over(q, 0, p.height+q.before)
+	}
+	w := f.Drawing.Width
+	fig := s.figure(f, frame{fr.x + fr.w - w, w}, parent)
+	y := 12.0 // under the name of the hypothesis
+	for _, q := range fig {
+		q.height -= 6
+		p.over(q, 0, y)
+		y += q.height
+	}
+	return p
 }
 
 // signatures sets lines to sign.

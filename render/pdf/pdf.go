@@ -53,7 +53,7 @@ func build(doc *page.Document, opt options) ([]byte, error) {
 		s.open(extra)
 	}
 	sh := s.sheet
-	leaves := paginate(s.flow(), sh)
+	leaves := spread(s.flow(), sh)
 	s.where = "the running head or foot"
 	status := s.status()
 	matter := make([]piece, len(leaves))
