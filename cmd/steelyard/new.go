@@ -10,7 +10,7 @@ import (
 
 	"github.com/spf13/cobra"
 
-	"steelyard/cmd/internal/starter"
+	"steelyard/protocol"
 	"steelyard/protocol/record"
 )
 
@@ -28,25 +28,18 @@ beside each key. It never overwrites a file; - writes to standard output.`,
 			return []string{"toml"}, cobra.ShellCompDirectiveFilterFileExt
 		},
 		RunE: func(cmd *cobra.Command, args []string) error {
-			if claim == "" {
-				claim = starter.DefaultClaim(measure)
-			}
 			return a.writeNew(args[0], measure, claim)
 		},
 	}
-	cmd.Flags().StringVar(&measure, "measure", starter.DefaultMeasure, "what is compared, and how")
+	cmd.Flags().StringVar(&measure, "measure", "mean-difference", "what is compared, and how")
 	cmd.Flags().StringVar(&claim, "claim", "", "what the results should show (default: one that suits the measure)")
-	complete(cmd, "measure", starter.Measures())
-	complete(cmd, "claim", starter.Claims())
+	complete(cmd, "measure", listed(record.Measures, func(m *record.Measure) string { return m.Word }))
+	complete(cmd, "claim", listed(record.Claims, func(c *record.Claim) string { return c.Word }))
 	return cmd
 }
 
 func (a *app) writeNew(path, measure, claim string) error {
-	today, err := a.today()
-	if err != nil {
-		return err
-	}
-	text, err := starter.Record(measure, claim, record.DateOf(today))
+	text, err := protocol.Starter(measure, claim)
 	if err != nil {
 		return err
 	}
@@ -60,7 +53,7 @@ func (a *app) writeNew(path, measure, claim string) error {
 	if err != nil {
 		return worldError{err}
 	}
-	_, err = f.WriteString(text)
+	_, err = f.Write(text)
 	if err := errors.Join(err, f.Close()); err != nil {
 		os.Remove(path)
 		return worldError{err}
@@ -80,4 +73,13 @@ func (a *app) today() (time.Time, error) {
 		return time.Time{}, fmt.Errorf("SOURCE_DATE_EPOCH %q: not a whole number of seconds", epoch)
 	}
 	return time.Unix(seconds, 0).UTC(), nil
+}
+
+// listed lists the words of a table of the language.
+func listed[T any](list []T, word func(T) string) []string {
+	out := make([]string, len(list))
+	for i, x := range list {
+		out[i] = word(x)
+	}
+	return out
 }
