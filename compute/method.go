@@ -39,7 +39,11 @@ func (r *run) analyse(s spec, e entry, pooling bool) (*effect.Inference, *result
 	if pooling {
 		in.SystematicU = 0
 	}
-	k := madeKey{s.key(e), s.method, s.stated, s.a, in.SystematicU}
+	k := madeKey{inputKey: s.key(e), method: s.method, stated: s.stated, u: in.SystematicU}
+	switch s.measure.Word {
+	case "mean", "mean-difference", "paired-mean-difference", "ratio-of-means":
+		k.a = s.a // their notes speak of it
+	}
 	m, ok := r.made[k]
 	if !ok {
 		m.inf, m.problem = r.method(s, in, r.clusterMeans(e, s))
