@@ -265,7 +265,11 @@ func withDropped(out []result.GroupNumbers, e entry) []result.GroupNumbers {
 	}
 	for i := range out {
 		for _, d := range e.vec.Dropped {
-			if d.Group == out[i].Name {
+			switch {
+			case d.Group != out[i].Name:
+			case d.Planned:
+				out[i].Excluded += d.Count
+			default:
 				out[i].Missing += d.Count
 			}
 		}

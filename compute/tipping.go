@@ -30,6 +30,9 @@ func missing(e entry, o *record.Outcome) [2]float64 {
 		return m
 	}
 	for _, d := range e.vec.Dropped {
+		if d.Planned {
+			continue // excluded, not missing
+		}
 		switch i := groupIndex(o, d.Group); {
 		case i >= 0:
 			m[i] += float64(d.Count)

@@ -167,7 +167,8 @@ type GroupNumbers struct {
 	Name                                           string
 	N, Mean, SD, Median, Events, Exposure, R       Opt
 	Assessed, Randomised, Received, Lost, Analysed Opt // flow
-	Missing                                        int // rows dropped with this group known
+	Missing                                        int // rows dropped for want of a value, this group known
+	Excluded                                       int // rows dropped by a filter of the plan
 }
 
 // GroupTotal counts one group of one outcome over all its analysed entries.

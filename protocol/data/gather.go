@@ -275,10 +275,13 @@ func (c *column) inOrder() *Factor {
 // reasons words the counts of dropped rows: exclusions, the set's filters,
 // missing cells, incomplete pairs; within a reason first, second, unknown group.
 func (e *entry) reasons(s *rows) []Dropped {
-	type reason struct{ text, why string }
+	type reason struct {
+		text, why string
+		planned   bool
+	}
 	var list []reason
 	for _, f := range slices.Concat(e.exclude, s.keep) {
-		list = append(list, reason{f.reason, f.src.Why.V})
+		list = append(list, reason{f.reason, f.src.Why.V, true})
 	}
 	for _, u := range e.uses {
 		list = append(list, reason{text: roleWords[u.role] + " missing"})
@@ -301,7 +304,7 @@ func (e *entry) reasons(s *rows) []Dropped {
 			if counts[g] == 0 {
 				continue
 			}
-			d := Dropped{Reason: r.text, Why: r.why, Count: counts[g]}
+			d := Dropped{Reason: r.text, Why: r.why, Planned: r.planned, Count: counts[g]}
 			if g > 0 && len(e.groups) == 2 {
 				d.Group = e.groups[g-1]
 			}

@@ -96,14 +96,14 @@ func TestLoadSets(t *testing.T) {
 	if len(list) > 0 {
 		t.Fatal(words(list))
 	}
-	young := []Dropped{{Reason: "age below 18", Why: "Adults only.", Group: "new", Count: 1}, {Reason: "age below 18", Why: "Adults only.", Count: 1}}
+	young := []Dropped{{Reason: "age below 18", Why: "Adults only.", Planned: true, Group: "new", Count: 1}, {Reason: "age below 18", Why: "Adults only.", Planned: true, Count: 1}}
 	want := map[string]Vectors{
 		"full": {Group: []uint8{0, 1, 1, 1, 0}, Value: []float64{1, 2, 3, 4, 5}, Used: 5,
 			Dropped: append(young[:2:2], Dropped{Reason: "value missing", Group: "new", Count: 1})},
 		"as-planned": {Group: []uint8{0, 1}, Value: []float64{1, 4}, Used: 2,
-			Dropped: append(young[:2:2], Dropped{Reason: "not dose at least 80", Why: "Dose.", Group: "new", Count: 1},
-				Dropped{Reason: "not dose at least 80", Why: "Dose.", Group: "current", Count: 1},
-				Dropped{Reason: "not site one of a, b", Group: "current", Count: 1}, Dropped{Reason: "value missing", Group: "new", Count: 1})},
+			Dropped: append(young[:2:2], Dropped{Reason: "not dose at least 80", Why: "Dose.", Planned: true, Group: "new", Count: 1},
+				Dropped{Reason: "not dose at least 80", Why: "Dose.", Planned: true, Group: "current", Count: 1},
+				Dropped{Reason: "not site one of a, b", Planned: true, Group: "current", Count: 1}, Dropped{Reason: "value missing", Group: "new", Count: 1})},
 	}
 	for set, w := range want {
 		v := *tables[Key{0, set}]

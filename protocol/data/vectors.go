@@ -54,8 +54,11 @@ type Factor struct {
 type Dropped struct {
 	Reason string // "value missing", a filter in words, …
 	Why    string // the filter's own `why`
-	Group  string // "" where the row's group is not known
-	Count  int
+	// Planned says that a filter of the plan dropped them: they are excluded,
+	// not missing.
+	Planned bool
+	Group   string // "" where the row's group is not known
+	Count   int
 }
 
 // Tables holds the vectors of every result entry that names a data file.
