@@ -205,7 +205,7 @@ func spreadText(o *result.Outcome, v, sd result.Opt) string {
 	if !sd.OK || sd.V <= 0 {
 		return number.Significant(v.V, 4)
 	}
-	return f.Value(v.V, sd.V/10)
+	return f.Stated(v.V, sd.V/10, sd.V)
 }
 
 // plainOpt writes a stated number.
@@ -288,23 +288,32 @@ func resultName(res *result.Result, f *result.File) string {
 	return strings.Trim(f.Study+", "+outcomeOf(res, f.Outcome).Label, ", ")
 }
 
-// droppedText counts rows by reason and group.
+// droppedText counts rows by reason, each reason with its groups.
 func droppedText(d []result.Dropped) string {
 	if len(d) == 0 {
 		return "none"
 	}
-	var s string
-	for i, x := range d {
-		if i > 0 {
-			s += "; "
+	type reason struct{ reason, why string }
+	var order []reason
+	counts := map[reason][]string{}
+	for _, x := range d {
+		k := reason{x.Reason, x.Why}
+		if counts[k] == nil {
+			order = append(order, k)
 		}
-		s += number.Int(x.Count) + ": " + x.Reason
+		n := number.Int(x.Count)
 		if x.Group != "" {
-			s += " (" + x.Group + ")"
+			n += " in " + x.Group
 		}
-		if x.Why != "" {
-			s += ", " + x.Why
-		}
+		counts[k] = append(counts[k], n)
 	}
-	return s
+	var parts []string
+	for _, k := range order {
+		s := k.reason + ": " + strings.Join(counts[k], ", ")
+		if k.why != "" {
+			s += " (" + strings.TrimSuffix(k.why, ".") + ")"
+		}
+		parts = append(parts, s)
+	}
+	return strings.Join(parts, "; ")
 }

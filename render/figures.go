@@ -235,7 +235,11 @@ func (c *composer) beamFull(h *result.Hypothesis) *page.Figure {
 		return nil // page one shows it
 	}
 	b.Height = 17
-	return figure(h.Name+": the interval on the beam. The band is the region too small to matter, the notch the null.", c.beamAlt(v), b.Draw(), b.Plain(plainColumns))
+	caption := h.Name + ": the interval on the beam. The notch is the null."
+	if b.Band.OK {
+		caption = h.Name + ": the interval on the beam. The band is the region too small to matter, the notch the null."
+	}
+	return figure(caption, c.beamAlt(v), b.Draw(), b.Plain(plainColumns))
 }
 
 // sharedBeams draws several claims of one outcome under one beam.
@@ -310,7 +314,11 @@ func (c *composer) marginFigure(v voice, s *result.Sensitivity) *page.Figure {
 		d.Axis.Title += ", " + v.f.Unit
 	}
 	d.Alpha, d.Smallest = v.h.Alpha, point(v.f, s.Smallest)
-	alt := "The p-value of the claim falls as its margin widens."
+	way := "falls"
+	if d.P[len(d.P)-1] > d.P[0] {
+		way = "rises"
+	}
+	alt := "The p-value of the claim " + way + " from " + number.P(result.P{P: d.P[0], OK: true}) + " to " + number.P(result.P{P: d.P[len(d.P)-1], OK: true}) + " as its margin widens."
 	if s.Smallest.OK {
 		alt += " The verdict steps at a margin of " + number.Significant(v.f.Show(s.Smallest.V), 3) + unitTail(v) + "."
 	}

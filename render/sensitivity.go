@@ -1,6 +1,8 @@
 package render
 
 import (
+	"math"
+
 	"steelyard/compute/result"
 	"steelyard/render/number"
 )
@@ -13,6 +15,10 @@ func (c *composer) sensitivityOf(v voice) {
 			continue
 		}
 		c.heading(3, "Sensitivity analysis "+s.Name+": "+kindText(s.Kind), "")
+		if len(s.Judged) == 0 && len(s.Curve) < 2 && s.Tipping == nil {
+			c.para(nothingToShow(s.Kind))
+			continue
+		}
 		c.marginSensitivity(v, s)
 		if len(s.Judged) > 0 {
 			t := v.judgedTable("Verdict under each", "Under")
@@ -43,9 +49,22 @@ func kindText(kind string) string {
 	case "tipping-point":
 		return "what the missing would have to show"
 	case "keep-excluded":
-		return "excluded rows kept"
+		return "the results left out, kept"
 	}
 	return kind
+}
+
+// nothingToShow says why a planned sensitivity analysis is empty.
+func nothingToShow(kind string) string {
+	switch kind {
+	case "leave-one-out":
+		return "There are too few studies to leave one out."
+	case "tipping-point":
+		return "Nothing could be computed: no number missing is known for this hypothesis."
+	case "keep-excluded":
+		return "No result of this hypothesis was left out, so there is nothing to keep."
+	}
+	return "Nothing could be computed for this hypothesis; the diagnostics say why."
 }
 
 // marginSensitivity says at which margin the verdict steps.
@@ -62,19 +81,40 @@ func (c *composer) tipping(v voice, s *result.Sensitivity) {
 	if t == nil {
 		return
 	}
-	missing := number.Count(t.Missing[0])
+	names := [2]string{"all", ""}
 	if v.grouped() {
-		missing = number.Count(t.Missing[0]) + " in " + v.a() + " and " + number.Count(t.Missing[1]) + " in " + v.b()
+		names = v.o.Groups
 	}
-	text := "Missing: " + missing + ". "
+	tab := newTable("What the missing would have to show for the verdict to become "+string(t.Verdict), "Group", ">Missing", "Events among the missing")
 	switch {
 	case t.Shift.OK:
-		text += "The verdict would become " + string(t.Verdict) + " if those missing differed from those seen by " + number.Significant(t.Shift.V, 3) + unitTail(v) + " or more."
-	case t.Events[0].OK && t.Events[1].OK:
-		text += "The split nearest to what was seen at which the verdict would become " + string(t.Verdict) + ": " +
-			number.Count(t.Events[0].V) + " events among the first and " + number.Count(t.Events[1].V) + " among the second group's missing."
+		way := "up"
+		if t.Shift.V < 0 {
+			way = "down"
+		}
+		by := number.Significant(math.Abs(t.Shift.V), 3) + unitTail(v) + " or more"
+		text := "The verdict would become " + string(t.Verdict) + " if those missing differed from those seen by " + by + ", in the sense that moves the estimate " + way
+		if v.grouped() {
+			text += ", in both groups"
+		}
+		c.para(text + ". Missing: " + missingWords(v, t) + ".")
+	case t.Events[0].OK:
+		for i, n := range names {
+			if n != "" && t.Events[i].OK {
+				tab.row(n, number.Count(t.Missing[i]), number.Count(t.Events[i].V))
+			}
+		}
+		tab.note("The split nearest to what was seen; whether it is plausible is for judgement.")
+		tab.to(c)
 	default:
-		text += "No split of those missing changes the verdict."
+		c.para("Missing: " + missingWords(v, t) + ". No split of those missing changes the verdict.")
 	}
-	c.para(text)
+}
+
+// missingWords are the counts of those missing.
+func missingWords(v voice, t *result.Tipping) string {
+	if v.grouped() {
+		return number.Count(t.Missing[0]) + " in " + v.a() + " and " + number.Count(t.Missing[1]) + " in " + v.b()
+	}
+	return number.Count(t.Missing[0])
 }

@@ -65,9 +65,9 @@ func reading(r result.Reading, better string) (name, words string) {
 func plainReading(good, bad int, up, down string) (name, words string) {
 	switch {
 	case good > 0 && bad == 0:
-		return up, up + "; no smallest effect that matters was stated, so whether by enough to matter is left open"
+		return up, "the direction is settled; no smallest effect that matters was stated, so whether by enough to matter is left open"
 	case bad > 0 && good == 0:
-		return down, down + "; no smallest effect that matters was stated, so whether by enough to matter is left open"
+		return down, "the direction is settled; no smallest effect that matters was stated, so whether by enough to matter is left open"
 	case good == 0 && bad == 0:
 		return "undecided", "the direction is not settled; no smallest effect that matters was stated"
 	}

@@ -123,6 +123,14 @@ func (f Format) Value(v, about float64) string {
 	return fixed(f.Show(v), max(f.Digits, decimals(math.Abs(f.Show(about)))))
 }
 
+// Stated is Value for a number of which a record gives the digits: never with
+// more decimals than it or its companion was given with.
+func (f Format) Stated(v, about, companion float64) string {
+	d := max(f.Digits, decimals(math.Abs(f.Show(about))))
+	given := max(pointDecimals(Plain(f.Show(v))), pointDecimals(Plain(f.Show(companion))))
+	return fixed(f.Show(v), max(f.Digits, min(d, given)))
+}
+
 // Plain writes a number as it was stated: shortest, at most 9 significant
 // digits, else 4; grouped, with a true minus sign. Infinities are words.
 func Plain(v float64) string {
