@@ -46,9 +46,12 @@ type names struct {
 }
 
 // vague are words of names that tell nothing of what is named.
-var vague = set(`share rate score time level number area mean value percent percentage count ratio total index average group groups arm
+var vague = stemmed(`share rate score time level number area mean value percent percentage count ratio total index average group groups arm
 arms treatment per the and of in with for without no any use usual care plan at to from by on or a an one two three line result size amount degree change
 effect difference study trial data test month week day year hour`)
+
+// everyday are words that tell groups apart but name no outcome or hypothesis.
+var everyday = stemmed("small large main primary second secondary first low lower high higher short long big better worse equal same key final early late overall effect")
 
 func newNames(terms []Term) *names {
 	n := &names{terms: terms, one: map[string][]int{}, heads: map[string][]int{}}
@@ -90,7 +93,7 @@ func (n *names) distinctive(i int, owners map[string]map[int]bool, vagueToo bool
 	seen := map[string]bool{}
 	for _, way := range n.whole[i] {
 		for _, st := range way {
-			if seen[st] || len(st) < 3 || len(owners[st]) > 1 || vague[st] && !vagueToo || englishSmall[st] && st != "new" {
+			if seen[st] || len(st) < 3 || len(owners[st]) > 1 || n.terms[i].Kind != Group && everyday[st] || vague[st] && !vagueToo || englishSmall[st] && st != "new" {
 				continue
 			}
 			seen[st] = true
@@ -189,6 +192,14 @@ func stem(w string) string {
 		return w[:6]
 	}
 	return w
+}
+
+func stemmed(words string) map[string]bool {
+	m := map[string]bool{}
+	for w := range set(words) {
+		m[stem(w)] = true
+	}
+	return m
 }
 
 // resolve says which names a phrase speaks of, and which group it calls so.
