@@ -82,6 +82,9 @@ func (k *checker) check(text string) (out []overclaim) {
 	done := map[seen]bool{}
 	k.randomised = k.randomised || saysRandom(text)
 	for _, p := range wording.Find(text, k.terms()...) {
+		if len(p.Outcomes) == 0 && ofSpeed(text[p.Start:p.End]) && !k.aboutTime() {
+			continue // "the method is faster" is no claim on an outcome that is not about time
+		}
 		f, bad := k.judge(p)
 		if !bad || done[seen{f.code, p.Sentence}] {
 			continue
@@ -90,6 +93,20 @@ func (k *checker) check(text string) (out []overclaim) {
 		out = append(out, f)
 	}
 	return out
+}
+
+// ofSpeed reports whether a phrase speaks of speed or effort.
+func ofSpeed(phrase string) bool {
+	first, _, _ := strings.Cut(strings.ToLower(phrase), " ")
+	return slices.Contains([]string{"faster", "quicker", "sooner", "slower", "speeds"}, first)
+}
+
+// aboutTime reports whether an outcome speaks of time or speed.
+func (k *checker) aboutTime() bool {
+	return slices.ContainsFunc(k.res.Outcomes, func(o result.Outcome) bool {
+		label := strings.ToLower(o.Label)
+		return slices.ContainsFunc([]string{"time", "speed", "duration", "delay", "rate", "days", "hours"}, func(w string) bool { return strings.Contains(label, w) })
+	})
 }
 
 // saysRandom reports whether the text itself says that groups were formed at random.

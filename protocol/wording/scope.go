@@ -201,6 +201,10 @@ func (s *sentence) aside(a, b int) bool {
 	if s.ofTime(a, b) {
 		return true
 	}
+	// "Changing it less often did not …": how, not how much
+	if oneOf(s.tokens[a].text, "less", "more") && b < len(s.tokens) && !s.tokens[b].brk && oneOf(s.tokens[b].text, "did", "does", "do", "will", "would", "has", "have") {
+		return true
+	}
 	if a > 0 && oneOf(s.tokens[a-1].text, "cost", "costs", "priced") {
 		return true
 	}
@@ -251,8 +255,8 @@ func (s *sentence) ofTime(a, b int) bool {
 			return false
 		}
 	}
-	for i := max(0, a-2); i < min(len(s.tokens), b+3); i++ {
-		if oneOf(s.tokens[i].text, "weeks", "days", "months", "years", "euros", "money", "costs") {
+	for i := max(0, a-2); i < min(len(s.tokens), b+4); i++ {
+		if oneOf(s.tokens[i].text, "visits", "hours", "minutes", "beds", "staff", "weeks", "days", "months", "years", "euros", "money", "costs") {
 			return true
 		}
 	}

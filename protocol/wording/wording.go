@@ -187,6 +187,9 @@ func (s *sentence) matches() (out []match) {
 // meant ("not worse by an amount that matters"), or where it points ("a trend
 // towards fewer relapses").
 func (s *sentence) absorbed(m match, before *Phrase, end int) bool {
+	if before != nil && before.Class == Decision && m.entry.class == Generality {
+		return true // "we will offer it to all patients"
+	}
 	if before == nil || m.from-end > 6 {
 		return false
 	}
