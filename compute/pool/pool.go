@@ -49,7 +49,7 @@ type Pooled struct {
 	Mu, SE  float64   // SE as the interval and the tests use it
 	DF      float64   // +Inf: normal
 	Tau2    float64   // 0 under the common-effect model
-	Weights []float64 // shares, summing to 1
+	Weights []float64 // shares, summing to 1; nil from LeaveOneOut and Cumulative
 
 	// Hartung–Knapp: Ratio is q; Floored says that the guard raised it to 1,
 	// and Unfloored is the standard error it replaced.
@@ -59,14 +59,17 @@ type Pooled struct {
 
 // Fit pools k >= 1 studies.
 func Fit(studies []Study, o Options) Pooled {
-	if !o.Random {
-		return o.at(studies, 0)
+	p := refit(studies, o, math.NaN())
+	_, sw, _ := moments(studies, p.Tau2)
+	p.Weights = make([]float64, len(studies))
+	for i, s := range studies {
+		p.Weights[i] = 1 / (s.V + p.Tau2) / sw
 	}
-	return o.at(studies, o.Between.tau2(studies, math.NaN()))
+	return p
 }
 
-// refit is Fit started from a known variance between studies, for fits of
-// nearly the same studies.
+// refit is Fit without the weights, started from a known variance between
+// studies, for fits of nearly the same studies.
 func refit(studies []Study, o Options, near float64) Pooled {
 	if !o.Random {
 		return o.at(studies, 0)
@@ -77,10 +80,7 @@ func refit(studies []Study, o Options, near float64) Pooled {
 // at computes the mean and its error for a given variance between studies.
 func (o Options) at(studies []Study, tau2 float64) Pooled {
 	mu, sw, q := moments(studies, tau2)
-	p := Pooled{Mu: mu, SE: math.Sqrt(1 / sw), DF: math.Inf(1), Tau2: tau2, Weights: make([]float64, len(studies))}
-	for i, s := range studies {
-		p.Weights[i] = 1 / (s.V + tau2) / sw
-	}
+	p := Pooled{Mu: mu, SE: math.Sqrt(1 / sw), DF: math.Inf(1), Tau2: tau2}
 	k := len(studies)
 	if !o.Random || o.Interval != HartungKnapp || k < 2 {
 		return p
