@@ -112,7 +112,7 @@ func (c *composer) gauges(h *result.Hypothesis) *page.Figure {
 	groups := outcomeOf(c.res, h.Outcome).Groups
 	for _, a := range h.Assumptions {
 		for _, s := range a.Shows {
-			g := chart.Gauge{V: s.Value, Text: number.Short(s.Value, 3)}
+			g := chart.Gauge{V: s.Value, Text: number.Statistic(result.Some(s.Value))}
 			switch s.What {
 			case "skewness":
 				g.Name, g.Reach, g.Below, g.Above = "Skewness", 2, "tail to the left", "tail to the right"
@@ -164,6 +164,9 @@ func shownFor(shows []result.Shown, what, group string) string {
 		if s.What == what && s.Group == group {
 			if s.What == "p" || strings.HasSuffix(s.What, " p") {
 				return number.P(result.P{P: s.Value, OK: true})
+			}
+			if what == "skewness" || what == "excess kurtosis" || what == "spread ratio" {
+				return number.Statistic(result.Some(s.Value))
 			}
 			return number.Short(s.Value, 3)
 		}

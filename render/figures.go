@@ -239,7 +239,11 @@ func (c *composer) beamFull(h *result.Hypothesis) *page.Figure {
 	if b.Band.OK {
 		caption = h.Name + ": the interval on the beam. The band is the region too small to matter, the notch the null."
 	}
-	return figure(caption, c.beamAlt(v), b.Draw(), b.Plain(plainColumns))
+	alt := c.beamAlt(v)
+	if len(b.Rows) > 1 {
+		alt += " In full: " + rowsText(b.Rows) + "."
+	}
+	return figure(caption, alt, b.Draw(), b.Plain(plainColumns))
 }
 
 // sharedBeams draws several claims of one outcome under one beam.
@@ -267,7 +271,7 @@ func (c *composer) sharedBeams() {
 			continue
 		}
 		c.heading(2, "Claims on "+o.Label+", under one beam", "")
-		alt := "Intervals of " + join(names) + " on one axis of the " + effectName(o) + "; their numbers are in the sections above."
+		alt := "Intervals of " + join(names) + " on one axis of the " + effectName(o) + ": " + rowsText(b.Rows) + "."
 		c.add2(figure("Claims on "+o.Label+", each with the interval of its own level.", alt, b.Draw(), b.Plain(plainColumns)))
 	}
 }
@@ -318,7 +322,7 @@ func (c *composer) marginFigure(v voice, s *result.Sensitivity) *page.Figure {
 	if d.P[len(d.P)-1] > d.P[0] {
 		way = "rises"
 	}
-	alt := "The p-value of the claim " + way + " from " + number.P(result.P{P: d.P[0], OK: true}) + " to " + number.P(result.P{P: d.P[len(d.P)-1], OK: true}) + " as its margin widens."
+	alt := "The p-value of the claim " + way + " as its margin widens."
 	if s.Smallest.OK {
 		alt += " The verdict steps at a margin of " + number.Significant(v.f.Show(s.Smallest.V), 3) + unitTail(v) + "."
 	}

@@ -2,6 +2,7 @@ package render
 
 import (
 	"math"
+	"strings"
 	"time"
 
 	"steelyard/compute/result"
@@ -59,8 +60,27 @@ func (c *composer) studiesFigure(group []*result.Pooled) *page.Figure {
 		return nil
 	}
 	s := pooledShown(d, o)
-	alt := "Estimates and intervals of " + join(d.Studies) + " with the pooled results below; the model that decides gives " + s.EstimateUnit() + " (" + s.Range() + ")."
+	alt := "Estimates and intervals, study by study: " + rowsText(b.Rows) + ". The model that decides gives " + s.EstimateUnit() + ", " + number.Level(d.Level) + " interval " + s.Range() + "."
 	return figure("Study by study. Discs are sized by weight; the heavy bar is the model that decides, dashed its interval for a new setting like these. Arrows go on beyond the axis.", alt, b.Draw(), b.Plain(plainColumns))
+}
+
+// mostSaid is how many rows of a figure its alternative text reads out; of more
+// it says the first and the last few, and a table has them all.
+const mostSaid = 12
+
+// rowsText reads the rows of a figure out.
+func rowsText(rows []chart.Row) string {
+	var parts []string
+	for i, r := range rows {
+		if len(rows) > mostSaid && i >= mostSaid/2 && i < len(rows)-mostSaid/2 {
+			if i == mostSaid/2 {
+				parts = append(parts, number.Int(len(rows)-mostSaid)+" more")
+			}
+			continue
+		}
+		parts = append(parts, r.Name+" "+r.Right)
+	}
+	return strings.Join(parts, "; ")
 }
 
 // greyStudies are entries of the outcome that are shown and not pooled.
@@ -103,7 +123,7 @@ func (c *composer) cumulativeFigure(p *result.Pooled) *page.Figure {
 	}
 	b.Rows[len(b.Rows)-1].Strong = true
 	first, last := p.Cumulative[0], p.Cumulative[len(p.Cumulative)-1]
-	alt := "Pooled evidence as studies arrived, from " + first.Study + " alone to all up to " + last.Study + "."
+	alt := "Pooled evidence as studies arrived, from " + first.Study + " alone to all up to " + last.Study + ": " + rowsText(b.Rows) + "."
 	return figure("Evidence over time: pooled over the studies up to each date.", alt, b.Draw(), b.Plain(plainColumns))
 }
 
@@ -172,7 +192,7 @@ func (c *composer) timelineFigure() *page.Figure {
 	if len(d.Events) < 2 {
 		return nil
 	}
-	return figure("Timeline. Open marks: the order within the day cannot be proved.", "Timeline of "+joinKinds(d.Kinds)+"; the table lists every event.", d.Draw(), nil)
+	return figure("Timeline. Open marks: the order within the day cannot be proved.", "Timeline of "+number.Int(len(d.Events))+" events ("+joinKinds(d.Kinds)+"), each in the table below.", d.Draw(), nil)
 }
 
 // eventTime reads a date or an instant.

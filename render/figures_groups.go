@@ -1,6 +1,8 @@
 package render
 
 import (
+	"strings"
+
 	"steelyard/compute/result"
 	"steelyard/render/chart"
 	"steelyard/render/number"
@@ -15,7 +17,11 @@ func (c *composer) groupFigures() {
 	for i := range c.res.Outcomes {
 		o := &c.res.Outcomes[i]
 		if d, what := c.groupRows(o); len(d.Rows) > 1 && len(d.Rows) <= mostGroups && what != "" {
-			alt := what + " of each group of " + o.Label + "; the table above has the numbers."
+			var said []string
+			for _, r := range d.Rows {
+				said = append(said, r.Name+" "+r.Text)
+			}
+			alt := o.Label + ", " + what + " by group: " + strings.Join(said, "; ") + "."
 			c.add2(figure(o.Label+": "+what+" by group.", alt, d.Draw(), nil))
 		}
 	}

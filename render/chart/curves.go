@@ -29,26 +29,13 @@ func (d Curve) Draw() *page.Drawing {
 	if d.Level > 0 && d.Level < 1 {
 		y := f.y1 - d.Level*(f.y1-f.y0)
 		c.line(f.x0, y, f.x1, y, dashed(page.Black, 0.8))
-		if d.left() {
-			c.label(f.x1, y-3, d.LevelText, smallSize, page.Black, page.End, false)
-		} else {
-			c.label(f.x0+4, y-3, d.LevelText, smallSize, page.Black, page.Start, false)
-		}
+		w := textWidth(d.LevelText, smallSize) // above the plot, where no curve runs
+		c.line(f.x1-w-28, f.y0-6.5, f.x1-w-6, f.y0-6.5, dashed(page.Black, 0.8))
+		c.label(f.x1, f.y0-4, d.LevelText, smallSize, page.Black, page.End, false)
 	}
 	c.steps(f, d.Axis, up, d.X, d.P, stroke(page.Accent, 1.5))
 	c.axisTitle(f, d.Axis, f.y1+24)
 	return c.drawing()
-}
-
-// left reports whether the curve peaks in the left half.
-func (d Curve) left() bool {
-	at, top := 0.0, -1.0
-	for i := range d.P {
-		if i < len(d.X) && d.P[i] > top {
-			at, top = d.X[i], d.P[i]
-		}
-	}
-	return d.Axis.At(at) < 0.5
 }
 
 // ground draws band, null and marks.

@@ -28,13 +28,13 @@ func (b Beam) Plain(columns int) []string {
 			beam[i] = '='
 		}
 	}
-	for _, m := range b.Marks {
+	if b.Null.OK && b.Axis.Inside(b.Null.V) {
+		beam[at(b.Null.V)] = 'v'
+	}
+	for _, m := range b.Marks { // where a limit stands on the null, the limit is what the claim is about
 		if b.Axis.Inside(m.V) {
 			beam[at(m.V)] = '^'
 		}
-	}
-	if b.Null.OK && b.Axis.Inside(b.Null.V) {
-		beam[at(b.Null.V)] = 'v'
 	}
 	out = append(out, strings.Repeat(" ", lead)+string(beam))
 	for _, r := range b.Rows {

@@ -50,6 +50,9 @@ func (f Format) Interval(est, low, high result.Opt, points ...float64) Shown {
 		d = f.apart(d, scale, s.hasHigh, high.V, c, spread)
 	}
 	most := d + endDecimals
+	if f.Ratio {
+		most += 2 // small ratios are read in their first digit
+	}
 	for _, c := range f.Ends {
 		d = max(d, min(most, f.apart(d, scale, s.hasLow, low.V, c, spread)))
 		d = max(d, min(most, f.apart(d, scale, s.hasHigh, high.V, c, spread)))

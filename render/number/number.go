@@ -76,6 +76,9 @@ func Of(o *result.Outcome) Format {
 // perUnit writes an exposure into a unit: "falls per bed-day" and 1000 become
 // "falls per 1000 bed-day".
 func perUnit(unit string, per float64) string {
+	if per == 1 { // of one unit: nothing to add
+		return unit
+	}
 	n := Plain(per)
 	if strings.HasPrefix(unit, "per ") {
 		return "per " + n + " " + strings.TrimPrefix(unit, "per ")

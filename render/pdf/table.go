@@ -55,7 +55,7 @@ func (s *setter) table(b page.Table, fr frame, parent *elem) []piece {
 		rows[i] = s.measureRow(r, cols, tops[i])
 	}
 	out = append(out, s.rows(b, fr, cols, heads, rows, thead, tops)...)
-	if height(out) < 0.34*s.sheet.depth() {
+	if height(out) < 0.22*s.sheet.depth() {
 		out = glued(out)
 		out[len(out)-1].keep = len(b.Notes) > 0
 	}
