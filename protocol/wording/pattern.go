@@ -16,7 +16,7 @@ import (
 //
 // No pattern runs over the beginning of a clause.
 type pattern struct {
-	items []item
+	items []*item
 }
 
 type itemKind uint8
@@ -30,7 +30,8 @@ const (
 
 type item struct {
 	kind     itemKind
-	exact    map[string]bool
+	words    []string
+	sets     []map[string]bool
 	stems    []string
 	term     termSet
 	number   bool
@@ -39,60 +40,97 @@ type item struct {
 	gap      int
 }
 
-// parse reads one pattern. A fault of the table is a fault of the program.
-func parse(text string) pattern {
-	var p pattern
-	for _, f := range strings.Fields(text) {
-		switch {
-		case f == "$":
-			p.items = append(p.items, item{kind: endItem})
-			continue
-		case f[0] == '_':
-			p.items = append(p.items, item{kind: gapItem, gap: int(f[1] - '0')})
-			continue
-		}
-		it := item{exact: map[string]bool{}}
-		if f[0] == '!' {
-			it.kind, f = notItem, f[1:]
-		}
-		f, it.optional = strings.CutSuffix(f, "?")
-		it.add(f)
-		p.items = append(p.items, it)
-	}
-	return p
+// A parser reads patterns. Items written alike, and sets of the same name, are
+// read once and shared; nothing writes to them afterwards.
+type parser struct {
+	items map[string]*item
+	sets  map[string]*item
 }
 
-func (it *item) add(alternatives string) {
-	for _, w := range strings.Split(alternatives, "|") {
-		switch {
-		case w == "#":
-			it.number = true
-		case w == "%grp":
-			it.term |= groupWord
-		case w == "%out":
-			it.term |= outcomeWord
-		case w == "%hyp":
-			it.term |= hypothesisWord
-			it.exact["hypothesis"], it.exact["claim"] = true, true
-		case len(w) > 1 && w[0] == '%':
-			words, ok := vocabulary[w[1:]]
-			if !ok {
-				panic("wording: no set " + w)
-			}
-			it.add(strings.Join(strings.Fields(words), "|"))
-			it.notLabel = it.notLabel || w == "%eff"
-		case strings.HasSuffix(w, "~"):
-			it.stems = append(it.stems, w[:len(w)-1])
-		default:
-			it.exact[w] = true
+// parse reads one pattern. A fault of the table is a fault of the program.
+func (p *parser) parse(text string) pattern {
+	items := make([]*item, 0, strings.Count(text, " ")+1)
+	for f := range strings.FieldsSeq(text) {
+		it, ok := p.items[f]
+		if !ok {
+			it = p.item(f)
+			p.items[f] = it
 		}
+		items = append(items, it)
 	}
+	return pattern{items: items}
+}
+
+func (p *parser) item(f string) *item {
+	it := new(item)
+	switch {
+	case f == "$":
+		it.kind = endItem
+		return it
+	case f[0] == '_':
+		it.kind, it.gap = gapItem, int(f[1]-'0')
+		return it
+	case f[0] == '!':
+		it.kind, f = notItem, f[1:]
+	}
+	f, it.optional = strings.CutSuffix(f, "?")
+	for w := range strings.SplitSeq(f, "|") {
+		p.add(it, w)
+	}
+	return it
+}
+
+// add adds one alternative to an item.
+func (p *parser) add(it *item, w string) {
+	switch {
+	case w == "#":
+		it.number = true
+	case w == "%grp":
+		it.term |= groupWord
+	case w == "%out":
+		it.term |= outcomeWord
+	case w == "%hyp":
+		it.term |= hypothesisWord
+		it.words = append(it.words, "hypothesis", "claim")
+	case len(w) > 1 && w[0] == '%':
+		set := p.set(w[1:])
+		it.sets = append(it.sets, set.sets...)
+		it.stems = append(it.stems, set.stems...)
+		it.number, it.term = it.number || set.number, it.term|set.term
+		it.notLabel = it.notLabel || set.notLabel || w == "%eff"
+	case strings.HasSuffix(w, "~"):
+		it.stems = append(it.stems, w[:len(w)-1])
+	default:
+		it.words = append(it.words, w)
+	}
+}
+
+// set reads a set of the vocabulary; what is in it word by word becomes one map.
+func (p *parser) set(name string) *item {
+	if it, ok := p.sets[name]; ok {
+		return it
+	}
+	words, ok := vocabulary[name]
+	if !ok {
+		panic("wording: no set %" + name)
+	}
+	it := new(item)
+	for w := range strings.FieldsSeq(words) {
+		p.add(it, w)
+	}
+	exact := make(map[string]bool, len(it.words))
+	for _, w := range it.words {
+		exact[w] = true
+	}
+	it.words, it.sets = nil, append(it.sets, exact)
+	p.sets[name] = it
+	return it
 }
 
 // takes reports whether the word at i fits.
 func (it *item) takes(s *sentence, i int) bool {
 	w := s.tokens[i].text
-	if it.exact[w] {
+	if it.holds(w) {
 		return !it.notLabel || s.kinds[i]&insideName == 0
 	}
 	for _, stem := range it.stems {
@@ -101,6 +139,21 @@ func (it *item) takes(s *sentence, i int) bool {
 		}
 	}
 	return it.number && isNumber(w) || it.term&s.kinds[i] != 0
+}
+
+// holds reports whether a word is one of those that are given in full.
+func (it *item) holds(w string) bool {
+	for _, word := range it.words {
+		if word == w {
+			return true
+		}
+	}
+	for _, set := range it.sets {
+		if set[w] {
+			return true
+		}
+	}
+	return false
 }
 
 // isNumber reports whether a word is a number in digits or a small one in letters.
@@ -115,7 +168,7 @@ func (p *pattern) match(s *sentence, start, i, k int) int {
 	if k == len(p.items) {
 		return i
 	}
-	it := &p.items[k]
+	it := p.items[k]
 	inside := i < len(s.tokens) && (i == start || !s.tokens[i].brk)
 	switch it.kind {
 	case endItem:
@@ -161,12 +214,22 @@ type index struct {
 func newIndex(patterns []pattern) *index {
 	x := &index{exact: map[string][]int{}, stems: map[string][]int{}}
 	for n := range patterns {
-		first := &patterns[n].items[0]
+		first := patterns[n].items[0]
 		if first.kind != wordItem || first.optional {
 			panic("wording: a pattern begins with a word")
 		}
-		for w := range first.exact {
-			x.exact[w] = append(x.exact[w], n)
+		add := func(w string) {
+			if list := x.exact[w]; len(list) == 0 || list[len(list)-1] != n {
+				x.exact[w] = append(list, n)
+			}
+		}
+		for _, w := range first.words {
+			add(w)
+		}
+		for _, set := range first.sets {
+			for w := range set {
+				add(w)
+			}
 		}
 		seen := map[string]bool{}
 		for _, s := range first.stems {

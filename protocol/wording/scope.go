@@ -13,10 +13,11 @@ const farthest = 40
 
 // triggers finds the triggers of a sentence.
 func (s *sentence) triggers() (out []trigger) {
+	table := triggerTable()
 	for i := range s.tokens {
-		triggerIndex.each(s.tokens[i].text, func(n int) {
-			if end := triggerPatterns[n].at(s, i); end > i {
-				t := trigger{force: triggerOwner[n].force, scope: triggerOwner[n].scope, from: i, to: end}
+		table.index.each(s.tokens[i].text, func(n int) {
+			if end := table.patterns[n].at(s, i); end > i {
+				t := trigger{force: table.owners[n].force, scope: table.owners[n].scope, from: i, to: end}
 				t.first, t.last = s.clause(i, min(end, len(s.tokens)))
 				out = append(out, t)
 			}

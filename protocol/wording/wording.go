@@ -10,6 +10,8 @@
 //	}
 package wording
 
+import "sync"
+
 // Class is what a phrase claims.
 type Class string
 
@@ -163,11 +165,12 @@ type match struct {
 // matches finds the phrases of a sentence from left to right, of those that
 // begin together the longest.
 func (s *sentence) matches() (out []match) {
+	table := phraseTable()
 	for i := 0; i < len(s.tokens); {
 		best := match{to: i}
-		phraseIndex.each(s.tokens[i].text, func(n int) {
-			if end := phrasePatterns[n].at(s, i); end > best.to {
-				best = match{phraseOwner[n], i, end}
+		table.index.each(s.tokens[i].text, func(n int) {
+			if end := table.patterns[n].at(s, i); end > best.to {
+				best = match{table.owners[n], i, end}
 			}
 		})
 		if best.entry != nil && (s.names(i, best.to) || s.aside(i, best.to)) {
@@ -273,33 +276,34 @@ func (p *Phrase) deny() {
 	}
 }
 
-// The tables, ready to be searched. Nothing writes to them.
-var (
-	phrasePatterns, phraseOwner = compilePhrases()
-	phraseIndex                 = newIndex(phrasePatterns)
+// A table is the patterns of a list of entries, ready to be searched, each
+// with the entry that it belongs to. Nothing writes to one once it is built.
+type table[E any] struct {
+	patterns []pattern
+	owners   []*E
+	index    *index
+}
 
-	triggerPatterns, triggerOwner = compileTriggers()
-	triggerIndex                  = newIndex(triggerPatterns)
+// Tables are built when the first conclusion is read: most runs need none.
+var (
+	phraseTable = sync.OnceValue(func() *table[entry] {
+		return newTable(func(e *entry) []string { return e.patterns }, entries, moreEntries)
+	})
+	triggerTable = sync.OnceValue(func() *table[triggerEntry] {
+		return newTable(func(e *triggerEntry) []string { return e.patterns }, triggerEntries)
+	})
 )
 
-func compilePhrases() (patterns []pattern, owners []*entry) {
-	for _, table := range [][]entry{entries, moreEntries} {
-		for i := range table {
-			for _, text := range table[i].patterns {
-				patterns = append(patterns, parse(text))
-				owners = append(owners, &table[i])
+func newTable[E any](texts func(*E) []string, lists ...[]E) *table[E] {
+	t, p := new(table[E]), parser{items: map[string]*item{}, sets: map[string]*item{}}
+	for _, list := range lists {
+		for i := range list {
+			for _, text := range texts(&list[i]) {
+				t.patterns = append(t.patterns, p.parse(text))
+				t.owners = append(t.owners, &list[i])
 			}
 		}
 	}
-	return patterns, owners
-}
-
-func compileTriggers() (patterns []pattern, owners []*triggerEntry) {
-	for i := range triggerEntries {
-		for _, text := range triggerEntries[i].patterns {
-			patterns = append(patterns, parse(text))
-			owners = append(owners, &triggerEntries[i])
-		}
-	}
-	return patterns, owners
+	t.index = newIndex(t.patterns)
+	return t
 }
