@@ -2,6 +2,7 @@ package effect
 
 import (
 	"math"
+	"slices"
 
 	"steelyard/compute/dist"
 	"steelyard/compute/numeric"
@@ -72,39 +73,56 @@ func (m conformingBoth) Test(c float64) Test {
 // is at most c: 1 where even a centred population falls short of it.
 func (m conformingBoth) up(c float64) float64 {
 	nu := m.N - 1
+	c = math.Max(c, 1e-150) // p rises with c, so that less is never claimed; below, squares underflow
 	q := 1 - c
 	z := dist.NormalQuantile(q / 2)
+	if c < smallShare { // 1 - c would lose the digits of a small share
+		z = math.Sqrt2 * math.Erfinv(c)
+	}
+	if m.Half == 0 || math.IsInf(z/m.Half, 1) {
+		return 1 // no room between the limits at all
+	}
 	v0 := z / m.Half // below this V = s/sigma the spread alone is too large
 	short := dist.ChiSquareUpper(nu*v0*v0, nu).Q
 	root := math.Sqrt(m.N)
 	ln0 := math.Log(nu)/2 - math.Log(math.Pi)/2 - stirlingRest(nu/2)
 	zq := dist.NormalQuantile(q)
 	f := func(v float64) float64 {
-		d := spare(m.Half*v, q, zq)
+		d := 0.0
+		if c < smallShare {
+			d = spareOfShare(m.Half*v, c)
+		} else {
+			d = spare(m.Half*v, q, zq)
+		}
 		inside := upper((m.left.K*v-d)*root) + upper((m.right.K*v-d)*root)
 		h := v*v - 1
-		return inside * math.Exp(ln0-math.Log(v)+nu*(math.Log1p(h)-h)/2)
+		ln := math.Log1p(h)
+		if math.Abs(h) > 0.5 { // where h has lost the digits of v
+			ln = 2 * math.Log(v)
+		}
+		return inside * math.Exp(ln0+nu*(ln-h)/2) // times v, for dv = v ds²
 	}
-	return short + numeric.Integrate(f, m.breaks(v0, nu), 1e-11)
+	v0 = math.Max(v0, 1e-300)
+	// In s = √ln(v/v0) the integrand is smooth where the room vanishes.
+	return short + numeric.Integrate(func(s float64) float64 { return 2 * s * f(v0*math.Exp(s*s)) }, m.breaks(v0, nu), 1e-11)
 }
 
-// breaks are where panels of the integral begin: from where the spare room
-// vanishes, around the bulk of V, and through its tails.
+// breaks are where panels of the integral in s = √ln(V/v0) begin, to where
+// both V and its tails are done: evenly spaced, and around the bulk of V.
 func (m conformingBoth) breaks(v0, nu float64) []float64 {
-	top := math.Max(v0, 1) + 45/math.Sqrt(nu)
-	out := []float64{v0}
-	add := func(v float64) {
-		if v > out[len(out)-1]*(1+1e-9) && v < top {
-			out = append(out, v)
-		}
-	}
-	for _, k := range []float64{1e-4, 1e-3, 1e-2, 0.1} {
-		add(v0 * (1 + k))
+	at := func(v float64) float64 { return math.Sqrt(math.Log(v / v0)) }
+	top := at(math.Max(v0, 1) + 45/math.Sqrt(nu))
+	points := []float64{0, top}
+	for s := 0.25; s < top; s += math.Max(0.25, top/40) {
+		points = append(points, s)
 	}
 	for _, k := range []float64{-8, -4, -2, -1, 0, 1, 2, 4, 8} {
-		add(1 + k/math.Sqrt(2*nu))
+		if v := 1 + k/math.Sqrt(2*nu); v > v0 && at(v) < top {
+			points = append(points, at(v))
+		}
 	}
-	return append(out, top)
+	slices.Sort(points)
+	return points
 }
 
 // spare is d <= a with P(Z > d) + P(Z > 2a-d) = q: how near to a limit, in
@@ -138,6 +156,71 @@ func spare(a, q, zq float64) float64 {
 	}
 	return d
 }
+
+// smallShare is where 1 - c begins to lose the digits of c.
+const smallShare = 1e-3
+
+// spareOfShare is spare for a small share c: the distance left of the nearer
+// limit when the mean lies h from the middle and P(h-a < Z < h+a) = c. The
+// search is by Newton's steps in h², in which ln of that probability is nearly
+// straight, between 0 and where the nearer limit alone would leave c.
+func spareOfShare(a, c float64) float64 {
+	flat := -2 * math.Log(c/(2*a*density(0))) // h² where a is nothing
+	if a < 1e-4 {
+		u := flat
+		for range 4 {
+			u = flat + 2*math.Log1p(a*a*(u-1)/6+a*a*a*a*(u*u-6*u+3)/120)
+		}
+		return a - math.Sqrt(math.Max(0, u))
+	}
+	z := a - math.Log(2*c) // beyond the normal quantile of c
+	lo, hi := 0.0, z*z
+	u := flat
+	if !(u > lo && u < hi) || a > 1 {
+		u = square(math.Max(0, a+dist.NormalQuantile(c)))
+	}
+	for range 100 {
+		h := math.Sqrt(u)
+		p := around(h, a)
+		f := math.Log(p / c)
+		if f > 0 {
+			lo = u
+		} else {
+			hi = u
+		}
+		slope := a * density(a) // at h = 0
+		if h > 0 {
+			slope = (density(h-a) - density(h+a)) / (2 * h)
+		}
+		next := u + f*p/slope
+		if !(next > lo && next < hi) {
+			next = (lo + hi) / 2
+		}
+		if math.Abs(next-u) <= 1e-14*next+1e-16 {
+			u = next
+			break
+		}
+		u = next
+	}
+	return a - math.Sqrt(u)
+}
+
+// around is P(h-a < Z < h+a), h >= 0, without loss where a is small.
+func around(h, a float64) float64 {
+	switch {
+	case a > 1 && h < a:
+		return 1 - upper(h+a) - upper(a-h)
+	case a > 1:
+		return upper(h-a) - upper(h+a)
+	}
+	sum := 0.0
+	for _, n := range legendre {
+		sum += n.W * density(h+n.X*a)
+	}
+	return sum * a
+}
+
+var legendre = numeric.Legendre20()
 
 // upper is P(Z > z) alone, for integrands.
 func upper(z float64) float64 { return math.Erfc(z/math.Sqrt2) / 2 }

@@ -113,9 +113,9 @@ func rankSumSpread(x, y []float64, c, tol float64) float64 {
 		t := 0.0
 		if math.IsNaN(c) {
 			if i < len(x) {
-				t, i = run(x, i, x[i], 0)
+				t, i = run(x, i, 0, x[i], 0)
 			} else {
-				t, j = run(y, j, y[j], 0)
+				t, j = run(y, j, 0, y[j], 0)
 			}
 		} else {
 			at := math.Inf(1)
@@ -126,8 +126,8 @@ func rankSumSpread(x, y []float64, c, tol float64) float64 {
 				at = math.Min(at, y[j])
 			}
 			var a, b float64
-			a, i = run(x, i, at+c, tol)
-			b, j = run(y, j, at, tol)
+			a, i = run(x, i, c, at, tol)
+			b, j = run(y, j, 0, at, tol)
 			t = a + b
 		}
 		ties += t * (t*t - 1)
@@ -135,10 +135,12 @@ func rankSumSpread(x, y []float64, c, tol float64) float64 {
 	return math.Sqrt(math.Max(0, m*n/12*(total+1-ties/(total*(total-1)))))
 }
 
-// run counts the sorted values from i on that equal at, within tol above.
-func run(x []float64, i int, at, tol float64) (float64, int) {
+// run counts the sorted values from i on that equal at once they are moved
+// down by c, within tol above. A value moved is compared as it was found, so
+// that a c which swallows the values cannot stop the count.
+func run(x []float64, i int, c, at, tol float64) (float64, int) {
 	start := i
-	for i < len(x) && x[i] <= at+tol {
+	for i < len(x) && x[i]-c <= at+tol {
 		i++
 	}
 	return float64(i - start), i
@@ -158,8 +160,8 @@ func tiedRankSum(x, y []float64, c, tol float64) (up, down dist.Tail) {
 			at = math.Min(at, y[j])
 		}
 		var a, b float64
-		a, i = run(x, i, at+c, tol)
-		b, j = run(y, j, at, tol)
+		a, i = run(x, i, c, at, tol)
+		b, j = run(y, j, 0, at, tol)
 		t := int(a + b)
 		rank := 2*before + t + 1 // twice the midrank
 		for range t {

@@ -124,7 +124,7 @@ func signedRankSpread(d []float64, c, tol float64) float64 {
 	}
 	var ties float64
 	for i := 0; i < len(a); {
-		t, next := run(a, i, a[i], tol)
+		t, next := run(a, i, 0, a[i], tol)
 		ties += t * (t*t - 1)
 		i = next
 	}

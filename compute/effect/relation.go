@@ -28,7 +28,7 @@ func related(in Input, method string) (n, r float64, bad *Problem) {
 		return n, r, problem("S104", notClustered, method)
 	case !(math.Abs(r) <= 1):
 		return n, r, problem("S103", outsideRange, "the correlation", r)
-	case n < 4:
+	case !(n >= 4) || math.IsInf(n, 0):
 		return n, r, problem("S101", tooFew, "the sample", n, 4)
 	}
 	return n, r, nil

@@ -94,7 +94,7 @@ func spreadOnly(in Input, s sample, who, method string) *Problem {
 	if bad := s.bad(who); bad != nil {
 		return bad
 	}
-	if s.n < 2 {
+	if !(s.n >= 2) || math.IsInf(s.n, 0) {
 		return problem("S101", tooFew, who, s.n, 2)
 	}
 	if s.sd == 0 {
@@ -222,7 +222,7 @@ func pairedSDRatio(in Input) (*Inference, *Problem) {
 		return nil, problem("S104", notWithU, "pitman-morgan")
 	case in.DesignEffect != 1:
 		return nil, problem("S104", notClustered, "pitman-morgan")
-	case p.N < 3:
+	case !(p.N >= 3) || math.IsInf(p.N, 0):
 		return nil, problem("S101", tooFew, "the pairs", p.N, 3)
 	case !(p.FirstSD > smallestSD) || !(p.SecondSD > smallestSD):
 		return nil, problem("S102", noVariation, "one of the readings")
