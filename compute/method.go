@@ -15,6 +15,7 @@ const (
 	needsAlone     = "%s needs independent individuals; with clusters give a result of the analysis that respects them, as an effect"
 	noRoomForU     = "the method %s has no place for systematic_u"
 	noRelation     = "one of the two readings does not vary, so that nothing can be related to it"
+	tooFar         = "the readings lie so far apart that their spread is no number"
 	sharesCompared = "the method %s needs independent individuals; the shares of clusters are compared by welch"
 )
 
@@ -88,8 +89,13 @@ func (r *run) method(s spec, in effect.Input, clustered bool) (*effect.Inference
 	if clustered && in.Given == nil && s.measure.Word == "risk-difference" {
 		return clusterShares(s, in)
 	}
-	if p := in.Pairs; s.measure.Shape == record.OneSample && p.First != nil && (p.FirstSD == 0 || p.SecondSD == 0) {
-		return nil, &result.Note{Code: "S102", Message: noRelation}
+	if p := in.Pairs; s.measure.Shape == record.OneSample && p.First != nil {
+		switch {
+		case p.FirstSD == 0 || p.SecondSD == 0:
+			return nil, &result.Note{Code: "S102", Message: noRelation}
+		case math.IsNaN(p.R) || math.IsInf(p.FirstSD, 0) || math.IsInf(p.SecondSD, 0):
+			return nil, &result.Note{Code: "S103", Message: tooFar}
+		}
 	}
 	word := s.method
 	if in.Given != nil && !s.stated {
