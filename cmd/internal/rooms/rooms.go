@@ -34,7 +34,6 @@ var guardians = []struct{ module, folder string }{
 	{"github.com/fsnotify/fsnotify", "cmd/internal/watch"},
 	{"github.com/spf13/cobra", "cmd"},
 	{"github.com/spf13/pflag", "cmd"},
-	{"github.com/schollz/progressbar/v3", "cmd/internal/term"},
 	{"golang.org/x/term", "cmd/internal/term"},
 	{"golang.org/x/sys", "cmd"},
 }
