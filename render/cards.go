@@ -22,12 +22,13 @@ func methodCards() []card.Card {
 // findCard finds the card of a used word; nil when there is none. The card
 // must name the measure or key that the word is of, or none.
 func findCard(cards []card.Card, w usedWord) *card.Card {
-	for _, k := range cards {
+	for i := range cards {
+		k := &cards[i]
 		if k.Kind != w.kind || k.Word != w.word {
 			continue
 		}
 		if w.of == "" || len(k.Of) == 0 || slices.Contains(k.Of, w.of) {
-			return &k
+			return k
 		}
 	}
 	return nil
