@@ -13,6 +13,9 @@ import (
 // run beside the planned one.
 const smallEnough = 200
 
+// fewEnough is the same for permutations, which are drawn by the 100 000.
+const fewEnough = 40
+
 // costly are the methods whose work grows fast with the numbers.
 var costly = []string{"unconditional", "boschloo", "permutation", "wilcoxon-exact", "signed-rank-exact"}
 
@@ -96,6 +99,9 @@ func offers(word string, decided attempt) bool {
 	}
 	if adjusted && decided.spec.measure.Word != "hazard-ratio" {
 		return false
+	}
+	if word == "permutation" {
+		return decided.inf.N <= fewEnough
 	}
 	return decided.inf.N <= smallEnough || !slices.Contains(costly, word)
 }

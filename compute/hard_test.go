@@ -5,11 +5,9 @@ import (
 	"math"
 	"math/rand/v2"
 	"reflect"
-	"slices"
 	"strings"
 	"testing"
 
-	"steelyard/compute/effect"
 	"steelyard/compute/result"
 	"steelyard/protocol"
 	"steelyard/protocol/record"
@@ -47,103 +45,6 @@ func TestNoNaNFails(t *testing.T) {
 	noNaN(&c, reflect.ValueOf(&result.Result{Hypotheses: []result.Hypothesis{{Judged: result.Judged{P: result.P{Ln: math.NaN()}}}}}), "")
 	if c != 1 {
 		t.Fatal("a NaN was not found")
-	}
-}
-
-// agreeing checks that an established or contradicted claim has its interval
-// on the side that the verdict says, and an open one has not: unless the
-// record says that test and interval disagree, or that the interval does not
-// decide.
-func agreeing(t reporter, res *result.Result, h *result.Hypothesis) {
-	t.Helper()
-	if !h.P.OK || !h.IntervalDecides || !h.Low.OK || !h.High.OK || slices.ContainsFunc(h.Notes, func(n result.Note) bool { return n.Code == "S204" }) {
-		return
-	}
-	i := slices.IndexFunc(res.Outcomes, func(o result.Outcome) bool { return o.Name == h.Outcome })
-	o := res.Outcomes[i]
-	at := func(x float64) float64 { return effect.To(o.Scale, x) }
-	low, high := at(h.Low.V), at(h.High.V)
-	near := func(c float64) bool { // the limit is found to 1e-9 of the width
-		w := math.Max(1e-12, 1e-7*(high-low))
-		return math.Abs(low-c) <= w || math.Abs(high-c) <= w
-	}
-	over := func(c result.Opt) (above, below, ok bool) {
-		return low > at(c.V), high < at(c.V), c.OK && !near(at(c.V))
-	}
-	want := func(yes, no bool) {
-		t.Helper()
-		got := h.Verdict
-		if got == result.Suggested {
-			got = result.Established
-		}
-		expect := result.Open
-		switch {
-		case yes:
-			expect = result.Established
-		case no:
-			expect = result.Contradicted
-		}
-		if got != expect {
-			t.Errorf("%s %s of %s is %s; the interval is %g to %g (%s, p %g)", h.Name, h.Claim, o.Measure, got, h.Low.V, h.High.V, h.Method, h.P.P)
-		}
-	}
-	good, bad := h.MarginHigh, h.MarginLow
-	flip := o.Better == "lower"
-	if flip {
-		good, bad = bad, good
-	}
-	better := func(c result.Opt, turned bool) {
-		above, below, ok := over(c)
-		if !ok {
-			return
-		}
-		if flip != turned {
-			above, below = below, above
-		}
-		want(above, below)
-	}
-	switch h.Claim {
-	case "differs":
-		if above, below, ok := over(o.Null); ok {
-			want(above || below, false)
-		}
-	case "superior":
-		better(o.Null, false)
-	case "minimum-effect":
-		better(good, false)
-	case "noninferior":
-		better(bad, false)
-	case "benefit-too-small":
-		better(good, true)
-	case "equivalent":
-		aboveLow, belowLow, ok1 := over(h.MarginLow)
-		aboveHigh, belowHigh, ok2 := over(h.MarginHigh)
-		if ok1 && ok2 {
-			want(aboveLow && belowHigh, belowLow || aboveHigh)
-		}
-	case "above", "below":
-		above, below, ok := over(h.Limit)
-		if h.Claim == "below" {
-			above, below = below, above
-		}
-		if ok {
-			want(above, below)
-		}
-	}
-}
-
-func TestAgreeingFails(t *testing.T) {
-	res := computed(t, head+outcome("e", "estimate", "better = \"higher\"\n")+hypothesis("H1", "e", "superior", "")+given1("A", "e", 1, 0.2))
-	h := *hyp(t, res, "H1")
-	var c counter
-	agreeing(&c, res, &h)
-	if c != 0 {
-		t.Fatal("a sound result is at fault")
-	}
-	h.Verdict = result.Open
-	agreeing(&c, res, &h)
-	if c != 1 {
-		t.Fatal("a wrong verdict was not found")
 	}
 }
 
