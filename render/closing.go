@@ -5,6 +5,7 @@ import (
 	"sort"
 	"strings"
 
+	"steelyard/compute"
 	"steelyard/compute/result"
 	"steelyard/protocol/card"
 	"steelyard/protocol/diag"
@@ -51,7 +52,7 @@ func (c *composer) grouped() []finding {
 		}
 		g := finding{place: path.Base(file) + where, kind: d.Severity.String(), message: d.Message, help: d.Help, code: d.Code}
 		if name, rest, ok := strings.Cut(d.Message, ": "); ok && c.hypothesis(name) != nil {
-			g.names, g.message = []string{name}, rest
+			g.names, g.message = []string{name}, c.said(name, d.Code, rest)
 			key := sameFinding{path.Base(file), g.kind, g.message, g.help, g.code}
 			if k, seen := at[key]; seen {
 				out[k].names = append(out[k].names, name)
@@ -63,6 +64,17 @@ func (c *composer) grouped() []finding {
 		out = append(out, g)
 	}
 	return out
+}
+
+// said is a message about a claim with its numbers written as everywhere on
+// the page, where the claim's own analysis holds it.
+func (c *composer) said(name, code, message string) string {
+	for _, n := range c.hypothesis(name).Notes {
+		if n.Code == code && compute.Text(n) == message {
+			return noteText(n)
+		}
+	}
+	return message
 }
 
 // sameFinding is what makes two findings the same.

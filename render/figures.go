@@ -235,6 +235,9 @@ func (c *composer) beamFull(h *result.Hypothesis) *page.Figure {
 		return nil // page one shows it
 	}
 	b.Height = 17
+	if len(b.Rows) > 6 {
+		b.Height = 15
+	}
 	caption := h.Name + ": the interval on the beam. The notch is the null."
 	if b.Band.OK {
 		caption = h.Name + ": the interval on the beam. The band is the region too small to matter, the notch the null."

@@ -76,7 +76,7 @@ func TestSections(t *testing.T) {
 	if !strings.Contains(waiting, "Deviations and changes") {
 		t.Error("deviations are left out")
 	}
-	want := "The plan as sealed | What arrived | The analysis of each hypothesis | Pooled evidence | Combined p-values | Families of claims | Looks and boundaries | Stated beliefs and how far the results move them | What next | Timeline | Deviations and changes since the seal | Diagnostics | The conclusion in the user's words, beside the computed one | Cautions"
+	want := "The plan, changed since it was sealed | What arrived | The analysis of each hypothesis | Pooled evidence | Combined p-values | Families of claims | Looks and boundaries | Stated beliefs and how far the results move them | What next | Timeline | Deviations and changes since the seal | Diagnostics | The conclusion in the user's words, beside the computed one | Cautions"
 	if got := titles(fixture.Trial); !strings.HasPrefix(got, want) {
 		t.Errorf("order of sections:\n got %s\nwant %s", got, want)
 	}

@@ -15,9 +15,13 @@ func (c *composer) plan() {
 	if c.res.Seal.Entries == 0 {
 		title = "The plan (not sealed)"
 	}
+	changed := c.res.Seal.Entries > 0 && c.changedPlan()
+	if changed {
+		title = "The plan, changed since it was sealed"
+	}
 	c.heading(1, title, "plan")
-	if c.changedPlan() {
-		c.small("The plan below is the plan as it stands now. What was sealed differently is listed under Deviations and changes.")
+	if changed {
+		c.small("This is the plan as it stands now. What was sealed differently is listed under Deviations and changes.")
 	}
 	var f facts
 	f.add("Question", p.Question.V)

@@ -66,13 +66,13 @@ func (v voice) open(j *result.Judged) string {
 func (v voice) opening() string {
 	switch v.h.Evidence {
 	case "pooled":
-		s := "The data of " + studyList(v.h.Studies) + ", pooled,"
+		s := "The data of " + studiesInShort(v.h.Studies) + ", pooled,"
 		if v.model() == "random" {
-			s = "For the mean over settings, the data of " + studyList(v.h.Studies) + ", pooled under a random-effects model,"
+			s = "For the mean over settings, the data of " + studiesInShort(v.h.Studies) + ", pooled under a random-effects model,"
 		}
 		return s
 	case "combined":
-		return "The p-values of " + studyList(v.h.Studies) + ", combined,"
+		return "The p-values of " + studiesInShort(v.h.Studies) + ", combined,"
 	}
 	return "The data"
 }
@@ -108,6 +108,18 @@ func studyList(names []string) string {
 		return "the study " + names[0]
 	}
 	return "the studies " + join(names)
+}
+
+// mostNamed is how many studies a sentence names; of more it says the number
+// with the first and the last, and the section on them names all.
+const mostNamed = 8
+
+// studiesInShort is studyList for a sentence.
+func studiesInShort(names []string) string {
+	if n := len(names); n > mostNamed {
+		return number.Int(n) + number.Hard + "studies (" + names[0] + ", " + names[1] + ", … and " + names[n-1] + ")"
+	}
+	return studyList(names)
 }
 
 // points are what limits must not be rounded onto.

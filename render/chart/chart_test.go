@@ -310,3 +310,36 @@ func TestStepPath(t *testing.T) {
 		}
 	}
 }
+
+// A gauge stands where its number lies: the centre in the middle, what goes
+// beyond the line at its end.
+func TestGaugePlace(t *testing.T) {
+	for _, c := range []struct {
+		g    Gauge
+		want float64
+	}{
+		{Gauge{V: 0, Reach: 2}, 0}, {Gauge{V: 1, Reach: 2}, 0.5}, {Gauge{V: -9, Reach: 2}, -1},
+		{Gauge{V: 2, Centre: 1, Reach: 4, Log: true}, 0.5}, {Gauge{V: 0.25, Centre: 1, Reach: 4, Log: true}, -1}, {Gauge{V: math.NaN(), Reach: 1}, 0},
+	} {
+		if got := c.g.place(); math.Abs(got-c.want) > 1e-12 {
+			t.Errorf("%+v: %v", c.g, got)
+		}
+	}
+	d := Gauges{Rows: []Gauge{{Name: "Skewness, a group of a very long name", V: 9, Reach: 2, Below: "tail to the left", Above: "tail to the right", Text: "9.00"}}}.Draw()
+	if s := outside(d); s != "" {
+		t.Error(s)
+	}
+}
+
+// The unit of an axis is never cut away.
+func TestAxisKeepsItsUnit(t *testing.T) {
+	a := Axis{Title: "Difference of restricted mean times (six_mp minus placebo), weeks", Short: "Difference (six_mp minus placebo), weeks", Unit: "weeks"}
+	for _, room := range []float64{400, 200, 90, 60} {
+		if s := a.named(labelSize, room); !strings.HasSuffix(s, ", weeks") {
+			t.Errorf("room %v: %q", room, s)
+		}
+	}
+	if s := a.named(labelSize, 200); s != a.Short {
+		t.Errorf("got %q", s)
+	}
+}

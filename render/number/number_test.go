@@ -42,6 +42,8 @@ func TestInterval(t *testing.T) {
 		{"margin with more digits than the limit", newtons, opt(1), opt(0.81), opt(1.2), []float64{0.8125}, "1.00|0.81 to 1.20_N|"},
 		{"rounding would cross such a margin", newtons, opt(1), opt(0.8114), opt(1.2), []float64{0.8111}, "1.0000|0.8114 to 1.2000_N|"},
 		{"percent", points, opt(-0.00241), opt(-0.04768), opt(0.04286), []float64{-0.04, 0, 0.04}, "-0.2|-4.8 to 4.3_percentage_points|"},
+		{"near the end of the range", Of(&result.Outcome{Measure: "proportion", Percent: true, Digits: -1}), opt(0.9999999845), opt(0.9999984348), opt(0.9999999999), []float64{0.99}, "99.9999985|99.9998435 to >_99.9999999_%|"},
+		{"at the end of the range", Of(&result.Outcome{Measure: "proportion", Percent: true, Digits: -1}), opt(0), opt(0), opt(0.0075), []float64{0.01}, "0.00|0.00 to 0.75_%|"},
 		{"percent on the margin", points, opt(0.01), opt(-0.02), opt(0.04), []float64{0.04}, "1.0|-2.0 to 4.0_percentage_points|4"},
 		{"no upper limit", newtons, opt(2), opt(1.5), opt(inf), nil, "2.00|1.50_N or more, no upper limit|"},
 		{"no lower limit", newtons, opt(2), opt(-inf), opt(2.5), nil, "2.00|2.50_N or less, no lower limit|"},
@@ -198,6 +200,7 @@ func TestOf(t *testing.T) {
 		{result.Outcome{Measure: "risk-difference", Percent: true, Digits: -1}, -0.05, "-5_percentage points"},
 		{result.Outcome{Measure: "rate", Per: 1000, Unit: "falls per bed-day", Digits: -1}, 0.0042, "4.2_falls per 1000 bed-day"},
 		{result.Outcome{Measure: "rate-difference", Per: 1000, Unit: "per patient-year", Digits: -1}, 0.0042, "4.2_per 1000 patient-year"},
+		{result.Outcome{Measure: "rate", Per: 1, Digits: -1}, 1.42, "1.42"},
 		{result.Outcome{Measure: "rate", Per: 100, Digits: -1}, 0.0042, "0.42_per 100"},
 		{result.Outcome{Measure: "rate-ratio", Per: 1000, Unit: "x", Ratio: true, Digits: -1}, 1.25, "1.25"},
 		{result.Outcome{Measure: "correlation", Unit: "N", Digits: -1}, 0.3, "0.3"},
@@ -205,6 +208,19 @@ func TestOf(t *testing.T) {
 	} {
 		if got := blank(Of(&c.o).PointUnit(c.v)); got != c.want {
 			t.Errorf("%s: got %q, want %q", c.o.Measure, got, c.want)
+		}
+	}
+}
+
+// A mean is never printed with more decimals than the record gives it with.
+func TestStated(t *testing.T) {
+	f := Format{Factor: 1, Digits: -1}
+	for _, c := range []struct {
+		v, sd float64
+		want  string
+	}{{5.95, 0.52, "5.95"}, {5.9, 0.52, "5.90"}, {40.3966, 17.7012, "40.4"}, {12, 3, "12"}} {
+		if got := f.Stated(c.v, c.sd/10, c.sd); got != c.want {
+			t.Errorf("%v (%v): got %q, want %q", c.v, c.sd, got, c.want)
 		}
 	}
 }

@@ -180,7 +180,7 @@ func SignificantOpt(o result.Opt, n int) string {
 
 // Verb writes a float argument of a message under its verb ("%g", "%.2f",
 // "%.3g"): decimals or significant digits as the verb asks, 4 significant
-// digits where it does not.
+// digits at most.
 func Verb(verb string, v float64) string {
 	precision := -1
 	if i := strings.IndexByte(verb, '.'); i >= 0 && len(verb) > i+1 {
@@ -192,7 +192,7 @@ func Verb(verb string, v float64) string {
 	case verb[len(verb)-1] == 'f' && precision >= 0:
 		return fixed(v, precision)
 	case precision > 0:
-		return Significant(v, precision)
+		return Significant(v, min(precision, 4))
 	}
 	r, err := strconv.ParseFloat(strconv.FormatFloat(v, 'g', 4, 64), 64)
 	if err != nil || math.IsNaN(v) {
