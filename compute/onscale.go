@@ -25,9 +25,9 @@ func (r *run) onScale(s spec, plan *record.Pooling, e entry) (one pooledStudy, a
 	one = pooledStudy{entry: e, name: e.res.Study.V, in: in}
 	if counts(s.measure) && in.Given == nil && in.Strata == nil && !r.clusterMeans(e, s) {
 		d := in.DesignEffect
-		t := table{in.First.Events / d, in.First.N / d, in.First.Exposure / d, in.Second.Events / d, in.Second.N / d, in.Second.Exposure / d}
+		t := cellCounts{in.First.Events / d, in.First.N / d, in.First.Exposure / d, in.Second.Events / d, in.Second.N / d, in.Second.Exposure / d}
 		if s.measure.Shape == record.OneSample {
-			t = table{x1: in.Sample.Events / d, n1: in.Sample.N / d, t1: in.Sample.Exposure / d}
+			t = cellCounts{x1: in.Sample.Events / d, n1: in.Sample.N / d, t1: in.Sample.Exposure / d}
 		}
 		one.total, one.events = (t.n1+t.n2)*d, (t.x1+t.x2)*d
 		one.tabled = s.measure.Shape == record.TwoGroups
@@ -50,13 +50,13 @@ func usable(s pool.Study) bool {
 	return !math.IsNaN(s.Y) && !math.IsInf(s.Y, 0) && s.V > 0 && !math.IsInf(s.V, 0)
 }
 
-// table holds the counts of one study: events, subjects, exposure.
-type table struct{ x1, n1, t1, x2, n2, t2 float64 }
+// cellCounts holds the counts of one study: events, subjects, exposure.
+type cellCounts struct{ x1, n1, t1, x2, n2, t2 float64 }
 
 // onScale is the table's estimate and variance, with c added to the cells
 // where one of them is zero: of a difference, where the variance would be
 // zero. A ratio without or with nothing but events in both groups is S214.
-func (t table) onScale(measure string, c float64) (s pool.Study, amended bool, problem *result.Note) {
+func (t cellCounts) onScale(measure string, c float64) (s pool.Study, amended bool, problem *result.Note) {
 	zero := t.x1 == 0 || t.x2 == 0
 	full := t.x1 == t.n1 || t.x2 == t.n2
 	double := &result.Note{Code: "S214", Message: leftForZero}
@@ -103,11 +103,11 @@ func (t table) onScale(measure string, c float64) (s pool.Study, amended bool, p
 	return pool.Study{Y: math.Log(t.x1 / t.n1 * t.n2 / t.x2), V: (t.n1-t.x1)/(t.n1*t.x1) + (t.n2-t.x2)/(t.n2*t.x2)}, zero || full, nil
 }
 
-func (t table) plus(c float64) table {
+func (t cellCounts) plus(c float64) cellCounts {
 	t.x1, t.x2, t.n1, t.n2 = t.x1+c, t.x2+c, t.n1+2*c, t.n2+2*c
 	return t
 }
 
-func (t table) riskVariance() float64 {
+func (t cellCounts) riskVariance() float64 {
 	return t.x1*(t.n1-t.x1)/(t.n1*t.n1*t.n1) + t.x2*(t.n2-t.x2)/(t.n2*t.n2*t.n2)
 }
