@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"math"
 	"math/rand/v2"
+	"reflect"
 	"slices"
 	"strings"
 	"testing"
@@ -62,6 +63,10 @@ func hardFiles() map[string]string {
 			x := rng.NormFloat64()
 			return x + 0.05*float64(1-i%2), x, x + 0.1*rng.NormFloat64(), int(rng.Uint64() % 2), rng.ExpFloat64() + 1e-9
 		}),
+		"yes and no": write(20, func(i int) (float64, float64, float64, int, float64) {
+			return float64(i % 2), float64(i % 2), float64(i % 3 / 2), i % 3 / 2, 1
+		}),
+		"only yes and no": write(9, func(i int) (float64, float64, float64, int, float64) { return 1, 1, 0, 1, 1 }),
 		"huge": write(8, func(i int) (float64, float64, float64, int, float64) {
 			return 1e300 * float64(i-4), 1e300 * float64(i), -1e300 * float64(i), i % 2, 1e300 * float64(i+1)
 		}),
@@ -162,6 +167,22 @@ func TestHardPools(t *testing.T) {
 					}
 				}
 			}
+		}
+	}
+}
+
+// A record computed twice says the same: no method writes to what it reads.
+func TestRunTwice(t *testing.T) {
+	files := folder("d.csv", hardFiles()["two a group"]+hardFiles()["ties"][len("g,v,a,b,e,t\n"):])
+	for _, m := range record.Measures {
+		if m.Data == nil || m.Word == "conforming-share" || m.Word == "agreement" || m.Word == "paired-risk-difference" {
+			continue
+		}
+		text := head + outcome("y", m.Word, measureKeys(m)) + claimsOn(m, limitOf(m)) + fromFile("A", "y", columnsOf(m))
+		in := load(t, text, nil, files)
+		first := Run(in, "test")
+		if second := Run(in, "test"); !reflect.DeepEqual(first, second) {
+			t.Errorf("%s: two runs of one record differ", m.Word)
 		}
 	}
 }

@@ -2,6 +2,7 @@ package compute
 
 import (
 	"math"
+	"slices"
 
 	"steelyard/compute/claim"
 	"steelyard/compute/dist"
@@ -61,7 +62,7 @@ func (r *run) hypothesis(h *record.Hypothesis) {
 		if at.problem != nil {
 			r.note(h.At, h.Name, *at.problem)
 		} else if at.inf != nil {
-			for _, n := range append(at.inf.Notes, at.a.Notes...) {
+			for _, n := range slices.Concat(at.inf.Notes, at.a.Notes) {
 				r.note(h.At, h.Name, n)
 			}
 		}
