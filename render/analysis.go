@@ -57,10 +57,12 @@ func (c *composer) analysis(h *result.Hypothesis) {
 	c.sensitivityOf(v)
 }
 
-// add2 adds a figure when there is one.
-func (c *composer) add2(f *page.Figure) {
-	if f != nil {
-		c.add(*f)
+// add2 adds the figures that there are.
+func (c *composer) add2(figures ...*page.Figure) {
+	for _, f := range figures {
+		if f != nil {
+			c.add(*f)
+		}
 	}
 }
 

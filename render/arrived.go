@@ -265,6 +265,7 @@ func (c *composer) totalsTable() {
 // fileTable prints data files with digests and dropped rows by reason.
 func (c *composer) fileTable() {
 	t := newTable("Data files", "File", "Result", "Set", ">Rows", ">Used", "Dropped")
+	t.Columns[0].Share, t.Columns[1].Share = 0.19, 0.27
 	for _, f := range c.res.Files {
 		t.row(f.Path, resultName(c.res, &f), f.Set, number.Int(f.Rows), number.Int(f.Used), droppedText(f.Dropped))
 	}

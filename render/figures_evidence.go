@@ -29,7 +29,7 @@ func shownRow(f number.Format, name string, s number.Shown, est, low, high resul
 
 // studiesFigure shows every study and the pooled results under one beam.
 // Points are drawn to size by weight.
-func (c *composer) studiesFigure(group []*result.Pooled) *page.Figure {
+func (c *composer) studiesFigure(group []*result.Pooled) []*page.Figure {
 	d := deciding(group)
 	o := outcomeOf(c.res, d.Outcome)
 	f := number.Of(o)
@@ -60,8 +60,35 @@ func (c *composer) studiesFigure(group []*result.Pooled) *page.Figure {
 		return nil
 	}
 	s := pooledShown(d, o)
-	alt := "Estimates and intervals, study by study: " + rowsText(b.Rows) + ". The model that decides gives " + s.EstimateUnit() + ", " + number.Level(d.Level) + " interval " + s.Range() + "."
-	return figure("Study by study. Discs are sized by weight; the heavy bar is the model that decides, dashed its interval for a new setting like these. Arrows go on beyond the axis.", alt, b.Draw(), b.Plain(plainColumns))
+	tail := " The model that decides gives " + s.EstimateUnit() + ", " + number.Level(d.Level) + " interval " + s.Range() + "."
+	return parted("Study by study", "Discs are sized by weight; the heavy bar is the model that decides, dashed its interval for a new setting like these. Arrows go on beyond the axis.",
+		"Estimates and intervals, study by study: ", tail, b)
+}
+
+// mostRows is how many rows one figure holds; more go on in further ones, so
+// that none is larger than a page or has to be made too small to read.
+const mostRows = 26
+
+// parted draws a beam in as many figures as its rows need, of about equal
+// length and under the same axis.
+func parted(title, words, altHead, altTail string, b chart.Beam) []*page.Figure {
+	parts := (len(b.Rows) + mostRows - 1) / mostRows
+	size := (len(b.Rows) + parts - 1) / parts
+	var out []*page.Figure
+	for i := range parts {
+		p := b
+		p.Rows = b.Rows[i*size : min(len(b.Rows), (i+1)*size)]
+		caption, alt := title+". "+words, altHead+rowsText(p.Rows)+"."+altTail
+		if parts > 1 {
+			which := number.Int(i+1) + " of " + number.Int(parts)
+			alt = "Part " + which + ". " + alt
+			if caption = title + ", part " + which + "."; i == 0 {
+				caption += " " + words
+			}
+		}
+		out = append(out, figure(caption, alt, p.Draw(), p.Plain(plainColumns)))
+	}
+	return out
 }
 
 // mostSaid is how many rows of a figure its alternative text reads out; of more
@@ -106,7 +133,7 @@ func (c *composer) greyStudies(d *result.Pooled, o *result.Outcome, f number.For
 }
 
 // cumulativeFigure is the pooled evidence as it grew.
-func (c *composer) cumulativeFigure(p *result.Pooled) *page.Figure {
+func (c *composer) cumulativeFigure(p *result.Pooled) []*page.Figure {
 	if len(p.Cumulative) < 2 {
 		return nil
 	}
@@ -123,8 +150,8 @@ func (c *composer) cumulativeFigure(p *result.Pooled) *page.Figure {
 	}
 	b.Rows[len(b.Rows)-1].Strong = true
 	first, last := p.Cumulative[0], p.Cumulative[len(p.Cumulative)-1]
-	alt := "Pooled evidence as studies arrived, from " + first.Study + " alone to all up to " + last.Study + ": " + rowsText(b.Rows) + "."
-	return figure("Evidence over time: pooled over the studies up to each date.", alt, b.Draw(), b.Plain(plainColumns))
+	return parted("Evidence over time", "Pooled over the studies up to each date.",
+		"Pooled evidence as studies arrived, from "+first.Study+" alone to all up to "+last.Study+": ", "", b)
 }
 
 // tallyFigure counts directions, one disc a result.

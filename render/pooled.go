@@ -55,11 +55,11 @@ func (c *composer) pooledGroup(group []*result.Pooled) {
 	if d.Model == "random" {
 		c.small("Under the random-effects model the claim is about the mean over settings like these, not about each of them.")
 	}
-	c.add2(c.studiesFigure(group))
+	c.add2(c.studiesFigure(group)...)
 	c.modelTable(group, o)
 	c.heterogeneity(group, o)
 	c.weightTable(d, o)
-	c.add2(c.cumulativeFigure(d))
+	c.add2(c.cumulativeFigure(d)...)
 	c.leaveOneOut(d, o)
 	c.smallStudies(d)
 	if len(d.LeftForZero) > 0 {

@@ -3,7 +3,6 @@ package pdf
 import (
 	"encoding/json"
 	"fmt"
-	"io"
 	"math"
 	"strconv"
 
@@ -59,7 +58,10 @@ func (d *drawer) begin(el *elem, layer string) {
 	id := len(d.owner[d.page-1])
 	d.owner[d.page-1] = append(d.owner[d.page-1], el)
 	el.kids = append(el.kids, kid{page: d.page, mcid: id})
-	d.f.RawWriteStr(fmt.Sprintf("/%s <</MCID %d>> BDC", el.role, id))
+	b := append(append(append(d.buf[:0], '/'), el.role...), " <</MCID "...)
+	b = append(strconv.AppendInt(b, int64(id), 10), ">> BDC"...)
+	d.f.RawWriteStr(string(b))
+	d.buf = b
 }
 
 func (d *drawer) end() {
@@ -151,15 +153,18 @@ func (d *drawer) text(it *item, x, y float64) {
 		d.f.RawWriteStr(fmt.Sprintf("/Span <</ActualText <FEFF%X>>> BDC", utf16BE(it.actual)))
 		defer d.f.RawWriteStr("EMC")
 	}
-	if len(it.kerns) == 0 {
-		d.f.Text(x, y, it.text)
-		return
-	}
-	// fpdf has no operator for kerned text.
+	// What fpdf writes for text, without its detours; it has no operator for
+	// kerned text.
 	b := append(d.buf[:0], "BT "...)
 	b = strconv.AppendFloat(b, x, 'f', 2, 64)
 	b = append(b, ' ')
 	b = strconv.AppendFloat(b, d.s.sheet.height-y, 'f', 2, 64)
+	if len(it.kerns) == 0 {
+		b = append(escaped(append(b, " Td ("...), it.text), ") Tj ET"...)
+		d.f.RawWriteStr(string(b))
+		d.buf = b
+		return
+	}
 	b = append(b, " Td [("...)
 	from := 0
 	for _, k := range it.kerns {
@@ -318,4 +323,21 @@ func (d *drawer) fonts(z *squeezer) error {
 }
 
 // output is the file as fpdf writes it.
-func (d *drawer) output(w io.Writer) error { return d.f.Output(w) }
+func (d *drawer) output() ([]byte, error) {
+	var t taken
+	err := d.f.Output(&t)
+	return t.b, err
+}
+
+// taken keeps what is written. Of the first write, which is all of the file,
+// no copy is made: fpdf is not used afterwards.
+type taken struct{ b []byte }
+
+func (t *taken) Write(p []byte) (int, error) {
+	if t.b == nil {
+		t.b = p[:len(p):len(p)]
+	} else {
+		t.b = append(t.b, p...)
+	}
+	return len(p), nil
+}

@@ -13,7 +13,6 @@
 package pdf
 
 import (
-	"bytes"
 	"errors"
 	"fmt"
 	"io"
@@ -82,11 +81,11 @@ func build(doc *page.Document, opt options) ([]byte, error) {
 	for i, l := range leaves {
 		d.leaf(l, i+1, status, matter[i])
 	}
-	var raw bytes.Buffer
-	if err := d.output(&raw); err != nil {
+	raw, err := d.output()
+	if err != nil {
 		return nil, fmt.Errorf("pdf: %w", err)
 	}
-	return finish(raw.Bytes(), d, opt, z, when, dated)
+	return finish(raw, d, opt, z, when, dated)
 }
 
 // instant reads a date or an instant; false for none.
