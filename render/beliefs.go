@@ -24,12 +24,18 @@ func (c *composer) beliefs() {
 			c.para("Why: " + fullStop(p.Why))
 		}
 		t := newTable("", "Belief", "#Mean", "#SD", ">Benefit", ">Inside", ">Harm", ">Exactly null")
-		beliefRow(t, "before", &p.Before)
+		least := p.Before.SD // sets the decimals of the whole table
+		for _, b := range append([]result.Belief{p.After}, p.Path...) {
+			if b.SD > 0 && !(least > 0 && least <= b.SD) {
+				least = b.SD
+			}
+		}
+		beliefRow(t, "before", &p.Before, least)
 		for k := range p.Path {
-			beliefRow(t, "after "+p.Path[k].Study, &p.Path[k])
+			beliefRow(t, "after "+p.Path[k].Study, &p.Path[k], least)
 		}
 		if len(p.Path) == 0 {
-			beliefRow(t, "after", &p.After)
+			beliefRow(t, "after", &p.After, least)
 		}
 		t.note("Mean and SD on the analysis scale" + scaleText(o) + ".")
 		t.to(c)
@@ -58,12 +64,22 @@ func scaleText(o *result.Outcome) string {
 }
 
 // beliefRow prints one belief.
-func beliefRow(t *table, name string, b *result.Belief) {
+func beliefRow(t *table, name string, b *result.Belief, least float64) {
 	null := ""
 	if b.NullShare.OK {
 		null = number.Share(b.NullShare.V)
 	}
-	t.row(name, number.Significant(b.Mean, 3), number.Significant(b.SD, 3), number.Share(b.Benefit), number.Share(b.Inside), number.Share(b.Harm), null)
+	f := number.Format{Digits: -1}
+	t.row(name, f.Value(b.Mean, least/3), f.Value(b.SD, least/3), number.Share(b.Benefit), number.Share(b.Inside), number.Share(b.Harm), null)
+}
+
+// shareRange is "4.7 % to 23.4 %", or one share where both read the same.
+func shareRange(lo, hi float64) string {
+	a, b := number.Share(lo), number.Share(hi)
+	if a == b {
+		return a
+	}
+	return a + " to " + b
 }
 
 // beliefRange gives lowest and highest over all beliefs of an outcome.
@@ -88,8 +104,8 @@ func (c *composer) beliefRange() {
 			}
 		}
 		if n > 1 {
-			c.para("Over the " + number.Int(n) + " beliefs on " + outcomeOf(c.res, name).Label + ", after the results: benefit that matters " + number.Share(lo[0]) + " to " + number.Share(hi[0]) +
-				"; inside the region " + number.Share(lo[1]) + " to " + number.Share(hi[1]) + "; harm that matters " + number.Share(lo[2]) + " to " + number.Share(hi[2]) + ".")
+			c.para("Over the " + number.Int(n) + " beliefs on " + outcomeOf(c.res, name).Label + ", after the results: benefit that matters " + shareRange(lo[0], hi[0]) +
+				"; inside the region " + shareRange(lo[1], hi[1]) + "; harm that matters " + shareRange(lo[2], hi[2]) + ".")
 		}
 	}
 }

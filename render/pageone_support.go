@@ -9,7 +9,7 @@ import (
 // supported says what the results support and what they do not. Where
 // several claims share the page they are named and not worded again.
 func (c *composer) supported(primary []*result.Hypothesis, dense bool) (yes, no list) {
-	var asClaimed []string
+	var asClaimed, suggested []string
 	for _, h := range primary {
 		v := voiceOf(c.res, h)
 		v.brief = true
@@ -17,9 +17,12 @@ func (c *composer) supported(primary []*result.Hypothesis, dense bool) (yes, no 
 		var not []string
 		switch j.Verdict {
 		case result.Established, result.Suggested:
-			if dense {
+			switch {
+			case dense && j.Verdict == result.Suggested:
+				suggested = append(suggested, h.Name)
+			case dense:
 				asClaimed = append(asClaimed, h.Name)
-			} else {
+			default:
 				yes.named(h.Name, v.verdict(j)+".")
 			}
 		case result.Contradicted:
@@ -41,6 +44,9 @@ func (c *composer) supported(primary []*result.Hypothesis, dense bool) (yes, no 
 	}
 	if len(asClaimed) > 0 {
 		yes.add("As claimed above: " + join(asClaimed) + ".")
+	}
+	if len(suggested) > 0 {
+		yes.add("Suggested only, exploratory: " + join(suggested) + ".")
 	}
 	for _, f := range c.res.Families {
 		if f.Verdict == result.Established {

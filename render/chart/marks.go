@@ -116,6 +116,9 @@ func (c *canvas) axisTitle(f frame, a Axis, y float64) {
 	case "lower":
 		better = "← lower is better"
 	}
+	if better != "" && c.w < Width { // little room: the title comes first
+		better = map[string]string{"higher": "better →", "lower": "← better"}[a.Better]
+	}
 	size := labelSize
 	bw := textWidth(better, size)
 	room := f.x1 - left - bw - 10
