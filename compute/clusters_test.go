@@ -128,3 +128,31 @@ func TestClustersInAPool(t *testing.T) {
 	nearOpt(t, "estimate", h.Estimate, m1-m2, 1e-12)
 	nearOpt(t, "se", h.SE, math.Sqrt((s1*s1+s2*s2)/6/2), 1e-12)
 }
+
+// Pairs in clusters are analysed by the means of the clusters' differences,
+// and one sample by the means of its clusters.
+func TestPairsInClusters(t *testing.T) {
+	rng := rand.New(rand.NewPCG(4, 4))
+	file := "c,a,b\n"
+	var means, firsts []float64
+	for c := range 7 {
+		shift, sum, first := rng.NormFloat64(), 0.0, 0.0
+		for range 4 {
+			a, b := 5+shift+rng.NormFloat64(), 4+rng.NormFloat64()
+			sum, first = sum+a-b, first+a
+			file += fmt.Sprintf("c%d,%.17g,%.17g\n", c, a, b)
+		}
+		means, firsts = append(means, sum/4), append(firsts, first/4)
+	}
+	for _, c := range []struct {
+		measure, keys, columns string
+		x                      []float64
+	}{{"paired-mean-difference", two, `first = "a", second = "b"`, means}, {"mean", "better = \"higher\"\nreference = 0\n", `value = "a"`, firsts}} {
+		h := hyp(t, computed(t, head+outcome("y", c.measure, c.keys+"cluster = { icc = 0.1, size = 4 }\n")+hypothesis("H1", "y", "superior", "")+
+			fromFile("A", "y", c.columns+`, cluster = "c"`), "d.csv", file), "H1")
+		m, sd := momentsOf(c.x)
+		nearOpt(t, c.measure, h.Estimate, m, 1e-12)
+		nearOpt(t, c.measure+" se", h.SE, sd/math.Sqrt(7), 1e-10)
+		nearOpt(t, c.measure+" df", h.DF, 6, 0)
+	}
+}
