@@ -106,12 +106,13 @@ func likelihood(studies []Study, tau2 float64) float64 {
 
 // score is the derivative of the restricted log-likelihood.
 func score(studies []Study, tau2 float64) float64 {
-	mu, sw, _ := moments(studies, tau2)
+	first, d, sw := centre(studies, tau2)
+	mu := first + d
 	var sw2, swe float64
-	for _, s := range studies {
-		w := 1 / (s.V + tau2)
+	for i := range studies {
+		w, e := 1/(studies[i].V+tau2), studies[i].Y-mu
 		sw2 += w * w
-		swe += w * w * (s.Y - mu) * (s.Y - mu)
+		swe += w * w * e * e
 	}
 	return 0.5 * (swe - sw + sw2/sw)
 }
@@ -165,17 +166,29 @@ func remlNear(studies []Study, near float64) (float64, bool) {
 	}
 	f := func(t float64) float64 { return score(studies, t) }
 	lo, hi := near, near
+	atLo := f(near)
+	atHi := atLo
 	for step := 1.1; step < 9; step *= step {
-		if f(lo) <= 0 {
+		if atLo <= 0 {
 			lo = near / step
-		} else if f(hi) >= 0 {
+			atLo = f(lo)
+		} else if atHi >= 0 {
 			hi = near * step
+			atHi = f(hi)
 		} else {
 			break
 		}
 	}
-	if f(lo) <= 0 || f(hi) >= 0 {
+	if atLo <= 0 || atHi >= 0 {
 		return 0, false
 	}
-	return numeric.Root(f, lo, hi, 1e-12)
+	return numeric.Root(func(t float64) float64 {
+		switch t {
+		case lo:
+			return atLo
+		case hi:
+			return atHi
+		}
+		return f(t)
+	}, lo, hi, 1e-12)
 }

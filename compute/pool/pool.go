@@ -99,19 +99,25 @@ func (o Options) at(studies []Study, tau2 float64) Pooled {
 // moments returns the weighted mean, the sum of weights and Q at a variance
 // between studies.
 func moments(studies []Study, tau2 float64) (mu, sw, q float64) {
-	first := studies[0].Y
-	var swy float64
-	for _, s := range studies {
-		w := 1 / (s.V + tau2)
-		sw += w
-		swy += w * (s.Y - first)
-	}
-	d := swy / sw
-	for _, s := range studies {
-		e := s.Y - first - d
-		q += e * e / (s.V + tau2)
+	first, d, sw := centre(studies, tau2)
+	for i := range studies {
+		e := studies[i].Y - first - d
+		q += e * e / (studies[i].V + tau2)
 	}
 	return first + d, sw, q
+}
+
+// centre returns the weighted mean, as the effect of the first study and the
+// distance from it, and the sum of weights.
+func centre(studies []Study, tau2 float64) (first, d, sw float64) {
+	first = studies[0].Y
+	var swy float64
+	for i := range studies {
+		w := 1 / (studies[i].V + tau2)
+		sw += w
+		swy += w * (studies[i].Y - first)
+	}
+	return first, swy / sw, sw
 }
 
 // Limits is the interval at one-sided error a.

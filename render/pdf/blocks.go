@@ -19,7 +19,8 @@ type setter struct {
 	places  []place
 	anchors map[string]int // into places
 	links   []*elem
-	level   int // of the last heading in the tree
+	spare   []char // room for the next text: what was set from it is drawn
+	level   int    // of the last heading in the tree
 
 	where   string
 	refused []BadRune

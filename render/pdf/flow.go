@@ -70,12 +70,13 @@ func (p *piece) rule(x, y, w, h float64, c colour) {
 
 // put draws a line of characters with its baseline at y.
 func (p *piece) put(s *setter, cs []char, x, y float64) {
+	var textRoom [256]byte
+	var kernRoom [32]kern
 	for i := 0; i < len(cs); {
 		c := cs[i]
 		j, w := i, 0.0
 		start := x + float64(c.dx)
-		var text []byte
-		var kerns []kern
+		text, kerns := textRoom[:0], kernRoom[:0]
 		for ; j < len(cs); j++ {
 			n := cs[j]
 			if n.face != c.face || n.look != c.look && !same(n.look, c.look) || j > i && (n.dx != 0 || n.dy != 0 || c.dx != 0 || c.dy != 0) {
@@ -90,7 +91,7 @@ func (p *piece) put(s *setter, cs []char, x, y float64) {
 		}
 		p.items = append(p.items, item{
 			kind: textItem, el: c.look.el, x: start, y: y - c.look.rise - float64(c.dy), face: c.face, size: c.look.size,
-			colour: c.look.colour, text: string(text), kerns: kerns, w: w, actual: c.look.actual,
+			colour: c.look.colour, text: string(text), kerns: append([]kern(nil), kerns...), w: w, actual: c.look.actual,
 		})
 		x += w
 		i = j
@@ -107,20 +108,24 @@ func (t textStyle) ascent() float64 { return t.leading/2 + t.size*0.34 }
 // text sets inlines as pieces of one line each, with no line left alone at
 // the foot or head of a page.
 func (s *setter) text(in []page.Inline, st textStyle, fr frame, el *elem) []piece {
-	lines := settle(s.chars(in, st, el), fr.w, st.family == boldFamily)
+	cs := s.chars(in, st, el)
+	lines := settle(cs, fr.w, st.family == boldFamily)
 	out := make([]piece, len(lines))
 	for i, l := range lines {
 		out[i].height = st.leading
 		out[i].keep = i == 0 && len(lines) > 1 || i == len(lines)-2
 		out[i].put(s, l.cs, fr.x, st.ascent())
 	}
+	s.spare = cs
 	return out
 }
 
 // block sets inlines as one piece, for cells and labels.
 func (s *setter) block(in []page.Inline, st textStyle, fr frame, el *elem) piece {
 	var p piece
-	p.add(s, wrap(s.chars(in, st, el), fr.w), st, fr.x, 0)
+	cs := s.chars(in, st, el)
+	p.add(s, wrap(cs, fr.w), st, fr.x, 0)
+	s.spare = cs
 	return p
 }
 

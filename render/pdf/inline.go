@@ -47,7 +47,10 @@ func (s *setter) chars(in []page.Inline, st textStyle, el *elem) []char {
 	for _, i := range in {
 		n += width(i)
 	}
-	out := make([]char, 0, n)
+	out := s.spare[:0]
+	if s.spare = nil; cap(out) < n {
+		out = make([]char, 0, n)
+	}
 	for _, i := range in {
 		l := look{face: st.family.regular, size: st.size, colour: st.colour, el: el}
 		var text string

@@ -210,7 +210,7 @@ func (s *setter) headPiece(g *grid, head []cell, fr frame, thead *elem) piece {
 }
 
 func (s *setter) rowPiece(g *grid, row []cell, fr frame, tr *elem) piece {
-	p := piece{height: tableStyle.leading + 2*rowSpace, items: make([]item, 0, 2*len(row))}
+	p := piece{height: tableStyle.leading + 2*rowSpace, items: make([]item, 0, 2*len(row)+2)}
 	for i, c := range row {
 		p.items = append(p.items, item{kind: attachItem, el: c.cs[0].look.el})
 		if c.cs[0].gid == 0 {
