@@ -221,7 +221,7 @@ func (c *composer) choices() {
 	c.heading(1, "Every choice, and whether the plan or a default made it", "choices")
 	t := newTable("", "Choice", "Value", "From", "Why")
 	for _, x := range c.res.Choices {
-		t.row(x.What, x.Value, x.From, x.Why)
+		t.row(x.What, signed(x.Value), x.From, x.Why)
 	}
 	t.to(c)
 }

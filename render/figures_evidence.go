@@ -216,8 +216,12 @@ func (c *composer) timelineFigure() *page.Figure {
 			d.Kinds = append(d.Kinds, e.Kind)
 		}
 	}
-	if len(d.Events) < 2 {
-		return nil
+	apart := false
+	for _, e := range d.Events {
+		apart = apart || !e.At.Equal(d.Events[0].At)
+	}
+	if !apart {
+		return nil // nothing to place along a line
 	}
 	return figure("Timeline. Open marks: the order within the day cannot be proved.", "Timeline of "+number.Int(len(d.Events))+" events ("+joinKinds(d.Kinds)+"), each in the table below.", d.Draw(), nil)
 }

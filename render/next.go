@@ -123,7 +123,11 @@ func (c *composer) stillNeeded() string {
 		}
 	}
 	if len(pending) > 0 {
-		parts = append(parts, "results for "+join(pending))
+		word := "results for "
+		if len(parts) == 0 {
+			word = "Results for "
+		}
+		parts = append(parts, word+join(pending))
 	}
 	if n := c.count(result.MissingUse); n > 0 {
 		parts = append(parts, plural(n, "missing result", "missing results"))

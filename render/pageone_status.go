@@ -163,7 +163,7 @@ func (c *composer) denseNumbers() string {
 			s += " " + outcomeOf(c.res, t.Outcome).Label + ","
 		}
 		last, some = t.Outcome, true
-		s += " " + strings.TrimSpace(t.Group+" "+strings.Join(n, " / "))
+		s += " " + strings.TrimSpace(t.Group+" "+strings.Join(n, number.Hard+"/"+number.Hard))
 	}
 	if !some {
 		return ""
