@@ -89,7 +89,7 @@ func (s *setter) figure(b page.Figure, fr frame, parent *elem) []piece {
 // drawing places the marks of a picture.
 func (s *setter) drawing(d *page.Drawing, fr frame, el *elem) piece {
 	scale := min(1, fr.w/d.Width, 0.86*s.sheet.depth()/d.Height)
-	p := piece{height: d.Height * scale}
+	p := piece{height: d.Height * scale, items: make([]item, 0, len(d.Marks)+1)}
 	for _, m := range d.Marks {
 		if l, ok := m.(page.Label); ok {
 			s.label(&p, l, fr.x, scale, el)
@@ -107,7 +107,7 @@ func (s *setter) label(p *piece, l page.Label, x0, scale float64, el *elem) {
 	if l.Bold {
 		id = sansBold
 	}
-	cs := s.run(nil, l.Text, look{face: id, size: l.Size * scale, colour: ink(l.Ink), el: el})
+	cs := s.run(s.spare[:0], l.Text, look{face: id, size: l.Size * scale, colour: ink(l.Ink), el: el})
 	w, _ := natural(cs)
 	x := x0 + l.X*scale
 	switch l.Anchor {
@@ -118,6 +118,7 @@ func (s *setter) label(p *piece, l page.Label, x0, scale float64, el *elem) {
 		x -= w
 	}
 	p.put(s, cs, x, l.Y*scale)
+	s.spare = cs
 }
 
 func toneColour(t page.Tone) colour {
