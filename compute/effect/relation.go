@@ -3,7 +3,6 @@ package effect
 import (
 	"math"
 	"slices"
-	"sort"
 
 	"steelyard/compute/dist"
 	"steelyard/compute/numeric"
@@ -243,19 +242,34 @@ func eachOrder(x []float64, k int, visit func()) {
 
 // midranks are ranks from 1, ties at their mean.
 func midranks(x []float64) []float64 {
-	order := make([]int, len(x))
-	for i := range order {
-		order[i] = i
+	type placed struct {
+		value float64
+		at    int
 	}
-	sort.SliceStable(order, func(i, j int) bool { return x[order[i]] < x[order[j]] })
+	order := make([]placed, len(x))
+	for i, v := range x {
+		order[i] = placed{v, i}
+	}
+	slices.SortFunc(order, func(a, b placed) int {
+		switch {
+		case a.value < b.value:
+			return -1
+		case a.value > b.value:
+			return 1
+		}
+		return 0
+	})
 	r := make([]float64, len(x))
 	for i := 0; i < len(order); {
 		j := i
-		for j < len(order) && x[order[j]] == x[order[i]] {
+		for j < len(order) && order[j].value == order[i].value {
+			j++
+		}
+		if j == i { // not a number
 			j++
 		}
 		for k := i; k < j; k++ {
-			r[order[k]] = float64(i+j+1) / 2
+			r[order[k].at] = float64(i+j+1) / 2
 		}
 		i = j
 	}
