@@ -140,7 +140,7 @@ func TestHardPools(t *testing.T) {
 				evidence, claims := "evidence = \"pooled\"\nrole = \"secondary\"\n", protocol.SensibleClaims(m)
 				if how == "combined" {
 					evidence, claims = "evidence = \"combined\"\nrole = \"secondary\"\n", []string{"superior", "differs"}
-					text += "[plan.combination.y]\nmethod = \"logit\"\n"
+					text += fmt.Sprintf("[plan.combination.y]\nmethod = %q\n", []string{"fisher", "stouffer", "cauchy", "edgington", "harmonic", "logit", "pearson", "tippett"}[i%8])
 				} else {
 					text += pooling("y", how, "")
 				}
