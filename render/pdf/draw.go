@@ -5,6 +5,7 @@ import (
 	"fmt"
 	"math"
 	"strconv"
+	"sync"
 
 	"github.com/go-pdf/fpdf"
 
@@ -26,12 +27,14 @@ type drawer struct {
 	current *elem
 	layer   string // artifact kind while current is nil
 
-	face   faceID
-	size   float64
-	fill   colour
-	line   colour
-	width  float64
-	dash   bool
+	face    faceID
+	size    float64
+	fill    colour
+	line    colour
+	width   float64
+	dash    bool
+	packing sync.WaitGroup // of the files of the cut faces
+
 	known  bool // the line state of the page is known
 	filled bool // and its fill colour
 }
@@ -301,15 +304,17 @@ func (d *drawer) status(p piece) {
 	d.end()
 }
 
-// fonts hands the cut faces to fpdf, which embeds the files and draws with
-// them. fpdf takes the text as bytes; the dictionaries that say how the bytes
-// are read are written afterwards.
-func (d *drawer) fonts(z *squeezer) error {
+// fonts names the cut faces to fpdf, which draws with them. It takes the text
+// as bytes; the dictionaries that say how the bytes are read, and the files,
+// which are compressed while the pages are drawn, are written afterwards.
+func (d *drawer) fonts() error {
+	var used []*cut
 	for _, c := range d.s.cuts {
 		if c == nil || len(c.gids()) == 0 {
 			continue
 		}
 		c.file = c.sfnt()
+		used = append(used, c)
 		def := map[string]any{
 			"Tp": "TrueType", "Name": c.key, "Cw": make([]int, 256), "File": c.key + ".z", "OriginalSize": len(c.file),
 		}
@@ -317,8 +322,14 @@ func (d *drawer) fonts(z *squeezer) error {
 		if err != nil {
 			return err
 		}
-		d.f.AddFontFromBytes(c.key, "", js, z.deflate(c.file))
+		d.f.AddFontFromBytes(c.key, "", js, []byte("later"))
 	}
+	d.packing.Go(func() {
+		var z squeezer
+		for _, c := range used {
+			c.packed = z.deflate(c.file)
+		}
+	})
 	return d.f.Error()
 }
 

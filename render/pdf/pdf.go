@@ -75,7 +75,7 @@ func build(doc *page.Document, opt options) ([]byte, error) {
 	f.SetCreationDate(time.Unix(0, 0).UTC())
 	f.SetModificationDate(time.Unix(0, 0).UTC())
 	d := &drawer{f: f, s: s}
-	if err := d.fonts(z); err != nil {
+	if err := d.fonts(); err != nil {
 		return nil, fmt.Errorf("pdf: %w", err)
 	}
 	for i, l := range leaves {

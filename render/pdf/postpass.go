@@ -6,6 +6,7 @@ import (
 	"crypto/sha256"
 	"errors"
 	"fmt"
+	"slices"
 	"strconv"
 	"strings"
 	"time"
@@ -32,10 +33,10 @@ func (z *squeezer) deflate(data []byte) []byte {
 	return bytes.Clone(z.b.Bytes())
 }
 
-// drawn is what fpdf made: page contents and font files.
+// drawn is what fpdf made: page contents, and what it calls the faces.
 type drawn struct {
 	contents [][]byte
-	fonts    map[string][]byte // by the key the face was added under, deflated
+	fonts    []string // fpdf's name, a blank, the key the face was added under; sorted
 }
 
 var errDrawn = errors.New("pdf: the drawn file is not as expected")
@@ -83,7 +84,7 @@ func parseDrawn(b []byte) (*drawn, error) {
 	if err != nil {
 		return nil, err
 	}
-	out := &drawn{fonts: map[string][]byte{}}
+	out := &drawn{}
 	kids := t.object(1)
 	from, to := bytes.IndexByte(kids, '['), bytes.IndexByte(kids, ']')
 	if from < 0 || to < from {
@@ -108,12 +109,12 @@ func parseDrawn(b []byte) (*drawn, error) {
 		}
 		font := t.object(number(f[i+1:]))
 		name := word(font, "/BaseFont /")
-		file := streamOf(t.object(reference(t.object(reference(font, "/FontDescriptor ")), "/FontFile2 ")))
-		if name == "" || file == nil {
+		if name == "" {
 			return nil, errDrawn
 		}
-		out.fonts[string(f[:i])+" "+name] = file
+		out.fonts = append(out.fonts, string(f[:i])+" "+name)
 	}
+	slices.Sort(out.fonts)
 	return out, nil
 }
 

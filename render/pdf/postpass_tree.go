@@ -2,7 +2,6 @@ package pdf
 
 import (
 	"fmt"
-	"sort"
 	"strconv"
 	"strings"
 	"time"
@@ -26,17 +25,13 @@ type press struct {
 // fonts writes each face: Type0 over a CID font whose CIDs are glyph numbers.
 func (p *press) fonts(dr *drawn) error {
 	var res []string
-	keys := make([]string, 0, len(dr.fonts))
-	for k := range dr.fonts {
-		keys = append(keys, k)
-	}
-	sort.Strings(keys)
+	p.d.packing.Wait()
 	for _, c := range p.d.s.cuts {
 		if c == nil || c.file == nil {
 			continue
 		}
 		found := ""
-		for _, k := range keys {
+		for _, k := range dr.fonts {
 			if strings.HasSuffix(k, " "+c.key) {
 				found = k
 			}
@@ -44,14 +39,14 @@ func (p *press) fonts(dr *drawn) error {
 		if found == "" {
 			return errDrawn
 		}
-		font := p.font(c, dr.fonts[found])
+		font := p.font(c)
 		res = append(res, fmt.Sprintf("/F%s %d 0 R", found[:strings.IndexByte(found, ' ')], font))
 	}
 	p.resources = "<</Font<<" + strings.Join(res, "") + ">>>>"
 	return nil
 }
 
-func (p *press) font(c *cut, deflated []byte) int {
+func (p *press) font(c *cut) int {
 	f := c.face
 	name := c.subsetName(c.file)
 	font, cid, desc, prog, uni := p.reserve(), p.reserve(), p.reserve(), p.reserve(), p.reserve()
@@ -74,7 +69,7 @@ func (p *press) font(c *cut, deflated []byte) int {
 	p.object(desc, fmt.Sprintf("<</Type/FontDescriptor/FontName/%s/Flags %d/FontBBox[%d %d %d %d]/ItalicAngle %s/Ascent %d/Descent %d/CapHeight %d/StemV 80/FontFile2 %d 0 R%s>>",
 		name, flags, f.thousand(int(f.bbox[0])), f.thousand(int(f.bbox[1])), f.thousand(int(f.bbox[2])), f.thousand(int(f.bbox[3])),
 		strconv.FormatFloat(f.italicAngle, 'f', -1, 64), f.ascent, f.descent, f.capHeight, prog, set))
-	p.raw(prog, fmt.Sprintf("/Filter/FlateDecode/Length1 %d", len(c.file)), deflated)
+	p.raw(prog, fmt.Sprintf("/Filter/FlateDecode/Length1 %d", len(c.file)), c.packed)
 	p.stream(uni, "", c.toUnicode())
 	return font
 }

@@ -16,6 +16,8 @@ type cut struct {
 	used []rune // by glyph number, 0 when unused
 	last int    // highest glyph used
 	file []byte // the cut face, once made
+
+	packed []byte // the file, compressed; wait for the drawer's packing
 }
 
 func newCut(f *face, key string) *cut { return &cut{face: f, key: key, used: make([]rune, f.glyphs)} }
