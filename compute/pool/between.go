@@ -28,12 +28,9 @@ func (b Between) tau2(studies []Study, near float64) float64 {
 // dersimonianLaird is the moment estimator (DerSimonian & Laird 1986, from
 // memory).
 func dersimonianLaird(studies []Study) float64 {
-	_, sw, q := moments(studies, 0)
-	var sw2 float64
-	for _, s := range studies {
-		sw2 += 1 / (s.V * s.V)
-	}
-	return math.Max(0, (q-float64(len(studies)-1))/(sw-sw2/sw))
+	_, _, q := moments(studies, 0)
+	unit, sw, sw2 := weightSums(studies)
+	return math.Max(0, unit*(q-float64(len(studies)-1))/(sw-sw2/sw))
 }
 
 // sidikJonkman is the estimator of Sidik & Jonkman (2005, from memory),

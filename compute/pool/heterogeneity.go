@@ -20,12 +20,9 @@ type Heterogeneity struct {
 // studies that the model estimated, with limits at one-sided error a.
 func HeterogeneityOf(studies []Study, tau2, a float64) Heterogeneity {
 	k := float64(len(studies))
-	_, sw, q := moments(studies, 0)
-	var sw2 float64
-	for _, s := range studies {
-		sw2 += 1 / (s.V * s.V)
-	}
-	typical := (k - 1) * sw / (sw*sw - sw2)
+	_, _, q := moments(studies, 0)
+	unit, sw, sw2 := weightSums(studies)
+	typical := unit * (k - 1) * sw / (sw*sw - sw2)
 	share := func(t float64) float64 {
 		if math.IsInf(t, 1) {
 			return 1
@@ -48,6 +45,21 @@ func HeterogeneityAbout(studies []Study, mu float64) Heterogeneity {
 	}
 	h.P, h.H2 = dist.ChiSquareUpper(h.Q, h.DF), h.Q/h.DF
 	return h
+}
+
+// weightSums are the sums of w and w² at no variance between studies, w being
+// unit/v with the least variance as unit, so that squares stay in range.
+func weightSums(studies []Study) (unit, sw, sw2 float64) {
+	unit = studies[0].V
+	for _, s := range studies {
+		unit = math.Min(unit, s.V)
+	}
+	for _, s := range studies {
+		w := unit / s.V
+		sw += w
+		sw2 += w * w
+	}
+	return unit, sw, sw2
 }
 
 // LeaveOneOut refits the model without each study in turn; O(k^2), each fit
