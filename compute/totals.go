@@ -45,16 +45,16 @@ func (r *run) primary(o *record.Outcome) bool {
 }
 
 // firstTotal is the count of one group of one entry. Missing are those
-// randomised and neither analysed nor excluded as planned, or else the rows of
-// a data file that lack a value.
+// randomised and not analysed, for whatever reason, so that the three numbers
+// add up; or else the rows of a data file that lack a value.
 func firstTotal(outcome string, g result.GroupNumbers, s result.Study) result.GroupTotal {
 	t := result.GroupTotal{Outcome: outcome, Group: g.Name, Randomised: g.Randomised, Analysed: g.Analysed}
 	if !t.Analysed.OK {
 		t.Analysed = g.N
 	}
 	switch {
-	case g.Randomised.OK && t.Analysed.OK && g.Randomised.V >= t.Analysed.V+float64(g.Excluded):
-		t.Missing = result.Some(g.Randomised.V - t.Analysed.V - float64(g.Excluded))
+	case g.Randomised.OK && t.Analysed.OK && g.Randomised.V >= t.Analysed.V:
+		t.Missing = result.Some(g.Randomised.V - t.Analysed.V)
 	case s.Form == "data":
 		t.Missing = result.Some(float64(g.Missing))
 	}
