@@ -67,7 +67,7 @@ func noNaN(t reporter, what string, m *Inference) {
 	}
 	levels := []float64{0.025, 0.4, 1e-12, 1e-300}
 	if m.Costly {
-		levels = levels[2:] // 0.025 has been asked for already
+		levels = levels[2:3] // 0.025 has been asked for already
 	}
 	for _, a := range levels {
 		low, high := m.Method.Limits(a)
@@ -166,8 +166,8 @@ func TestHardSummaries(t *testing.T) {
 			if n != 2 && n != 1e6 && n != 0 || s == 1e150 || s == 1e-9 {
 				continue // like their neighbours, and each takes its time
 			}
-			for _, mean := range []float64{0, 1e9, -3, math.NaN()} {
-				for _, spec := range [][2]float64{{-1, 2}, {math.Inf(-1), 2}, {-1, math.Inf(1)}, {0, 1e-9}, {-1e300, 1e300}} {
+			for _, mean := range []float64{0, 1e9, math.NaN()} {
+				for _, spec := range [][2]float64{{-1, 2}, {math.Inf(-1), 2}, {0, 1e-9}} {
 					try(fmt.Sprint(what, " mean ", mean, spec), "conforming-share", "normal", Input{Sample: Group{N: n, Mean: mean, SD: s}, Spec: spec})
 				}
 			}
