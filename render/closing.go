@@ -141,7 +141,7 @@ func (c *composer) methods() {
 			continue
 		}
 		seen[[2]string{w.word, k.Title}] = true
-		t.row(w.word, k.Title, k.Formula, k.Assumptions, k.Source)
+		t.row(w.word, k.Title, formula(k.Formula), formula(k.Assumptions), k.Source)
 	}
 	for i, share := range []float64{0.13, 0.16, 0.32, 0.22, 0.17} {
 		t.Columns[i].Share = share

@@ -131,3 +131,20 @@ func pluralWord(n int, one, many string) string {
 	}
 	return many
 }
+
+// formula writes the minus signs of a card's formula: a hyphen between blanks
+// or before a digit. Hyphens within words stay.
+func formula(s string) string {
+	r := []rune(s)
+	for i, c := range r {
+		if c != '-' || i == 0 || i+1 == len(r) {
+			continue
+		}
+		spaced := r[i-1] == ' ' && r[i+1] == ' '
+		power := r[i-1] == 'e' && i > 1 && r[i-2] >= '0' && r[i-2] <= '9' // 1e-8
+		if spaced || !power && r[i+1] >= '0' && r[i+1] <= '9' {
+			r[i] = '−'
+		}
+	}
+	return string(r)
+}

@@ -100,3 +100,13 @@ func TestDroppedText(t *testing.T) {
 		t.Errorf("got %q, want %q", got, want)
 	}
 }
+
+func TestFormula(t *testing.T) {
+	for in, want := range map[string]string{
+		"B)²/(n₂-1) of 1 - 2 one_sided": "B)²/(n₂−1) of 1 − 2 one_sided", "mid-p and hartung-knapp -": "mid-p and hartung-knapp -", "k = 0 … d-1": "k = 0 … d−1", "below 1e-8": "below 1e-8",
+	} {
+		if got := formula(in); got != want {
+			t.Errorf("%q: got %q, want %q", in, got, want)
+		}
+	}
+}
