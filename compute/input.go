@@ -211,7 +211,11 @@ func (r *run) groupsOf(e entry, s spec) (first, second effect.Group) {
 	if r.clusterMeans(e, s) {
 		values, group = clusterMeans(v, s.measure.Word == "geometric-mean-ratio")
 	}
-	var split [2][]float64
+	var size [2]int
+	for i := range values {
+		size[group[i]]++
+	}
+	split := [2][]float64{make([]float64, 0, size[0]), make([]float64, 0, size[1])}
 	for i, x := range values {
 		split[group[i]] = append(split[group[i]], x)
 	}
