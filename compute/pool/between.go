@@ -29,8 +29,12 @@ func (b Between) tau2(studies []Study, near float64) float64 {
 // memory).
 func dersimonianLaird(studies []Study) float64 {
 	_, _, q := moments(studies, 0)
-	unit, sw, sw2 := weightSums(studies)
-	return math.Max(0, unit*(q-float64(len(studies)-1))/(sw-sw2/sw))
+	unit, sw, cross := weightSums(studies)
+	excess := q - float64(len(studies)-1)
+	if !(excess > 0) || cross == 0 {
+		return 0
+	}
+	return excess * unit * sw / cross
 }
 
 // sidikJonkman is the estimator of Sidik & Jonkman (2005, from memory),

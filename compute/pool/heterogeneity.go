@@ -21,8 +21,8 @@ type Heterogeneity struct {
 func HeterogeneityOf(studies []Study, tau2, a float64) Heterogeneity {
 	k := float64(len(studies))
 	_, _, q := moments(studies, 0)
-	unit, sw, sw2 := weightSums(studies)
-	typical := unit * (k - 1) * sw / (sw*sw - sw2)
+	unit, sw, cross := weightSums(studies)
+	typical := unit * (k - 1) * sw / cross
 	share := func(t float64) float64 {
 		if math.IsInf(t, 1) {
 			return 1
@@ -47,19 +47,25 @@ func HeterogeneityAbout(studies []Study, mu float64) Heterogeneity {
 	return h
 }
 
-// weightSums are the sums of w and w² at no variance between studies, w being
-// unit/v with the least variance as unit, so that squares stay in range.
-func weightSums(studies []Study) (unit, sw, sw2 float64) {
+// weightSums are, at no variance between studies, the sum of w and the sum of
+// w times all other w, w being unit/v with the least variance as unit, so that
+// products stay in range; the others are added up, never taken off the sum, so
+// that one heavy study does not hide them.
+func weightSums(studies []Study) (unit, sw, cross float64) {
 	unit = studies[0].V
 	for _, s := range studies {
 		unit = math.Min(unit, s.V)
 	}
-	for _, s := range studies {
-		w := unit / s.V
-		sw += w
-		sw2 += w * w
+	after := make([]float64, len(studies)+1)
+	for i := len(studies) - 1; i >= 0; i-- {
+		after[i] = after[i+1] + unit/studies[i].V
 	}
-	return unit, sw, sw2
+	for i, s := range studies {
+		w := unit / s.V
+		cross += w * (sw + after[i+1])
+		sw += w
+	}
+	return unit, sw, cross
 }
 
 // LeaveOneOut refits the model without each study in turn; O(k^2), each fit
