@@ -63,6 +63,7 @@ func Load(name string, text, sealText []byte, files fs.FS) *Loaded {
 	}
 	in.Seal, faults = seal.Compare(rec, in.Tables, chain)
 	in.Diagnostics = append(in.Diagnostics, faults...)
+	in.Diagnostics = append(in.Diagnostics, in.Seal.Witness(rec, files)...)
 	if in.Seal.Substantive() {
 		in.Sealed = underSeal(rec, in.Seal, files)
 	}

@@ -5,6 +5,9 @@ import "steelyard/protocol/card"
 // digests is the source of everything that rests on a digest.
 const digests = "FIPS 180-4 (SHA-256) and RFC 8785 (canonical JSON), from memory"
 
+// stamps3161 is the source of everything about tokens.
+const stamps3161 = "RFC 3161 (time-stamp protocol), RFC 5652 (signed data), RFC 5280 (certificates), from memory"
+
 // Cards explains the codes of seals.
 var Cards = []card.Card{
 	{Kind: card.Diagnostic, Word: "L101", Title: "not a chain of seals", Source: digests,
@@ -56,4 +59,25 @@ var Cards = []card.Card{
 	{Kind: card.Diagnostic, Word: "L209", Title: "witness of no seal", Source: "common practice, no source",
 		Meaning: "A [[witness]] names a seal that the chain does not have.",
 		Repair:  "Correct the number, or take back the longer chain."},
+	{Kind: card.Diagnostic, Word: "L210", Title: "token cannot be read", Source: stamps3161,
+		Meaning: "The file of a [[witness]] is missing, too large, or no reply or token that this program can check.",
+		Formula: "Read are RFC 3161 replies and bare tokens in DER, of at most 64 KiB, signed by RSA or ECDSA with SHA-256, SHA-384 or SHA-512.",
+		Repair:  "Keep the reply of the authority, as it came, beside the record and name it in token."},
+	{Kind: card.Diagnostic, Word: "L211", Title: "token of something else", Source: stamps3161,
+		Meaning: "The token is not of the seal that the [[witness]] names.",
+		Formula: "A token holds the SHA-256 that was sent; it must be that of the entry of the seal, its last line in the chain.",
+		Repair:  "Correct the number of the seal, or name the token that belongs to it."},
+	{Kind: card.Diagnostic, Word: "L212", Title: "token refused", Source: stamps3161,
+		Meaning: "The token is of the seal, but its signature, the certificate of its signer, or the way from there to the authority in ca does not hold.",
+		Formula: "All as of the time in the token; the certificate must be critically for time stamps and for nothing else. Revocation is not looked up.",
+		Repair:  "Take the reply back as the authority sent it, and name the certificates of that authority in ca."},
+	{Kind: card.Diagnostic, Word: "L213", Title: "authority cannot be read", Source: stamps3161,
+		Meaning: "The file in ca is missing, too large, or holds no certificate, so that the token was not checked.",
+		Repair:  "Put the certificates of the authority there, as PEM or DER, or leave ca out: then the chain is printed as not checked."},
+	{Kind: card.Diagnostic, Word: "L214", Title: "other time than the token", Source: "common practice, no source",
+		Meaning: "The time in at is not the one in the token, by more than a minute and the accuracy that the token states.",
+		Repair:  "Write the time of the token, or leave at out."},
+	{Kind: card.Diagnostic, Word: "L215", Title: "witnessed before it was sealed", Source: "common practice, no source",
+		Meaning: "The token is older than the time that its seal bears, which cannot be: the clock was wrong when the plan was sealed.",
+		Repair:  "Rely on the time of the token, and say in the record why the clock was wrong."},
 }

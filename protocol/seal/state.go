@@ -43,6 +43,7 @@ type State struct {
 	Edited     []Edited    // results that are not as they were sealed
 	Vanished   []Vanished  // deviations that are not as they were sealed
 	Defaults   []Change    // defaults that this program chooses otherwise
+	Witnesses  []Witness   // of each [[witness]], in order; filled by Witness
 
 	// Unreadable says why the binding plan could not be read again as a record
 	// with the present results; empty where it could or was not needed.
