@@ -21,6 +21,7 @@ func (r *run) describe() {
 		r.res.Record.Status = "draft"
 	}
 	r.res.Seal = sealOf(r.in.Seal)
+	r.res.Seal.Witnesses = witnesses(r.in.Seal, r.rec)
 	for _, o := range r.rec.Plan.Outcomes {
 		if m := record.MeasureOf(o.Measure.V); m != nil {
 			r.res.Outcomes = append(r.res.Outcomes, outcomeOf(o, m))

@@ -31,6 +31,28 @@ func sealOf(s *seal.State) result.Seal {
 	for _, v := range s.Vanished {
 		out.Vanished = append(out.Vanished, v.Date)
 	}
+	out.OrderProved = s.Proved()
+	return out
+}
+
+// witnesses copies what became of each witness, beside what the record says.
+func witnesses(s *seal.State, rec *record.Record) (out []result.Witness) {
+	for i, w := range rec.Witnesses {
+		if s == nil || i >= len(s.Witnesses) {
+			break
+		}
+		found := s.Witnesses[i]
+		at := found.At
+		if found.Outcome == seal.Stated {
+			at = w.At.V.UTC()
+		}
+		x := result.Witness{Seal: found.Seal, What: w.What.V, Reference: w.Reference.V, Outcome: found.Outcome, Why: found.Why,
+			Authority: found.Authority, Chain: found.Chain, CA: found.CA}
+		if !at.IsZero() {
+			x.At = at.Format(time.RFC3339Nano)
+		}
+		out = append(out, x)
+	}
 	return out
 }
 

@@ -7,6 +7,7 @@ import (
 
 	"steelyard/compute/result"
 	"steelyard/protocol/record"
+	"steelyard/protocol/seal"
 )
 
 // timeline gathers what happened, in order. Dates without a time of day come
@@ -46,7 +47,12 @@ func (r *run) timeline() {
 			day(d.Approved.Date.V, "approval", fmt.Sprintf("of the deviation, by %s", d.Approved.By.V))
 		}
 	}
-	for _, w := range rec.Witnesses {
+	for i, w := range rec.Witnesses {
+		if s := r.in.Seal; s != nil && i < len(s.Witnesses) && s.Witnesses[i].Outcome == seal.Verified {
+			at := s.Witnesses[i].At
+			all = append(all, result.Event{At: at.Format("2006-01-02 15:04 UTC"), Sort: at.Format(sortable), Kind: "witness", What: fmt.Sprintf("of seal %d: time stamp of %s", w.Seal.V, s.Witnesses[i].Authority)})
+			continue
+		}
 		if w.At.Stated {
 			all = append(all, instant(w.At, "witness", strings.TrimSpace(fmt.Sprintf("of seal %d: %s %s", w.Seal.V, w.What.V, w.Reference.V))))
 		}

@@ -250,7 +250,7 @@ func (c *composer) sealText() string {
 	if s.State == "broken" {
 		return "Broken chain: " + fullStop(s.Broken)
 	}
-	return capital(orderText(s.Order)) + sealWhen(s)
+	return capital(orderText(s.Order)) + sealWhen(s) + witnessedBy(s)
 }
 
 // orderText is the order of seal and results in words.

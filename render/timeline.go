@@ -29,4 +29,5 @@ func (c *composer) timeline() {
 		t.row(e.At, e.What, e.Kind, order)
 	}
 	t.to(c)
+	c.witnesses()
 }

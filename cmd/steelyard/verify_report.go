@@ -13,6 +13,7 @@ import (
 	"steelyard/cmd/internal/term"
 	"steelyard/cmd/internal/version"
 	"steelyard/protocol/seal"
+	"steelyard/render"
 )
 
 // maxShown bounds how many differences of a file are listed at a prompt.
@@ -68,10 +69,8 @@ func verifiedReport(path string, v *issued.Verified, width int) []byte {
 	}
 	if c := v.Compiled; c != nil && !c.Diagnostics.HasErrors() {
 		standing(b, c.Loaded.Seal)
-		for _, w := range c.Loaded.Record.Witnesses {
-			if w != nil {
-				b.Row("witness", "seal %d: %s, %s", w.Seal.V, w.What.V, w.Reference.V)
-			}
+		for _, w := range c.Result.Seal.Witnesses {
+			b.Row("witness", "%s", render.WitnessText(&w))
 		}
 		if words := verdicts(c.Result); words != "" {
 			b.Row("verdicts", "%s", words)

@@ -83,6 +83,20 @@ type Seal struct {
 	Amendments    []Amendment
 	Vanished      []string // dates of sealed deviations that are changed or gone
 	Unreadable    []string // why the sealed plan could not be computed
+	Witnesses     []Witness
+	OrderProved   bool // witnesses show that every result came after its seal
+}
+
+// Witness is what became of one [[witness]].
+type Witness struct {
+	Seal            int
+	What, Reference string
+	Outcome         string   // stated, verified, other-digest, refused, unread
+	Why             string   // why it is neither stated nor verified
+	At              string   // RFC 3339, UTC: of the token; of the record where it is only stated
+	Authority       string   // who signed the token, as the certificate says
+	Chain           bool     // the certificate leads to the authority in the record's own file
+	CA              []string // SHA-256 of the certificates in that file
 }
 
 // Amendment is what one seal changed in the plan of the seal before it.

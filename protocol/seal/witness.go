@@ -209,8 +209,8 @@ func authority(files fs.FS, name string) (out []*x509.Certificate, err error) {
 		if block, rest = pem.Decode(rest); block == nil {
 			break
 		}
-		if block.Type != "CERTIFICATE" {
-			continue
+		if block.Type != "CERTIFICATE" { // the file goes into the document: no key may
+			return nil, fmt.Errorf("%s holds something else than certificates", path.Base(name))
 		}
 		var c *x509.Certificate
 		if c, err = certificate(block.Bytes); err == nil {

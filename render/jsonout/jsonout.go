@@ -166,6 +166,24 @@ func sealObject(res *result.Result) *object {
 	}))
 	o.some("not_computed", words(s.Unreadable))
 	o.text("broken", s.Broken)
+	o.some("witnesses", each(s.Witnesses, witnessObject))
+	if len(s.Witnesses) > 0 {
+		o.flag("order_proved", s.OrderProved)
+	}
+	return o
+}
+
+func witnessObject(w *result.Witness) *object {
+	o := &object{}
+	o.integer("seal", w.Seal)
+	o.str("what", w.What)
+	o.text("reference", w.Reference)
+	o.str("outcome", w.Outcome)
+	o.text("why", w.Why)
+	o.text("at", w.At)
+	o.text("authority", w.Authority)
+	o.flag("chain", w.Chain)
+	o.some("ca", words(w.CA))
 	return o
 }
 

@@ -18,7 +18,9 @@ func sealSchema() *object {
 		may("order", oneOf("before-results", "same-day", "after-results", "unsealed")), must("declared", array(text())), must("undeclared", array(text())), may("wording", array(text())),
 		must("edited_results", array(fields(append(resultNameFields(), may("file", text()), must("removed", yesNo()), must("declared", yesNo()), may("seal", integer()))...))),
 		may("vanished_deviations", array(text())), may("amendments", array(fields(must("seal", integer()), must("at", text()), must("changed", array(fields(must("path", text()), may("old", text()), may("new", text()))))))),
-		may("not_computed", array(text())), may("broken", text()))
+		may("not_computed", array(text())), may("broken", text()), may("order_proved", yesNo()),
+		may("witnesses", array(fields(must("seal", integer()), must("what", text()), may("reference", text()), must("outcome", oneOf("stated", "verified", "other-digest", "refused", "unread")),
+			may("why", text()), may("at", text()), may("authority", text()), must("chain", yesNo()), may("ca", array(text()))))))
 }
 
 func outcomesSchema() *object {

@@ -73,7 +73,10 @@ func (d *Document) take(list []pdf.Attachment) {
 	for _, a := range list {
 		d.Damaged = d.Damaged || a.Sum == "differs"
 		base := plainName(a.Name)
+		witness, carried := strings.CutPrefix(a.Description, pipeline.WitnessOf)
 		switch {
+		case carried:
+			d.Data[path.Clean(witness)] = a.Bytes
 		case a.Relation == "Source" && d.Record == nil && strings.HasSuffix(base, ".toml"):
 			d.Name, d.Record = base, a.Bytes
 		case a.Relation == pipeline.RelationSeal && d.Seal == nil && strings.HasSuffix(base, ".seal"):

@@ -92,7 +92,32 @@ func Verify(file []byte, opt Options) (*Verified, error) {
 		v.appended(first)
 		return v, nil
 	}
+	if missing := v.witnessFiles(opt.Folder); len(missing) > 0 {
+		v.Finding = NotCheckable
+		v.Reason = "files of its witnesses are not inside: " + strings.Join(missing, ", ")
+		v.Help = "put them into a folder, with the data that are not inside, and name it with --data"
+		return v, nil
+	}
 	return v, v.compare(again)
+}
+
+// witnessFiles are the files that witnesses name and that are nowhere: a
+// document carries those only that could be read as what they should be.
+func (v *Verified) witnessFiles(folder fs.FS) (missing []string) {
+	for _, w := range v.Compiled.Loaded.Record.Witnesses {
+		for _, name := range []string{w.Token.V, w.CA.V} {
+			if name == "" {
+				continue
+			}
+			f, err := (carried{v.Data, folder}).Open(path.Clean(name))
+			if err != nil {
+				missing = append(missing, name)
+				continue
+			}
+			f.Close()
+		}
+	}
+	return missing
 }
 
 // fetch looks in a folder for the record that page one names by its digest.

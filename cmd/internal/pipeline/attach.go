@@ -24,6 +24,9 @@ const (
 	// DataOf begins the description of a data file; its path in the record's
 	// folder follows.
 	DataOf = "data file "
+
+	// WitnessOf begins that of a token or of the certificates of an authority.
+	WitnessOf = "witness file "
 )
 
 // attach adds what only the bytes at hand can give: the record's seal and its
@@ -51,13 +54,23 @@ func (c *Compiled) attach(in Input) error {
 		}
 		add(base+".json", "application/json", "the numbers of this document, in full", RelationJSON, b.Bytes())
 	}
-	wanted := slices.ContainsFunc(head.Attach.V, func(s record.String) bool { return s.V == "data" })
-	if !wanted || in.Files == nil {
-		return nil
-	}
 	var names []string
 	for _, a := range c.Page.Attachments {
 		names = append(names, a.Name)
+	}
+	if len(names) > 0 && in.Files != nil {
+		for _, file := range c.witnessFiles() {
+			text, err := fs.ReadFile(in.Files, file)
+			if err != nil {
+				return err
+			}
+			names = append(names, attachedName(file, names))
+			add(names[len(names)-1], "application/octet-stream", WitnessOf+file, RelationSeal, text)
+		}
+	}
+	wanted := slices.ContainsFunc(head.Attach.V, func(s record.String) bool { return s.V == "data" })
+	if !wanted || in.Files == nil {
+		return nil
 	}
 	for _, file := range c.Data() {
 		text, err := fs.ReadFile(in.Files, file)
@@ -71,6 +84,23 @@ func (c *Compiled) attach(in Input) error {
 		add(names[len(names)-1], "text/csv", DataOf+file, RelationData, text)
 	}
 	return nil
+}
+
+// witnessFiles are the tokens and certificates of witnesses that could be read
+// as such, each once: no other file is carried because a witness names it.
+func (c *Compiled) witnessFiles() (list []string) {
+	state := c.Loaded.Seal
+	for i, w := range c.Loaded.Record.Witnesses {
+		if state == nil || i >= len(state.Witnesses) || state.Witnesses[i].Outcome == seal.Stated || state.Witnesses[i].Outcome == seal.Unread {
+			continue
+		}
+		for _, file := range []string{w.Token.V, w.CA.V} {
+			if file != "" && !slices.Contains(list, path.Clean(file)) {
+				list = append(list, path.Clean(file))
+			}
+		}
+	}
+	return list
 }
 
 // read reports whether the data were read from a file with this digest.
