@@ -19,7 +19,7 @@ const (
 	notInPool    = "study %s cannot be pooled: %s"
 	pOnly        = "study %s gives a p-value alone and is not in the pool"
 	fewStudies   = "only %d studies: their variance between each other is hardly known, and the interval says less than it seems to"
-	floored      = "the studies agree better than their own errors suggest (q = %.4g); the error was not reduced for it. Without this floor the interval would be %.6g to %.6g"
+	floored      = "the studies scatter less around their mean than their errors and the estimated variance between them would suggest (q = %.4g, below 1); the error was not reduced for it. Without this floor the interval would be %.4g to %.4g"
 	leftForZero  = "left out of the pooled ratio because no or all subjects of both groups have events: %s"
 	corrected    = "%.3g was added to the cells of studies with a zero cell: %s"
 	smallStudies = "the small-study check needs ten studies or more; there are %d"

@@ -24,7 +24,7 @@ var Cards = []card.Card{
 		Repair:  "Delete it. A zero byte means that the file is no text, or is UTF-16."},
 	{Kind: card.Diagnostic, Word: "R103", Title: "the record is too long", Source: ours,
 		Meaning: "The file is longer than any record needs to be, and is not read.",
-		Formula: "At most 4 MiB.",
+		Formula: "At most 32 MiB.",
 		Repair:  "Put individual values into a CSV file and name it under `data`."},
 	{Kind: card.Diagnostic, Word: "R104", Title: "nested too deep", Source: ours,
 		Meaning: "Arrays or tables stand inside each other deeper than a record ever needs; the rest is not read.",

@@ -11,10 +11,10 @@ import (
 
 // Bounds of what is read. A record never comes near them; a hostile file does.
 const (
-	maxBytes  = 4 << 20 // of the whole text
-	maxDepth  = 24      // of arrays and inline tables inside each other
-	maxParts  = 12      // of one dotted key
-	maxFaults = 100     // of syntax, before the rest is left unread
+	maxBytes  = 32 << 20 // of the whole text
+	maxDepth  = 24       // of arrays and inline tables inside each other
+	maxParts  = 12       // of one dotted key
+	maxFaults = 100      // of syntax, before the rest is left unread
 )
 
 // statementKind is what one statement of the file is.
