@@ -26,8 +26,8 @@ func Run(in *protocol.Loaded, engine string) *result.Result {
 		return r.res
 	}
 	r.studies()
-	r.totals()
 	r.decide()
+	r.totals()
 	r.pooledEvidence()
 	r.sensitivities()
 	r.beliefs()

@@ -251,7 +251,7 @@ func TestDroppedRowsAndFlow(t *testing.T) {
 	if total != 4 {
 		t.Errorf("%d rows dropped: %+v", total, f.Dropped)
 	}
-	if len(res.Totals) != 2 || res.Totals[0].Randomised.V != 5 || res.Totals[0].Analysed.V != 2 || res.Totals[0].Missing.V != 3 || res.Totals[1].Missing.V != 2 || res.Totals[1].Randomised.OK {
+	if len(res.Totals) != 2 || res.Totals[0].Randomised.V != 5 || res.Totals[0].Analysed.V != 2 || res.Totals[0].Missing.V != 2 || res.Totals[0].Excluded.V != 1 || res.Totals[1].Missing.V != 2 || res.Totals[1].Randomised.OK {
 		t.Errorf("totals %+v", res.Totals)
 	}
 }

@@ -6,12 +6,13 @@ import (
 )
 
 // totals counts, for every outcome of a primary hypothesis and group, the
-// subjects of its analysed entries in the first analysis set. A number that
-// some entry does not give does not apply to the whole.
+// subjects of its analysed entries in the analysis set that decides its first
+// primary hypothesis. A number that some entry does not give does not apply to
+// the whole.
 func (r *run) totals() {
-	set := r.sets()[0]
 	for _, o := range r.rec.Plan.Outcomes {
-		if !r.primary(o) {
+		set, ok := r.primary(o)
+		if !ok {
 			continue
 		}
 		var list []result.GroupTotal
@@ -35,34 +36,51 @@ func (r *run) totals() {
 	}
 }
 
-func (r *run) primary(o *record.Outcome) bool {
-	for _, h := range r.rec.Plan.Hypotheses {
-		if h.Outcome.V == o.Name && (h.Role.V == "primary" || h.Role.V == "") {
-			return true
+// primary finds the analysis set that decides the first primary hypothesis of
+// an outcome; ok is false without one.
+func (r *run) primary(o *record.Outcome) (set string, ok bool) {
+	for _, t := range r.tried {
+		if t.h.Outcome.V != o.Name || t.out.Role != "primary" {
+			continue
 		}
+		switch {
+		case t.deciding >= 0:
+			return t.bySet[t.deciding].set, true
+		case len(t.bySet) > 0:
+			return t.bySet[0].set, true
+		}
+		return r.sets()[0], true
 	}
-	return false
+	return "", false
 }
 
 // firstTotal is the count of one group of one entry. Missing are those
-// randomised and not analysed, for whatever reason, so that the three numbers
-// add up; or else the rows of a data file that lack a value.
+// randomised that are neither analysed nor excluded by the plan; of a data file
+// at least its rows without a value.
 func firstTotal(outcome string, g result.GroupNumbers, s result.Study) result.GroupTotal {
-	t := result.GroupTotal{Outcome: outcome, Group: g.Name, Randomised: g.Randomised, Analysed: g.Analysed}
-	if !t.Analysed.OK {
-		t.Analysed = g.N
-	}
+	t := result.GroupTotal{Outcome: outcome, Group: g.Name, Set: s.Set, Randomised: g.Randomised, Analysed: g.Analysed}
 	switch {
-	case g.Randomised.OK && t.Analysed.OK && g.Randomised.V >= t.Analysed.V:
-		t.Missing = result.Some(g.Randomised.V - t.Analysed.V)
 	case s.Form == "data":
-		t.Missing = result.Some(float64(g.Missing))
+		t.Analysed, t.Missing = g.N, result.Some(float64(g.Missing))
+		if g.Excluded > 0 {
+			t.Excluded = result.Some(float64(g.Excluded))
+		}
+		if lost := g.Randomised.V - g.N.V - float64(g.Excluded); g.Randomised.OK && lost > t.Missing.V {
+			t.Missing = result.Some(lost) // some have no row at all
+		}
+	case !t.Analysed.OK:
+		t.Analysed = g.N
+		fallthrough
+	default:
+		if g.Randomised.OK && t.Analysed.OK && g.Randomised.V >= t.Analysed.V {
+			t.Missing = result.Some(g.Randomised.V - t.Analysed.V)
+		}
 	}
 	return t
 }
 
 func add(t *result.GroupTotal, more result.GroupTotal) {
-	for _, c := range []struct{ sum, more *result.Opt }{{&t.Randomised, &more.Randomised}, {&t.Analysed, &more.Analysed}, {&t.Missing, &more.Missing}} {
+	for _, c := range []struct{ sum, more *result.Opt }{{&t.Randomised, &more.Randomised}, {&t.Analysed, &more.Analysed}, {&t.Missing, &more.Missing}, {&t.Excluded, &more.Excluded}} {
 		c.sum.V += c.more.V
 		c.sum.OK = c.sum.OK && c.more.OK
 		if !c.sum.OK {

@@ -88,7 +88,7 @@ var (
 	}
 	notInJSON = []string{
 		".Code", ".Because", ".Sort", ".Form", ".MeasureLabel", ".Dropped[].Group", ".Dropped[].Why", ".Changes[].Old", ".Changes[].New",
-		".Pooled[].Hypotheses[]", ".Priors[].Why", ".Survival[].Group", ".Totals[].Group", // not of the contract
+		".Pooled[].Hypotheses[]", ".Priors[].Why", ".Survival[].Group", ".Totals[].Group", ".Totals[].Set", // not of the contract
 	}
 )
 

@@ -119,6 +119,14 @@ func (c *composer) primary() []*result.Hypothesis {
 	return p
 }
 
+// setOf says in which analysis set a hypothesis was decided.
+func setOf(h *result.Hypothesis) string {
+	if len(h.BySet) > 1 {
+		return "Analysis set " + h.Set + ", the one of " + number.Int(len(h.BySet)) + " that decides."
+	}
+	return "Analysis set " + h.Set + "."
+}
+
 // verdictBlock is the page-one block of one hypothesis.
 // Where several share the page they stand closer: the reading joins the
 // qualifiers, and the figure leaves out numbers that the text gives. Where
@@ -130,6 +138,9 @@ func (c *composer) verdictBlock(h *result.Hypothesis, dense, crowded bool) page.
 	v.brief = dense
 	b.Claim = page.T(v.claimed())
 	b.Answer = v.answer(j)
+	if j.Set != "" && j.Estimate.OK {
+		b.Answer = append(b.Answer, page.Text(" "+setOf(h)))
+	}
 	if name, words := v.reading(j); name != "" {
 		if dense {
 			if b.Qualify != "" {

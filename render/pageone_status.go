@@ -61,6 +61,7 @@ func (c *composer) numbers(primary []*result.Hypothesis) string {
 			if many {
 				name = outcomeOf(c.res, t.Outcome).Label + ", " + name
 			}
+			name = strings.TrimSpace(name + " " + inSet(t.Set))
 			if counts := totalParts(t); len(counts) > 0 {
 				parts = append(parts, name+": "+strings.Join(counts, ", "))
 			}
@@ -123,9 +124,9 @@ func (c *composer) plannedSizes(primary []*result.Hypothesis) string {
 
 // denseNumbers are the same in one line: "planned / analysed: new 24 / 23".
 func (c *composer) denseNumbers() string {
-	heads := []string{"planned", "randomised", "analysed", "missing"}
+	heads := []string{"planned", "randomised", "analysed", "missing", "excluded"}
 	pick := func(t result.GroupTotal) []result.Opt {
-		return []result.Opt{t.Planned, t.Randomised, t.Analysed, t.Missing}
+		return []result.Opt{t.Planned, t.Randomised, t.Analysed, t.Missing, t.Excluded}
 	}
 	var used []int
 	many := false
@@ -163,7 +164,7 @@ func (c *composer) denseNumbers() string {
 			s += " " + outcomeOf(c.res, t.Outcome).Label + ","
 		}
 		last, some = t.Outcome, true
-		s += " " + strings.TrimSpace(t.Group+" "+strings.Join(n, number.Hard+"/"+number.Hard))
+		s += " " + strings.TrimSpace(strings.TrimSpace(t.Group+" "+inSet(t.Set))+" "+strings.Join(n, number.Hard+"/"+number.Hard))
 	}
 	if !some {
 		return ""
@@ -183,7 +184,16 @@ func totalParts(t result.GroupTotal) []string {
 	add(t.Randomised, "randomised")
 	add(t.Analysed, "analysed")
 	add(t.Missing, "missing")
+	add(t.Excluded, "excluded by the plan")
 	return p
+}
+
+// inSet names an analysis set after a group; "" without sets.
+func inSet(set string) string {
+	if set == "" {
+		return ""
+	}
+	return "(" + set + ")"
 }
 
 // groupParts are the counts of one group of one entry.

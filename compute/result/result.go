@@ -189,8 +189,9 @@ type GroupNumbers struct {
 // Group is "" for one-sample and paired measures. A number nobody stated does
 // not apply; Planned is of [plan.size] or the plan of looks.
 type GroupTotal struct {
-	Outcome, Group                         string
+	Outcome, Group, Set                    string // the analysis set that decides; "" without sets
 	Planned, Randomised, Analysed, Missing Opt
+	Excluded                               Opt // rows that a filter of the plan dropped
 }
 
 // SurvivalCurve is the Kaplan–Meier curve of one group: a step at each event
