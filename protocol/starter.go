@@ -33,8 +33,11 @@ func Starter(measure, claim string) ([]byte, error) {
 		}
 	}
 	c := record.ClaimOf(claim)
-	if c == nil || !slices.Contains(claims, claim) {
-		return nil, fmt.Errorf("there is no claim %q on a %s; the claims are %s", claim, measure, strings.Join(claims, ", "))
+	if c == nil {
+		return nil, fmt.Errorf("there is no claim %q; those on %s are %s", claim, measure, strings.Join(claims, ", "))
+	}
+	if !slices.Contains(claims, claim) {
+		return nil, fmt.Errorf("no first record of the measure %s is kept for the claim %q; there is one for %s", measure, claim, strings.Join(claims, ", "))
 	}
 	s := storyOf(m)
 	w := &starter{m: m, c: c, s: s}

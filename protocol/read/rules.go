@@ -196,6 +196,33 @@ var stock = map[string]bool{
 	"it seems reasonable": true, "seems reasonable": true, "reasonable": true, "lorem ipsum": true, "statistically significant": true,
 }
 
+// filler are the words of which a phrase without a reason is made: whatever
+// their order, they name no loss, no gain and no source.
+var filler = wordSet(`a an the it is was as of by per in on for to we our us and or not no so this that which with from at
+clinically clinical practically practical statistically relevant relevance meaningful important significant minimal minimum smallest
+difference effect change size margin limit value threshold standard care usual common practice convention conventional protocol plan
+agreed agreement consensus team group panel committee decided chosen set defined determined accepted acceptable reasonable appropriate
+think thought believe feel seems expert experts opinion judgement judgment experience literature previous published studies study based
+industry guideline guidelines rule thumb default small medium large x y z n tbd ok yes none`)
+
+func wordSet(text string) map[string]bool {
+	out := map[string]bool{}
+	for _, w := range strings.Fields(text) {
+		out[w] = true
+	}
+	return out
+}
+
+// empty reports whether every word is filler.
+func empty(words []string) bool {
+	for _, w := range words {
+		if !filler[w] {
+			return false
+		}
+	}
+	return true
+}
+
 // reason checks that a text gives a reason.
 func (c *checker) reason(v record.String, key string) {
 	if !v.Stated {
@@ -207,7 +234,7 @@ func (c *checker) reason(v record.String, key string) {
 	for len(plain) > 0 && (plain[0] == "a" || plain[0] == "the" || plain[0] == "it" || plain[0] == "is" || plain[0] == "an") {
 		plain = plain[1:]
 	}
-	if len(plain) < 2 || stock[strings.Join(plain, " ")] {
+	if len(plain) < 2 || empty(plain) || stock[strings.Join(plain, " ")] {
 		c.add(diag.Error("R308", v.Span, "%q gives no reason: %s", key, quoteShort(v.V)).
 			WithHelp("say what would be lost or gained at that size, and how it is known"))
 	}
