@@ -318,7 +318,7 @@ func agreementNormal(in Input) (*Inference, *Problem) {
 	if d := differences(in.Pairs); d != nil {
 		s = sampleOfValues(d, 1)
 	}
-	inf, bad := conforming(in, s, "the differences")
+	inf, bad := conforming(in, s, "the difference within pairs")
 	if bad != nil {
 		return nil, bad
 	}

@@ -103,11 +103,11 @@ func twoMeansWald(word string, s1, s2 sample) (Wald, []result.Note, *Problem) {
 		case s2.n < 1 || s2.nu() < 0:
 			return none, nil, problem("S101", tooFew, "the second group", s2.n, 1)
 		case s1.nu()+s2.nu() <= 0 || s1.n+s2.n < 3:
-			return none, nil, problem("S101", tooFew, "both groups together", s1.n+s2.n, 3)
+			return none, nil, problem("S101", tooFewOf, "both groups together", s1.n+s2.n, 3)
 		}
 		w := PooledVariance(difference, s1.eff, s1.sd, s2.eff, s2.sd)
 		if w.SE == 0 {
-			return none, nil, problem("S102", noVariation, "neither group")
+			return none, nil, problem("S102", neitherVaries)
 		}
 		return w, oneGroupConstant(s1, s2), nil
 	}
@@ -117,7 +117,7 @@ func twoMeansWald(word string, s1, s2 sample) (Wald, []result.Note, *Problem) {
 	case s2.n < 2 || s2.nu() <= 0:
 		return none, nil, problem("S101", tooFew, "the second group", s2.n, 2)
 	case s1.sd == 0 && s2.sd == 0:
-		return none, nil, problem("S102", noVariation, "neither group")
+		return none, nil, problem("S102", neitherVaries)
 	}
 	return Welch(difference, s1.c(), s1.nu(), s2.c(), s2.nu()), oneGroupConstant(s1, s2), nil
 }

@@ -15,10 +15,14 @@ func medianShift(word string) analysis {
 		if bad := rankInput(in, word); bad != nil {
 			return nil, bad
 		}
+		if len(in.First.Values) == 0 && len(in.Second.Values) == 0 {
+			return nil, problem("S104", needsData, word)
+		}
 		x, y := sorted(in.First.Values), sorted(in.Second.Values)
-		for who, v := range map[string][]float64{"the first group": x, "the second group": y} {
+		for i, v := range [][]float64{x, y} {
+			who := [...]string{"the first group", "the second group"}[i]
 			if len(v) == 0 {
-				return nil, problem("S104", needsData, word)
+				return nil, problem("S101", tooFew, who, 0, 1)
 			}
 			if bad := finiteValues("a value of "+who, v); bad != nil {
 				return nil, bad
@@ -31,7 +35,7 @@ func medianShift(word string) analysis {
 func rankSum(word string, x, y []float64, in Input) (*Inference, *Problem) {
 	m, n := len(x), len(y)
 	if m < 2 && n < 2 {
-		return nil, problem("S101", tooFew, "the groups", float64(m+n), 3)
+		return nil, problem("S101", tooFewOf, "the groups", float64(m+n), 3)
 	}
 	if x[0] == y[0] && x[0] == x[m-1] && x[0] == y[n-1] {
 		return nil, problem("S102", allTied)
@@ -65,6 +69,7 @@ func rankSum(word string, x, y []float64, in Input) (*Inference, *Problem) {
 		inf.Notes = append(inf.Notes, note("S206", rankChoice, used, why))
 	}
 	inf.Notes = append(inf.Notes, notes...)
+	inf.addInfinite(in.A)
 	inf.Costly = s.exact != nil
 	inf.Checks = []result.Check{check("pure-shift", normality(firstGroup, float64(m), x), normality(secondGroup, float64(n), y),
 		[]result.Shown{{What: "tied values", Value: tied(append(slices.Clone(x), y...))}})}

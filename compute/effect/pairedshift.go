@@ -24,7 +24,7 @@ func pairedShift(word string) analysis {
 		}
 		slices.Sort(d)
 		if len(d) < 2 {
-			return nil, problem("S101", tooFew, "the pairs", float64(len(d)), 2)
+			return nil, problem("S101", tooFewOf, "the pairs", float64(len(d)), 2)
 		}
 		if d[0] == d[len(d)-1] {
 			return nil, problem("S102", noVariation, "the difference within pairs")
@@ -63,6 +63,7 @@ func signedRank(word string, d []float64, in Input) (*Inference, *Problem) {
 	if ties && used == "signed-rank-exact" {
 		inf.Notes = append(inf.Notes, note("S208", tiedPairs))
 	}
+	inf.addInfinite(in.A)
 	inf.Checks = []result.Check{check("symmetric-differences", normality("", n, d), []result.Shown{{What: "tied values", Value: tied(d)}})}
 	return inf, nil
 }

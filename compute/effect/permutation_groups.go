@@ -33,9 +33,9 @@ func meanDifferencePermutation(in Input) (*Inference, *Problem) {
 	low, high := min(s1.moments.Min, s2.moments.Min), max(s1.moments.Max, s2.moments.Max)
 	switch {
 	case len(x)+len(y) < 3:
-		return nil, problem("S101", tooFew, "both groups together", len(x)+len(y), 3)
+		return nil, problem("S101", tooFewOf, "both groups together", len(x)+len(y), 3)
 	case low == high:
-		return nil, problem("S102", noVariation, "neither group")
+		return nil, problem("S102", neitherVaries)
 	}
 	exact := choose(len(x)+len(y), min(len(x), len(y))) <= exactSelections
 	var nulls []float64

@@ -119,7 +119,9 @@ const (
 	badSetting = "%s is %v, which is outside its range"
 
 	tooFew        = "%s has too few observations: %v, at least %v are needed"
+	tooFewOf      = "%s have too few observations: %v, at least %v are needed" // tooFew of several
 	noVariation   = "%s does not vary: no error can be computed"
+	neitherVaries = "neither group varies: no error can be computed"
 	outsideRange  = "%s is %v, which is outside the measure's range"
 	notWithU      = "method %q has no place for systematic_u"
 	notClustered  = "method %q needs independent individuals, so it has no design effect"

@@ -113,7 +113,7 @@ func standardized(in Input) (*Inference, *Problem) {
 		return nil, bad
 	}
 	if w.DF < 3 {
-		return nil, problem("S101", tooFew, "both groups together", s1.n+s2.n, 5)
+		return nil, problem("S101", tooFewOf, "both groups together", s1.n+s2.n, 5)
 	}
 	root := math.Sqrt(s1.eff * s2.eff / (s1.eff + s2.eff))
 	m := NoncentralT{T: ratio(w.Y, w.SE), DF: w.DF, Root: root}

@@ -223,7 +223,7 @@ func pairedSDRatio(in Input) (*Inference, *Problem) {
 	case in.DesignEffect != 1:
 		return nil, problem("S104", notClustered, "pitman-morgan")
 	case !(p.N >= 3) || math.IsInf(p.N, 0):
-		return nil, problem("S101", tooFew, "the pairs", p.N, 3)
+		return nil, problem("S101", tooFewOf, "the pairs", p.N, 3)
 	case !(p.FirstSD > smallestSD) || !(p.SecondSD > smallestSD):
 		return nil, problem("S102", noVariation, "one of the readings")
 	case !(math.Abs(p.R) < 1):

@@ -250,10 +250,10 @@ func mantelHaenszelOf(measure string) analysis {
 		}
 		s, _ := MantelHaenszel(measure, strata)
 		if s.Used == 0 {
-			return nil, problem("S101", tooFew, "the strata with both groups", 0, 1)
+			return nil, problem("S101", tooFewOf, "the strata with both groups", 0, 1)
 		}
 		if !s.OK && !record.MeasureOf(measure).IsRatio() {
-			return nil, problem("S102", noVariation, "events within the strata")
+			return nil, problem("S102", noVariation, "the outcome within the strata")
 		}
 		inf := stratifiedInference(measure, in, s)
 		inf.Events = result.Some(events)

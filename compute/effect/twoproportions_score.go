@@ -248,7 +248,7 @@ func scoreOf(k contrast, word string) analysis {
 		factor := 1.0
 		if word == "score" {
 			if !(t.size() > 1) {
-				return nil, problem("S101", tooFew, "both groups, divided by the design effect,", t.size(), 1)
+				return nil, problem("S101", tooFewOf, "both groups, divided by the design effect,", t.size(), 1)
 			}
 			factor = t.size() / (t.size() - 1)
 		}
