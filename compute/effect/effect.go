@@ -57,6 +57,9 @@ type Inference struct {
 	// NullOnly says that the test exists at the null alone: a claim at another
 	// point is S104.
 	NullOnly bool
+	// NoInterval says that no interval exists whatever the level: Limits gives
+	// the ends of the range, which the test need not agree with.
+	NoInterval bool
 	// Costly says that one test is expensive: curves use few points.
 	Costly bool
 	Notes  []result.Note

@@ -116,7 +116,7 @@ func rankCorrelationBonettWright(in Input) (*Inference, *Problem) {
 		if in.Pairs.First == nil {
 			return nil, problem("S102", perfectlyRelated)
 		}
-		return rankCorrelationPermutation(in)
+		return perfectlyRanked(in, n, r)
 	}
 	inf := fisherZ("bonett-wright", n, r, bonettWright(n, r))
 	inf.Checks = []result.Check{check("monotone-relation", tiesShown(in.Pairs))}
@@ -158,13 +158,21 @@ const (
 )
 
 func rankCorrelationPermutation(in Input) (*Inference, *Problem) {
+	if in.Pairs.First == nil {
+		return nil, problem("S104", needsData, "permutation")
+	}
+	if n := len(in.Pairs.First); n > permutationMost {
+		return nil, problem("S105", tooLarge, "permutation", permutationMost, n)
+	}
 	n, r, bad := ranked(in, "permutation")
 	if bad != nil {
 		return nil, bad
 	}
-	if in.Pairs.First == nil {
-		return nil, problem("S104", needsData, "permutation")
-	}
+	return permuted(in, n, r)
+}
+
+// permuted is the permutation test of a rank correlation of n pairs.
+func permuted(in Input, n, r float64) (*Inference, *Problem) {
 	if in.Null != 0 {
 		return nil, problem("S104", "the permutation test of a rank correlation is for the null 0 only, not %g", in.Null)
 	}
@@ -174,7 +182,7 @@ func rankCorrelationPermutation(in Input) (*Inference, *Problem) {
 		inf = fisherZ("permutation", n, r, bonettWright(n, r))
 		m.interval = inf.Method
 	} else {
-		inf = &Inference{Word: "permutation", Estimate: r, N: n, Notes: []result.Note{note("S206", perfectRanks)}}
+		inf = &Inference{Word: "permutation", Estimate: r, N: n, NoInterval: true, Notes: []result.Note{note("S206", perfectRanks)}}
 	}
 	ge, le, total := permuteRanks(midranks(in.Pairs.First), midranks(in.Pairs.Second), in.Seed)
 	m.up, m.down = dist.TailOf(ge/total), dist.TailOf(le/total)
@@ -184,6 +192,15 @@ func rankCorrelationPermutation(in Input) (*Inference, *Problem) {
 	inf.Method, inf.NullOnly = m, true
 	inf.Checks = []result.Check{check("exchangeable-pairs", tiesShown(in.Pairs))}
 	return inf, nil
+}
+
+// perfectlyRanked stands in for a method that has no error at |r| = 1. Beyond
+// the size of the permutation test nothing does.
+func perfectlyRanked(in Input, n, r float64) (*Inference, *Problem) {
+	if n > permutationMost {
+		return nil, problem("S102", perfectlyRelated)
+	}
+	return permuted(in, n, r)
 }
 
 // permuteRanks counts the orders of b whose product sum with a is at least,

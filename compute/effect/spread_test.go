@@ -175,3 +175,52 @@ func TestRankPermutation(t *testing.T) {
 		t.Errorf("perfect ranks: %s, %g to %g", perfect.Word, low, high)
 	}
 }
+
+// Ranks that are perfectly related have a test at the null and no interval:
+// the claim is told so, and no other null is excluded by anything.
+func TestPerfectRanksHaveNoInterval(t *testing.T) {
+	x := []float64{1, 2, 3, 4, 5, 6, 7, 8}
+	down := []float64{-2, -4, -6, -8, -10, -12, -14, -16}
+	for _, method := range []string{"", "permutation"} {
+		for _, c := range []struct {
+			y        []float64
+			up, down float64
+		}{{x, 1.0 / 40320, 1}, {down, 1, 1.0 / 40320}} { // one order in 8! is as extreme
+			inf := analysed(t, "rank-correlation", method, Input{Pairs: Pairs{N: 8, First: x, Second: c.y}})
+			if low, high := inf.Method.Limits(0.025); !inf.NoInterval || low != -1 || high != 1 {
+				t.Errorf("%q: no interval %v, limits %g, %g", method, inf.NoInterval, low, high)
+			}
+			at := inf.Method.Test(0)
+			within(t, "p up", at.Up.P, c.up, 1e-12)
+			within(t, "p down", at.Down.P, c.down, 1e-12)
+			for _, null := range []float64{-0.9, -0.1, 0.1, 0.9} {
+				if at := inf.Method.Test(null); at.Up.P != 1 || at.Down.P != 1 {
+					t.Errorf("%q at %g: %g, %g", method, null, at.Up.P, at.Down.P)
+				}
+			}
+		}
+	}
+	y := []float64{1, 3, 2, 4, 5, 6, 7, 8}
+	if analysed(t, "rank-correlation", "permutation", Input{Pairs: Pairs{N: 8, First: x, Second: y}}).NoInterval {
+		t.Error("an imperfect relation has no interval")
+	}
+}
+
+// Beyond ten thousand pairs the permutation test is refused, the default is not.
+func TestRankPermutationHasABound(t *testing.T) {
+	x, y := make([]float64, 10_001), make([]float64, 10_001)
+	for i := range x {
+		x[i], y[i] = float64(i), float64(i*7919%10_001)
+	}
+	in := Input{Pairs: Pairs{N: 10_001, First: x, Second: y}}
+	if _, bad := Analyse("rank-correlation", "permutation", in); bad == nil || bad.Code != "S105" {
+		t.Errorf("permutation of 10001 pairs: %v", bad)
+	}
+	if inf := analysed(t, "rank-correlation", "", in); inf.Word != "bonett-wright" {
+		t.Errorf("the default is %s", inf.Word)
+	}
+	in.Pairs.Second = x
+	if _, bad := Analyse("rank-correlation", "", in); bad == nil || bad.Code != "S102" {
+		t.Errorf("10001 pairs perfectly related: %v", bad)
+	}
+}
