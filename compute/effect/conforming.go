@@ -64,16 +64,31 @@ func (m conformingBoth) Test(c float64) Test {
 		out.Up, out.Down = sureTail, sureTail.Complement()
 		return out
 	}
+	l, r := m.left.Test(c), m.right.Test(c)
+	out.Down = dist.TwoSided(l.Down, r.Down)
+	// The share is at most that inside either limit alone, so its p is at
+	// least either's.
+	if math.Min(l.Up.Q, r.Up.Q) < 1e-17 {
+		out.Up = sureTail
+		return out
+	}
 	out.Up = dist.TailOf(math.Min(1, m.up(c)))
-	out.Down = dist.TwoSided(m.left.Test(c).Down, m.right.Test(c).Down)
 	return out
+}
+
+// down is the downward half of Test, which costs little of the whole.
+func (m conformingBoth) down(c float64) Test {
+	if c <= 0 || c >= 1 {
+		return m.Test(c)
+	}
+	return Test{Down: dist.TwoSided(m.left.Test(c).Down, m.right.Test(c).Down), Kind: "exact"}
 }
 
 // up is the probability, over the pivots of mean and spread, that the share
 // is at most c: 1 where even a centred population falls short of it.
 func (m conformingBoth) up(c float64) float64 {
 	nu := m.N - 1
-	c = math.Max(c, 1e-150) // p rises with c, so that less is never claimed; below, squares underflow
+	c = math.Max(c, leastShare) // p rises with c, so that less is never claimed; below, squares underflow
 	q := 1 - c
 	z := dist.NormalQuantile(q / 2)
 	if c < smallShare { // 1 - c would lose the digits of a small share
@@ -157,6 +172,9 @@ func spare(a, q, zq float64) float64 {
 	return d
 }
 
+// leastShare is the least share that up tells from a smaller one.
+const leastShare = 1e-150
+
 // smallShare is where 1 - c begins to lose the digits of c.
 const smallShare = 1e-3
 
@@ -237,10 +255,34 @@ func stirlingRest(u float64) float64 {
 	return g - (u-0.5)*math.Log(u) + u - math.Log(2*math.Pi)/2
 }
 
-// Limits implements Method by inversion.
+// Limits implements Method by inversion. At levels of a half and more the
+// limits enclose the estimate; where the search has run out of digits they are
+// moved to it.
 func (m conformingBoth) Limits(a float64) (low, high float64) {
-	start := dist.NormalUpper(m.Off-m.Half).P - dist.NormalUpper(m.Off+m.Half).P
-	return Inversion{Test: m.Test, Scale: record.Logit, Low: 0, High: 1, Start: math.Min(math.Max(start, 1e-300), 1-1e-16), Step: 0.5, Monotone: true}.Limits(a)
+	start := shareBetween(m.left.K, m.right.K)
+	v := Inversion{Test: m.Test, Scale: record.Logit, Low: 0, High: 1, Start: math.Min(math.Max(start, 1e-300), 1-1e-16), Step: 0.5, Monotone: true}
+	encloses := a <= 0.25
+	if !encloses || start >= leastShare { // below, up does not tell shares apart
+		low = v.side(a, -1)
+	}
+	v.Test = m.down
+	if high = v.side(a, +1); high <= math.SmallestNonzeroFloat64 {
+		high = 0
+	}
+	if encloses {
+		return math.Min(low, start), math.Max(high, start)
+	}
+	if a < 0.5 {
+		low = math.Min(low, high)
+	}
+	return low, high
+}
+
+// shareBetween is P(-lo < Z < hi) from the tails on the side away from the
+// nearer limit, where a small share keeps its digits.
+func shareBetween(lo, hi float64) float64 {
+	near, far := math.Min(lo, hi), math.Max(lo, hi)
+	return math.Max(0, dist.NormalUpper(-near).P-dist.NormalUpper(far).P)
 }
 
 func conformingNormal(in Input) (*Inference, *Problem) {
@@ -266,7 +308,7 @@ func conforming(in Input, s sample, who string) (*Inference, *Problem) {
 		inf.Method = conformingBoth{N: s.n, Half: (lo + hi) / 2, Off: (lo - hi) / 2, left: conformingOne{s.n, lo}, right: conformingOne{s.n, hi}}
 		inf.Costly = true
 	}
-	inf.Estimate = math.Max(0, dist.NormalUpper(-hi).P-dist.NormalUpper(lo).P)
+	inf.Estimate = shareBetween(lo, hi)
 	shareVariance(inf)
 	inf.Checks = []result.Check{check("normal-values", s.shows(""))}
 	return inf, nil

@@ -22,3 +22,11 @@ func BenchmarkExactCorrelationLimits(b *testing.B) {
 		inf.Method.Limits(0.025)
 	}
 }
+
+// A share far outside its limits, whose whole inference is dear.
+func BenchmarkShareFarOutside(b *testing.B) {
+	for b.Loop() {
+		inf, _ := Analyse("conforming-share", "normal", Input{Sample: Group{N: 20, Mean: 50, SD: 0.5}, Spec: [2]float64{-1, 1}})
+		inf.Method.Limits(0.005)
+	}
+}
