@@ -85,7 +85,6 @@ func TestProblems(t *testing.T) {
 		{"S103", "ratio-estimate", "", Input{Given: &Given{Estimate: 2, Low: result.Some(0), High: result.Some(5), Level: result.Some(0.95)}}},
 		{"S103", "estimate", "", Input{Given: &Given{Estimate: 2, Low: result.Some(3), High: result.Some(5), Level: result.Some(0.95)}}},
 		{"S103", "estimate", "", Input{Given: &Given{Estimate: 2, SE: result.Some(1), DF: result.Some(0)}}},
-		{"S104", "conforming-share", "", Input{Given: &Given{Estimate: 0.9, SE: result.Some(0.1)}}},
 	} {
 		refused(t, c.code, c.measure, c.method, c.in)
 	}
