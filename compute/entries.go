@@ -141,8 +141,12 @@ func analysisOf(s spec, inf *effect.Inference, level, low, high float64) result.
 	if inf.NoEstimate {
 		estimate = result.Opt{}
 	}
-	return result.Analysis{Measure: s.measure.Word, Method: inf.Word, N: inf.N, Events: inf.Events,
+	out := result.Analysis{Measure: s.measure.Word, Method: inf.Word, N: inf.N, Events: inf.Events,
 		Estimate: estimate, SE: inf.SE, DF: inf.DF, Level: level, Low: opt(low), High: opt(high), Notes: inf.Notes}
+	if inf.NoInterval {
+		out.Low, out.High = result.Opt{}, result.Opt{}
+	}
+	return out
 }
 
 func lookOf(l record.Look) string {

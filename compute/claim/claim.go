@@ -171,7 +171,9 @@ func Assess(inf *effect.Inference, q Question) Assessment {
 	if !inf.NullOnly { // a borrowed interval has no margin of the test's
 		a.smallest(q)
 	}
-	a.agree(m, q)
+	if !inf.NoInterval {
+		a.agree(m, q)
+	}
 	if n, ok := contradictionError(inf, q); ok {
 		a.Notes = append(a.Notes, n)
 	}
