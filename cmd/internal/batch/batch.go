@@ -134,12 +134,12 @@ func (w Worker) read(rec Found) (in pipeline.Input, closer func(), err error) {
 	if err != nil {
 		return in, nil, err
 	}
-	in.Files = root.FS()
+	in.Files = regularFS{root.FS()}
 	return in, func() { root.Close() }, nil
 }
 
 func readFile(path string) ([]byte, error) {
-	f, err := os.Open(path)
+	f, err := openRegular(path)
 	if err != nil {
 		return nil, err
 	}

@@ -112,7 +112,8 @@ var firstKey = regexp.MustCompile(`^(steelyard|"steelyard"|'steelyard')[ \t]*=`)
 const sniffed = 1 << 20
 
 // IsRecord reports whether the first key of a file is `steelyard`. Whether
-// the rest is a record is for reading to say.
+// the rest is a record is for reading to say. A file that may not be read
+// counts as one: whoever reads it reports it, so that nothing is passed over.
 func IsRecord(path string) bool {
 	info, err := os.Stat(path)
 	if err != nil || !info.Mode().IsRegular() {
@@ -120,7 +121,7 @@ func IsRecord(path string) bool {
 	}
 	f, err := os.Open(path)
 	if err != nil {
-		return false
+		return errors.Is(err, fs.ErrPermission)
 	}
 	defer f.Close()
 	return startsRecord(f)

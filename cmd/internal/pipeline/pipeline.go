@@ -138,6 +138,11 @@ func (r Rooms) Compile(in Input) (c *Compiled, err error) {
 		return c, err
 	}
 	c.Page = r.Compose(c.Loaded, c.Result)
+	if face := c.Loaded.Record.Head.Typeface; face.Stated && in.Files != nil {
+		if c.Page.Typeface, err = fs.ReadFile(in.Files, face.V); err != nil {
+			return c, fmt.Errorf("record.typeface: %w", err)
+		}
+	}
 	return c, c.attach(in)
 }
 

@@ -1,6 +1,7 @@
 package watch
 
 import (
+	"path/filepath"
 	"slices"
 	"sync"
 	"time"
@@ -92,9 +93,9 @@ func (e *events) gather() {
 			if ev.Op == fsnotify.Chmod {
 				continue
 			}
-			if !seen[ev.Name] {
-				seen[ev.Name] = true
-				b.paths = append(b.paths, ev.Name)
+			if name := filepath.Clean(ev.Name); !seen[name] {
+				seen[name] = true
+				b.paths = append(b.paths, name)
 			}
 		case _, ok := <-e.notify.Errors:
 			if !ok {

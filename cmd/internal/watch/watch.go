@@ -88,6 +88,7 @@ func New(opt Options, records []string) *Watcher {
 }
 
 func (w *Watcher) add(path string) {
+	path = filepath.Clean(path)
 	if !slices.ContainsFunc(w.records, func(r *record) bool { return r.path == path }) {
 		w.records = append(w.records, &record{path: path})
 	}
