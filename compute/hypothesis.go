@@ -8,7 +8,9 @@ import (
 	"steelyard/compute/dist"
 	"steelyard/compute/effect"
 	"steelyard/compute/result"
+	"steelyard/protocol/diag"
 	"steelyard/protocol/record"
+	"strings"
 )
 
 // The messages of this file.
@@ -60,7 +62,7 @@ func (r *run) hypothesis(h *record.Hypothesis) {
 		r.gather(&at, h, q, r.entriesOf(h, o, set, false))
 		t.bySet = append(t.bySet, at)
 		if at.problem != nil {
-			r.note(h.At, h.Name, *at.problem)
+			r.problem(h, at)
 		} else if at.inf != nil {
 			for _, n := range slices.Concat(at.inf.Notes, at.a.Notes) {
 				r.note(h.At, h.Name, n)
@@ -159,6 +161,21 @@ func (r *run) gather(at *attempt, h *record.Hypothesis, q claim.Question, found 
 		return
 	}
 	at.a = claim.Assess(at.inf, q)
+}
+
+// problem raises what keeps a hypothesis from being computed. A stated method
+// that the measure, the null or the data do not allow is an error: another one
+// must be chosen.
+func (r *run) problem(h *record.Hypothesis, at attempt) {
+	if at.problem.Code != "S104" || !h.Method.Stated {
+		r.note(h.At, h.Name, *at.problem)
+		return
+	}
+	d := diag.Error("S104", h.Method.Span, "%s: %s", h.Name, Text(*at.problem)).
+		WithHelp("the methods of %s are %s", at.spec.measure.Word, strings.Join(at.spec.measure.Methods, ", "))
+	if !slices.Contains(r.notes, d) {
+		r.notes = append(r.notes, d)
+	}
 }
 
 // decide finds the set that decides: the one with the largest p. A set that
