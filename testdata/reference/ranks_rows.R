@@ -1,5 +1,5 @@
-# Writes rows of ranks.json with base R: Rscript ranks_rows.R > /tmp/r.json,
-# then /usr/bin/python3 ranks_rows.py /tmp/r.json > ranks.json
+# Writes rows of ranks.json with base R: Rscript ranks_rows.R > ranks.json,
+# then /usr/bin/python3 ranks_rows.py ranks.json > ranks.json
 source("rows.R")
 set.seed(411)
 tails <- function(f, mus) {
