@@ -53,15 +53,18 @@ func priorOf(p *record.Prior, m *record.Measure) belief.Prior {
 // Bayes factor.
 func (r *run) move(out *result.Prior, prior belief.Prior, p *record.Prior, o *record.Outcome) {
 	out.After = out.Before
+	out.DensityBefore = densityOf(prior, o)
 	grown := r.growth(o)
 	for _, e := range grown {
 		out.After = r.believed(prior.Update(e.Y, e.V), o, e.study)
 		out.Path = append(out.Path, out.After)
 	}
 	if len(grown) == 0 {
+		out.DensityAfter = out.DensityBefore
 		return
 	}
 	last := grown[len(grown)-1]
+	out.DensityAfter = densityOf(prior.Update(last.Y, last.V), o)
 	if p.NullShare.Stated {
 		ln := prior.LnBayesFactor(last.Y, last.V)
 		out.LnBayesFactor = opt(ln)
@@ -104,6 +107,19 @@ func (r *run) growth(o *record.Outcome) []grown {
 		w := p.wald(f)
 		se := belief.NormalError(w.SE, w.DF, a)
 		out = append(out, grown{pool.Study{Y: w.Y, V: se * se}, order[i].name})
+	}
+	return out
+}
+
+// densityOf is a belief's density at values of the effect.
+func densityOf(p belief.Prior, o *record.Outcome) []result.DensityPoint {
+	scale := record.MeasureOf(o.Measure.V).Scale
+	y, height := p.Density()
+	var out []result.DensityPoint
+	for i := range y {
+		if v := effect.From(scale, y[i]); !math.IsInf(v, 0) {
+			out = append(out, result.DensityPoint{Value: v, Height: height[i]})
+		}
 	}
 	return out
 }

@@ -176,7 +176,7 @@ func (c *composer) sourcesNote() string {
 
 // groupTable prints the numbers of each group as the entry gave them.
 func (c *composer) groupTable() {
-	t := newTable("The numbers by group", "Study", "Outcome", "Set", "Group", ">n", "#Mean", "#SD", "#Median", ">Events", ">Exposure", "#r", ">Missing or dropped")
+	t := newTable("The numbers by group", "Study", "Outcome", "Set", "Group", ">n", "#Mean", "#SD", "#Median", ">Events", ">Exposure", "#r", ">Missing", ">Excluded by the plan")
 	for i := range c.res.Studies {
 		s := &c.res.Studies[i]
 		if s.Use == result.MaskedUse {
@@ -184,12 +184,8 @@ func (c *composer) groupTable() {
 		}
 		o := outcomeOf(c.res, s.Outcome)
 		for _, g := range s.Groups {
-			missing := ""
-			if g.Missing > 0 {
-				missing = number.Int(g.Missing)
-			}
 			row := t.row(s.Study, o.Label, s.Set, g.Name, number.CountOpt(g.N), spreadText(o, g.Mean, g.SD), spreadText(o, g.SD, g.SD),
-				spreadText(o, g.Median, g.SD), number.CountOpt(g.Events), plainOpt(g.Exposure), number.SignificantOpt(g.R, 3), missing)
+				spreadText(o, g.Median, g.SD), number.CountOpt(g.Events), plainOpt(g.Exposure), number.SignificantOpt(g.R, 3), some(g.Missing), some(g.Excluded))
 			row.Grey = s.Use != result.Analysed
 		}
 	}
@@ -206,6 +202,14 @@ func spreadText(o *result.Outcome, v, sd result.Opt) string {
 		return number.Significant(v.V, 4)
 	}
 	return f.Stated(v.V, sd.V/10, sd.V)
+}
+
+// some writes a count; "" for none, so that a column without any is left out.
+func some(n int) string {
+	if n == 0 {
+		return ""
+	}
+	return number.Int(n)
 }
 
 // plainOpt writes a stated number.
@@ -241,7 +245,7 @@ func (c *composer) flowTable() {
 // totalsTable prints what may be shown while results are masked.
 func (c *composer) totalsTable() {
 	c.small("Some results are masked: of these only totals over all groups are shown.")
-	t := newTable("Totals of masked results", "Study", "Outcome", ">n", "#SD, labels ignored", ">Events", ">Exposure", ">Missing or dropped")
+	t := newTable("Totals of masked results", "Study", "Outcome", ">n", "#SD, labels ignored", ">Events", ">Exposure", ">Missing", ">Excluded by the plan")
 	for i := range c.res.Studies {
 		s := &c.res.Studies[i]
 		if s.Use != result.MaskedUse {
@@ -252,11 +256,7 @@ func (c *composer) totalsTable() {
 			if g.Name != "" {
 				continue
 			}
-			missing := ""
-			if g.Missing > 0 {
-				missing = number.Int(g.Missing)
-			}
-			t.row(s.Study, o.Label, number.CountOpt(g.N), spreadText(o, g.SD, g.SD), number.CountOpt(g.Events), plainOpt(g.Exposure), missing)
+			t.row(s.Study, o.Label, number.CountOpt(g.N), spreadText(o, g.SD, g.SD), number.CountOpt(g.Events), plainOpt(g.Exposure), some(g.Missing), some(g.Excluded))
 		}
 	}
 	t.to(c)

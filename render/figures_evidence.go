@@ -6,7 +6,6 @@ import (
 	"time"
 
 	"steelyard/compute/result"
-	"steelyard/protocol/record"
 	"steelyard/render/chart"
 	"steelyard/render/number"
 	"steelyard/render/page"
@@ -163,42 +162,28 @@ func (c *composer) tallyFigure(name string, t *result.Tally) *page.Figure {
 
 // beliefFigure is a belief before and after.
 func (c *composer) beliefFigure(p *result.Prior, o *result.Outcome) *page.Figure {
-	if !(p.Before.SD > 0) || !(p.After.SD > 0) {
+	if len(p.DensityBefore) == 0 || len(p.DensityAfter) == 0 {
 		return nil
 	}
 	f := number.Of(o)
 	ax := c.axis(o)
 	d := chart.Beliefs{Axis: ax, Band: band(f, o.Low, o.High), Null: point(f, o.Null)}
-	for i, b := range []result.Belief{p.Before, p.After} {
+	for i, density := range [][]result.DensityPoint{p.DensityBefore, p.DensityAfter} {
 		h := chart.Hill{Name: "before", Dashed: true}
 		if i == 1 {
 			h = chart.Hill{Name: "after the results"}
 		}
-		for k := -120; k <= 120; k++ {
-			z := float64(k) / 30
-			h.X = append(h.X, f.Show(fromScale(o.Scale, b.Mean+z*b.SD)))
-			h.H = append(h.H, math.Exp(-z*z/2)/b.SD)
+		for _, at := range density {
+			h.X, h.H = append(h.X, f.Show(at.Value)), append(h.H, at.Height)
 		}
 		d.Hills = append(d.Hills, h)
 	}
 	alt := "Belief " + p.Name + " before and after the results: inside the region " + number.Share(p.Before.Inside) + " before, " + number.Share(p.After.Inside) + " after."
-	return figure("Belief "+p.Name+", before (dashed) and after (solid), as densities on the analysis scale.", alt, d.Draw(), nil)
-}
-
-// fromScale takes a value of the analysis scale back to the effect's own, to
-// place it on an axis.
-func fromScale(s record.Scale, v float64) float64 {
-	switch s {
-	case record.Log:
-		return math.Exp(v)
-	case record.Logit:
-		return 1 / (1 + math.Exp(-v))
-	case record.Atanh:
-		return math.Tanh(v)
-	case record.Identity:
-		return v
+	caption := "Belief " + p.Name + ", before (dashed) and after (solid), as densities on the analysis scale."
+	if p.Before.NullShare.OK {
+		caption += " What it puts exactly on the null is not drawn."
 	}
-	return v
+	return figure(caption, alt, d.Draw(), nil)
 }
 
 // timelineFigure draws events with a known day, one line a kind.

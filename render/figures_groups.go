@@ -21,22 +21,30 @@ func (c *composer) groupFigures() {
 			for _, r := range d.Rows {
 				said = append(said, r.Name+" "+r.Text)
 			}
+			if set := c.drawnSet(o); set != "" {
+				what += ", analysis set " + set + ","
+			}
 			alt := o.Label + ", " + what + " by group: " + strings.Join(said, "; ") + "."
 			c.add2(figure(o.Label+": "+what+" by group.", alt, d.Draw(), nil))
 		}
 	}
 }
 
+// drawnSet is the analysis set whose groups are drawn: the one that decides
+// the first hypothesis on the outcome; "" without sets.
+func (c *composer) drawnSet(o *result.Outcome) string {
+	for i := range c.res.Hypotheses {
+		if h := &c.res.Hypotheses[i]; h.Outcome == o.Name && h.Set != "" {
+			return h.Set
+		}
+	}
+	return ""
+}
+
 // groupRows gathers the groups of an outcome; the deciding set only, where
 // entries come in several.
 func (c *composer) groupRows(o *result.Outcome) (d chart.Groups, what string) {
-	set := ""
-	for i := range c.res.Hypotheses {
-		if h := &c.res.Hypotheses[i]; h.Outcome == o.Name && h.Set != "" {
-			set = h.Set
-			break
-		}
-	}
+	set := c.drawnSet(o)
 	var values []float64
 	for i := range c.res.Studies {
 		s := &c.res.Studies[i]

@@ -211,7 +211,10 @@ func groupParts(g *result.GroupNumbers) []string {
 		add(g.Analysed, "analysed")
 	}
 	if g.Missing > 0 {
-		p = append(p, number.Int(g.Missing)+number.Hard+"missing or dropped")
+		p = append(p, number.Int(g.Missing)+number.Hard+"missing")
+	}
+	if g.Excluded > 0 {
+		p = append(p, number.Int(g.Excluded)+number.Hard+"excluded by the plan")
 	}
 	return p
 }

@@ -140,11 +140,3 @@ func dateText(d record.Date) string {
 	}
 	return d.String()
 }
-
-// baseName is the last part of a path, whichever system wrote it.
-func baseName(path string) string {
-	if i := strings.LastIndexAny(path, `/\`); i >= 0 {
-		return path[i+1:]
-	}
-	return path
-}

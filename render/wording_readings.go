@@ -16,20 +16,24 @@ func ReadingWords(r result.Reading, better string) string {
 	return words
 }
 
+// facing turns a reading toward benefit: how many points are excluded on the
+// worse and on the better side, and the words for the two directions.
+func facing(r result.Reading, better string) (good, bad int, up, down string) {
+	switch better {
+	case "lower":
+		return r.Below, r.Above, "better", "worse"
+	case "higher":
+		return r.Above, r.Below, "better", "worse"
+	}
+	return r.Above, r.Below, "higher", "lower"
+}
+
 // reading gives the name and the words of a reading.
 func reading(r result.Reading, better string) (name, words string) {
 	if !r.OK {
 		return "", ""
 	}
-	good, bad := r.Above, r.Below
-	up, down := "better", "worse"
-	switch better {
-	case "lower":
-		good, bad = bad, good
-	case "higher":
-	default:
-		up, down = "higher", "lower"
-	}
+	good, bad, up, down := facing(r, better)
 	if !r.HasRegion {
 		return plainReading(good, bad, up, down)
 	}
@@ -80,15 +84,7 @@ func notShown(r result.Reading, better string) string {
 	if !r.OK {
 		return ""
 	}
-	good, bad := r.Above, r.Below
-	up, down := "better", "worse"
-	switch better {
-	case "lower":
-		good, bad = bad, good
-	case "higher":
-	default:
-		up, down = "higher", "lower"
-	}
+	good, bad, up, down := facing(r, better)
 	if !r.HasRegion {
 		if good == 0 && bad == 0 {
 			return "a direction of the effect"

@@ -61,6 +61,24 @@ func (p Prior) Shares(low, high float64) (above, inside, below float64) {
 	return rest * up.P, rest*math.Max(0, up.Q-down.P) + p.NullShare, rest * down.P
 }
 
+// hillReach is how many standard deviations a density is drawn to each side,
+// in hillPoints points.
+const (
+	hillReach  = 4.0
+	hillPoints = 241
+)
+
+// Density is the continuous part of the belief at points of the analysis
+// scale, up to one factor common to all beliefs; it holds 1 - NullShare.
+func (p Prior) Density() (y, height []float64) {
+	for k := range hillPoints {
+		z := hillReach * (2*float64(k)/(hillPoints-1) - 1)
+		y = append(y, p.Mean+z*p.SD)
+		height = append(height, (1-p.NullShare)*math.Exp(-z*z/2)/p.SD)
+	}
+	return y, height
+}
+
 // NormalError is the standard error of the normal likelihood that stands for
 // a t-based result at one-sided error a: se·t/z.
 func NormalError(se, df, a float64) float64 {

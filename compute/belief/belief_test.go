@@ -74,3 +74,18 @@ func TestNormalError(t *testing.T) {
 	// t(0.975, 5) = 2.570581836, z = 1.959963985 (R 4.2.2)
 	near(t, "t", NormalError(1, 5, 0.025), 2.570581835636314/1.959963984540054, 1e-9)
 }
+
+// The drawn density is the normal one: its area, by the trapezoidal rule over
+// four standard deviations, is P(|Z| < 4) times what is not on the null, up to
+// the factor sqrt(2 pi) that all beliefs share.
+func TestDensity(t *testing.T) {
+	for _, p := range []Prior{{SD: 1}, {Mean: -3, SD: 0.02}, {Mean: 2, SD: 5, NullShare: 0.25}} {
+		y, h := p.Density()
+		area := 0.0
+		for i := 1; i < len(y); i++ {
+			area += (y[i] - y[i-1]) * (h[i] + h[i-1]) / 2
+		}
+		near(t, "area", area/math.Sqrt(2*math.Pi), (1-p.NullShare)*math.Erf(4/math.Sqrt2), 1e-6)
+		near(t, "middle", y[len(y)/2], p.Mean, 1e-12)
+	}
+}

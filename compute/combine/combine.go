@@ -184,16 +184,22 @@ func tippett(p []dist.Tail) Combined {
 	return Combined{P: out, Statistic: least.P}
 }
 
+// leastLn is the logarithm of the smallest p-value.
+func leastLn(p []dist.Tail) float64 {
+	least := 0.0
+	for _, t := range p {
+		least = min(least, t.LnP)
+	}
+	return least
+}
+
 // cauchy averages cotangents (Liu and Xie 2020, from memory).
 func cauchy(p []dist.Tail) Combined {
 	if zero(p) {
 		return Combined{P: dist.TailOf(0), Statistic: math.Inf(1)}
 	}
 	k := float64(len(p))
-	least := 0.0
-	for _, t := range p {
-		least = min(least, t.LnP)
-	}
+	least := leastLn(p)
 	if least < -660 { // 1/p may overflow: only the largest terms count
 		s := sumOf(p, func(t dist.Tail) float64 { return math.Exp(least - t.LnP) })
 		lnp := least + math.Log(k) - math.Log(s)

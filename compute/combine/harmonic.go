@@ -17,10 +17,7 @@ func harmonic(p []dist.Tail) Combined {
 		return Combined{P: dist.TailOf(0), Statistic: math.Inf(1)}
 	}
 	k := float64(len(p))
-	least := 0.0
-	for _, t := range p {
-		least = min(least, t.LnP)
-	}
+	least := leastLn(p)
 	if least < -660 { // Σ1/p may overflow; P = k/Σ(1/p) to all digits out here
 		lnx := -least + math.Log(sumOf(p, func(t dist.Tail) float64 { return math.Exp(least - t.LnP) }))
 		return Combined{P: dist.TailOfLn(math.Log(k) - lnx), Statistic: math.Exp(lnx)}

@@ -113,31 +113,35 @@ func rankSumSpread(x, y []float64, c, tol float64) float64 {
 	m, n := float64(len(x)), float64(len(y))
 	total := m + n
 	var ties float64
-	i, j := 0, 0
-	for i < len(x) || j < len(y) {
-		t := 0.0
-		if math.IsNaN(c) {
-			if i < len(x) {
-				t, i = run(x, i, 0, x[i], 0)
-			} else {
-				t, j = run(y, j, 0, y[j], 0)
-			}
-		} else {
-			at := math.Inf(1)
-			if i < len(x) {
-				at = x[i] - c
-			}
-			if j < len(y) {
-				at = math.Min(at, y[j])
-			}
-			var a, b float64
-			a, i = run(x, i, c, at, tol)
-			b, j = run(y, j, 0, at, tol)
-			t = a + b
-		}
+	count := func(a, b float64) {
+		t := a + b
 		ties += t * (t*t - 1)
 	}
+	if math.IsNaN(c) {
+		merged(x, nil, 0, 0, count)
+		merged(nil, y, 0, 0, count)
+	} else {
+		merged(x, y, c, tol, count)
+	}
 	return math.Sqrt(math.Max(0, m*n/12*(total+1-ties/(total*(total-1)))))
+}
+
+// merged visits the distinct values of both sorted columns in order, x moved
+// down by c, with how many of each column are equal there.
+func merged(x, y []float64, c, tol float64, visit func(a, b float64)) {
+	for i, j := 0, 0; i < len(x) || j < len(y); {
+		at := math.Inf(1)
+		if i < len(x) {
+			at = x[i] - c
+		}
+		if j < len(y) {
+			at = math.Min(at, y[j])
+		}
+		var a, b float64
+		a, i = run(x, i, c, at, tol)
+		b, j = run(y, j, 0, at, tol)
+		visit(a, b)
+	}
 }
 
 // run counts the sorted values from i on that equal at once they are moved
@@ -155,18 +159,8 @@ func run(x []float64, i int, c, at, tol float64) (float64, int) {
 // shifted by c (Streitberg & Röhmel 1986, from memory).
 func tiedRankSum(x, y []float64, c, tol float64) (up, down dist.Tail) {
 	var doubled []int
-	observed, i, j, before := 0, 0, 0, 0
-	for i < len(x) || j < len(y) {
-		at := math.Inf(1)
-		if i < len(x) {
-			at = x[i] - c
-		}
-		if j < len(y) {
-			at = math.Min(at, y[j])
-		}
-		var a, b float64
-		a, i = run(x, i, c, at, tol)
-		b, j = run(y, j, 0, at, tol)
+	observed, before := 0, 0
+	merged(x, y, c, tol, func(a, b float64) {
 		t := int(a + b)
 		rank := 2*before + t + 1 // twice the midrank
 		for range t {
@@ -174,7 +168,7 @@ func tiedRankSum(x, y []float64, c, tol float64) (up, down dist.Tail) {
 		}
 		observed += int(a) * rank
 		before += t
-	}
+	})
 	r := dist.NewRankSumTies(doubled, len(x))
 	return r.Upper(observed), r.Lower(observed)
 }

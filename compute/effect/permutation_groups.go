@@ -17,8 +17,13 @@ func meanDifferencePermutation(in Input) (*Inference, *Problem) {
 		return nil, problem("S112", noAdjustment, "permutation")
 	}
 	x, y := in.First.Values, in.Second.Values
-	if len(x) == 0 || len(y) == 0 {
+	switch {
+	case len(x) == 0 && len(y) == 0:
 		return nil, problem("S104", needsData, "permutation")
+	case len(x) == 0:
+		return nil, problem("S101", tooFew, "the first group", 0, 1)
+	case len(y) == 0:
+		return nil, problem("S101", tooFew, "the second group", 0, 1)
 	}
 	if bad := permutable(in, len(x)+len(y)); bad != nil {
 		return nil, bad

@@ -446,11 +446,12 @@ type Size struct {
 
 // Prior is stated beliefs before and after.
 type Prior struct {
-	Name, Outcome, Label, Why string
-	Before, After             Belief
-	BayesFactor               Opt // for the null; absent beyond the numbers a computer holds
-	LnBayesFactor             Opt // its natural logarithm
-	Path                      []Belief
+	Name, Outcome, Label, Why   string
+	Before, After               Belief
+	BayesFactor                 Opt // for the null; absent beyond the numbers a computer holds
+	LnBayesFactor               Opt // its natural logarithm
+	Path                        []Belief
+	DensityBefore, DensityAfter []DensityPoint // the densities before and after
 }
 
 // Belief is a normal belief with its shares.
@@ -460,6 +461,11 @@ type Belief struct {
 	Benefit, Inside, Harm float64
 	NullShare             Opt
 }
+
+// DensityPoint is the height of a belief at a value of the effect, on the
+// analysis scale and up to a common factor. What a belief puts exactly on the
+// null is not in it.
+type DensityPoint struct{ Value, Height float64 }
 
 // Sensitivity is a planned sensitivity analysis.
 type Sensitivity struct {

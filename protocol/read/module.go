@@ -175,27 +175,23 @@ func attach(n *record.Node, v any) *record.Node {
 func attachItems(n *record.Node, v any) *record.Node {
 	switch items := v.(type) {
 	case []any:
-		if len(items) != len(n.Items) {
-			return n
-		}
-		for i, child := range n.Items {
-			if bad := attach(child, items[i]); bad != nil {
-				return bad
-			}
-		}
-		return nil
+		return attachEach(n, items)
 	case []map[string]any:
-		if len(items) != len(n.Items) {
-			return n
-		}
-		for i, child := range n.Items {
-			if bad := attach(child, items[i]); bad != nil {
-				return bad
-			}
-		}
-		return nil
+		return attachEach(n, items)
 	}
 	return n
+}
+
+func attachEach[T any](n *record.Node, items []T) *record.Node {
+	if len(items) != len(n.Items) {
+		return n
+	}
+	for i, child := range n.Items {
+		if bad := attach(child, items[i]); bad != nil {
+			return bad
+		}
+	}
+	return nil
 }
 
 func attachLeaf(n *record.Node, v any) bool {

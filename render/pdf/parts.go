@@ -244,7 +244,7 @@ func (s *setter) signatures(b page.Signatures, fr frame, parent *elem) []piece {
 		p.rule(sign, base, date-14-sign, 0.6, ink(page.Black))
 		p.rule(date, base, 86, 0.6, ink(page.Black))
 		p.put(s, s.chars(page.T("Signature "), runStyle, el), sign, base+9)
-		p.put(s, s.chars(page.T("Date"), runStyle, el), date, base+9)
+		p.put(s, s.chars(page.T("Date and time"), runStyle, el), date, base+9)
 		p.height += 2
 		out = append(out, p)
 	}

@@ -6,7 +6,7 @@
 // Files are built to PDF/A-3b and PDF/UA-1. Equal documents give equal bytes.
 //
 // It refuses to know what a record is: it chooses no word, rounds no number
-// and reads no clock. Its own words are "page n of m", "Signature" and "Date".
+// and reads no clock. Its own words are "page n of m", "Signature" and "Date and time".
 //
 //	var b bytes.Buffer
 //	err := pdf.Write(&b, &page.Document{Title: "…", Language: "en", Paper: "a4", Blocks: blocks})
